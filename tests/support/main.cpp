@@ -1,0 +1,4 @@
+// main() of every test executable.
+
+#define DOCTEST_CONFIG_IMPLEMENT_WITH_MAIN
+#include <doctest/doctest.h>
