@@ -1,0 +1,41 @@
+#pragma once
+// Rules by the degree they must integrate exactly: on the segment, on the square, and for any element.
+
+#include <tepor/base/numbers.hpp>
+#include <tepor/quadrature/gauss.hpp>
+#include <tepor/quadrature/rule.hpp>
+#include <tepor/quadrature/triangle_rules.hpp>
+#include <type_traits>
+
+namespace tepor {
+
+/// Gauss-Legendre rule on [0,1] exact to at least `degree`; a degree below 1 gives the midpoint.
+inline Rule<1> line_rule(int degree) {
+    return gauss_legendre(degree < 1 ? 1 : degree / 2 + 1);
+}
+
+/// Gauss-Legendre points in both directions of the unit square, n^2 of them, exact to degree 2n - 1 in each coordinate.
+/// @throws Error bad_value  n < 1
+inline Rule<2> square_rule(int n) {
+    const auto line = gauss_legendre(n);
+    Rule<2> rule(line.degree, line.size() * line.size());
+    for (Index j = 0; j < line.size(); ++j)
+        for (Index i = 0; i < line.size(); ++i)
+            rule.add({line.point(i)[0], line.point(j)[0]}, line.weight(i) * line.weight(j));
+    return rule;
+}
+
+/// The rule on the reference cell of element E exact to at least `degree` (on the square: in each coordinate).
+/// E is any type with `shape_of_cell` and `dim`, the element of a user included. Cheap: built per body, not kept.
+template <class E>
+Rule<E::dim> rule_for(int degree) {
+    using Shape = std::remove_cvref_t<decltype(E::shape_of_cell)>; // CellShape, which stands in a later room
+    if constexpr (E::dim == 1)
+        return line_rule(degree);
+    else if constexpr (E::shape_of_cell == Shape::triangle)
+        return triangle_rule(degree);
+    else
+        return square_rule(degree < 1 ? 1 : degree / 2 + 1);
+}
+
+} // namespace tepor
