@@ -1,0 +1,70 @@
+#pragma once
+// Products of a SparseMatrix with a vector, and the check of its rules.
+
+#include <tepor/base/error.hpp>
+#include <tepor/base/text.hpp>
+#include <tepor/linear/sparse_matrix.hpp>
+
+namespace tepor {
+namespace detail {
+
+// One pass over the lower triangle. Row i gathers its own entries and scatters the mirrored ones upwards; y[i] is first
+// written at row i, since only later rows scatter into it.
+inline void multiply_lower(Index rows, const Id* start, const Id* column, const double* own, const double* mirrored,
+                           const double* diagonal, const double* x, double* y) noexcept {
+    for (Index i = 0; i < rows; ++i) {
+        const Index last = start[i + 1] - 1;
+        const double xi = x[i];
+        double sum = 0.0;
+        for (Index p = start[i]; p < last; ++p) {
+            const Index j = column[p];
+            sum += own[p] * x[j];
+            y[j] += mirrored[p] * xi;
+        }
+        y[i] = sum + diagonal[last] * xi;
+    }
+}
+
+} // namespace detail
+
+TEPOR_INLINE void multiply(const SparseMatrix& matrix, Index rows, const double* x, double* y) noexcept {
+    const double* lower = matrix.lower.data();
+    const double* upper = matrix.symmetric() ? lower : matrix.upper.data();
+    detail::multiply_lower(rows, matrix.start.data(), matrix.column.data(), lower, upper, lower, x, y);
+}
+
+TEPOR_INLINE void multiply_transposed(const SparseMatrix& matrix, Index rows, const double* x, double* y) noexcept {
+    const double* lower = matrix.lower.data();
+    const double* upper = matrix.symmetric() ? lower : matrix.upper.data();
+    detail::multiply_lower(rows, matrix.start.data(), matrix.column.data(), upper, lower, lower, x, y);
+}
+
+TEPOR_INLINE void verify(const SparseMatrix& matrix, Index n) {
+    const auto fail = [](Index row, const char* rule) {
+        throw Error(ErrorCode::bad_value, "matrix", detail::text("matrix: row ", row, " ", rule));
+    };
+    if (!(n >= 0 && n <= matrix.rows)) {
+        throw Error(ErrorCode::bad_value, "matrix",
+                    detail::text("matrix: leading block of ", n, " rows, expected 0 to ", matrix.rows));
+    }
+    if (matrix.start.size() != detail::as_size(matrix.rows) + 1)
+        fail(matrix.rows, "has no end: start must hold rows + 1 positions");
+    if (matrix.start[0] != 0) fail(0, "does not start at 0");
+    if (matrix.lower.size() != matrix.column.size()) fail(0, "cannot be read: lower and column differ in length");
+    if (!matrix.upper.empty() && matrix.upper.size() != matrix.column.size()) {
+        fail(0, "cannot be read: upper and column differ in length");
+    }
+    for (Index i = 0; i < n; ++i) {
+        const Index first = matrix.start[detail::as_size(i)];
+        const Index end = matrix.start[detail::as_size(i) + 1];
+        if (!(end > first)) fail(i, "is empty; every row holds at least its diagonal");
+        if (end > matrix.entries()) fail(i, "ends beyond the stored entries");
+        for (Index p = first; p < end; ++p) {
+            const Index j = matrix.column[detail::as_size(p)];
+            if (j < 0 || (p > first && j <= matrix.column[detail::as_size(p) - 1])) fail(i, "has columns out of order");
+        }
+        if (matrix.column[detail::as_size(end) - 1] != i) fail(i, "does not end with its diagonal");
+    }
+}
+
+} // namespace tepor

@@ -1,0 +1,72 @@
+// Products of a SparseMatrix with a vector, and the check of its rules.
+#include "../../support/dense_system.hpp"
+#include <doctest/doctest.h>
+#include <string>
+#include <tepor/base/error.hpp>
+#include <tepor/linear/sparse_matrix.hpp>
+
+using namespace tepor;
+
+namespace {
+
+std::vector<double> dense_product(const test::Dense& a, const std::vector<double>& x, bool transposed) {
+    std::vector<double> y(x.size(), 0.0);
+    for (Index i = 0; i < a.n; ++i) {
+        for (Index j = 0; j < a.n; ++j) {
+            y[detail::as_size(i)] += (transposed ? a(j, i) : a(i, j)) * x[detail::as_size(j)];
+        }
+    }
+    return y;
+}
+
+} // namespace
+
+TEST_CASE("products with the leading block agree with the dense matrix, symmetric or not") {
+    test::Random random(11);
+    for (const bool symmetric : {true, false}) {
+        for (const Index n : {1, 2, 7, 40}) {
+            const SparseMatrix a = test::random_matrix(40, 3.0, 40, random, symmetric);
+            const std::vector<double> x = test::random_vector(n, random);
+            const test::Dense full = test::dense(a, n);
+            std::vector<double> y(x.size(), 1e30);
+            multiply(a, n, x.data(), y.data());
+            CAPTURE(n);
+            CHECK(test::largest_difference(y, dense_product(full, x, false)) <= 1e-14);
+            multiply_transposed(a, n, x.data(), y.data());
+            CHECK(test::largest_difference(y, dense_product(full, x, true)) <= 1e-14);
+        }
+    }
+}
+
+TEST_CASE("an empty matrix multiplies without touching anything") {
+    const SparseMatrix a = test::sparse({}, {});
+    double y = 3.0;
+    multiply(a, 0, nullptr, &y);
+    CHECK(y == 3.0);
+    verify(a, 0);
+}
+
+TEST_CASE("a broken matrix is refused and its row named") {
+    test::Random random(12);
+    const SparseMatrix good = test::random_matrix(8, 2.0, 8, random);
+    verify(good, 8);
+    const auto message = [](const SparseMatrix& a, Index n) {
+        try {
+            verify(a, n);
+        } catch (const Error& error) {
+            CHECK(error.code() == ErrorCode::bad_value);
+            return std::string(error.what());
+        }
+        return std::string();
+    };
+    SparseMatrix no_diagonal = good;
+    no_diagonal.column[detail::as_size(no_diagonal.start[4]) - 1] = 2;
+    CHECK(message(no_diagonal, 8).find("row 3") != std::string::npos);
+    CHECK(message(good, 9).find("9 rows") != std::string::npos);
+    SparseMatrix negative = good;
+    negative.column[detail::as_size(negative.start[7])] = -1;
+    CHECK(message(negative, 8).find("row 7 has columns out of order") != std::string::npos);
+    SparseMatrix short_values = good;
+    short_values.lower.pop_back();
+    CHECK(message(short_values, 8).find("differ in length") != std::string::npos);
+}
