@@ -25,8 +25,8 @@ class Conductivity {
   public:
     Conductivity() = default;
     template <class T>
-        requires std::is_constructible_v<Value, T>
-    Conductivity(T&& value) : xx_(std::forward<T>(value)) {} // NOLINT: a value is an isotropic conductivity
+    requires std::is_constructible_v<Value, T> Conductivity(T&& value)
+        : xx_(std::forward<T>(value)) {} // NOLINT: a value is an isotropic conductivity
 
     [[nodiscard]] bool given() const noexcept { return xx_.given(); }
     [[nodiscard]] bool isotropic() const noexcept { return !yy_.given(); }

@@ -30,7 +30,13 @@ struct LawPoints {
 };
 
 /// Lanes of the derivatives of a law; parameter i is lane `law_parameter_lane + i`.
-enum LawLane : int { law_temperature_lane = 0, law_fluid_lane = 1, law_x_lane = 2, law_y_lane = 3, law_parameter_lane = 4 };
+enum LawLane : int {
+    law_temperature_lane = 0,
+    law_fluid_lane = 1,
+    law_x_lane = 2,
+    law_y_lane = 3,
+    law_parameter_lane = 4
+};
 
 /// A law with its type erased: one virtual call per batch. Derive from it to bring laws from other languages.
 class LawFunction {
@@ -194,7 +200,8 @@ class PlainLaw final : public LawFunction {
 
   private:
     static std::array<double, 4> state(const LawPoints& points, Index i) {
-        return {points.temperature ? points.temperature[i] : 0.0, points.fluid ? points.fluid[i] : 0.0, points.x[i], points.y[i]};
+        return {points.temperature ? points.temperature[i] : 0.0, points.fluid ? points.fluid[i] : 0.0, points.x[i],
+                points.y[i]};
     }
 
     [[nodiscard]] auto call(const std::array<double, 4>& at, double time, const double* parameters) const {
@@ -222,7 +229,8 @@ class PlainLaw final : public LawFunction {
                                                   : parameters[static_cast<std::size_t>(lane - law_parameter_lane)];
         const double centre = moved;
         // parameters may be of any size, and stepping past zero can leave their domain: keep their step relative
-        const double step = lane >= law_parameter_lane && centre != 0.0 ? 6.0e-6 * std::abs(centre) : difference_step(centre);
+        const double step =
+            lane >= law_parameter_lane && centre != 0.0 ? 6.0e-6 * std::abs(centre) : difference_step(centre);
         moved = centre + step;
         const double above = plain(call(at, points.time, parameters.data()));
         moved = centre - step;
@@ -244,8 +252,8 @@ Law make_law(std::vector<Parameter> parameters, F f) {
     if constexpr (takes<F, BasicSpot<Dual<1>>, Dual<1>, P>) {
         return Law(std::make_shared<const DualLaw<F, P, true>>(std::move(f)), std::move(parameters), uses, true);
     } else {
-        static_assert(takes<F, Spot, double, P>,
-                      "tepor law: the callable must take a spot (`const auto&` or `const tepor::Spot&`) and then one argument for each listed parameter");
+        static_assert(takes<F, Spot, double, P>, "tepor law: the callable must take a spot (`const auto&` or `const "
+                                                 "tepor::Spot&`) and then one argument for each listed parameter");
         return Law(std::make_shared<const PlainLaw<F, P, Spot>>(std::move(f)), std::move(parameters), uses, false);
     }
 }
@@ -254,12 +262,14 @@ template <std::size_t P, class F>
 Law make_place_law(std::vector<Parameter> parameters, F f) {
     constexpr Law::Uses uses{false, true, true};
     if constexpr (takes<F, Point, double, P> && !takes<F, BasicPlace<Dual<1>>, Dual<1>, P>) {
-        return Law(std::make_shared<const PlainLaw<F, P, Point>>(std::move(f)), std::move(parameters), Law::Uses{false, true, false}, false);
+        return Law(std::make_shared<const PlainLaw<F, P, Point>>(std::move(f)), std::move(parameters),
+                   Law::Uses{false, true, false}, false);
     } else if constexpr (takes<F, BasicPlace<Dual<1>>, Dual<1>, P>) {
         return Law(std::make_shared<const DualLaw<F, P, false>>(std::move(f)), std::move(parameters), uses, true);
     } else {
         static_assert(takes<F, Place, double, P>,
-                      "tepor of_place: the callable must take a place (`const auto&`, `const tepor::Place&` or `tepor::Point`) and then one argument for each listed parameter");
+                      "tepor of_place: the callable must take a place (`const auto&`, `const tepor::Place&` or "
+                      "`tepor::Point`) and then one argument for each listed parameter");
         return Law(std::make_shared<const PlainLaw<F, P, Place>>(std::move(f)), std::move(parameters), uses, false);
     }
 }
@@ -296,11 +306,11 @@ Law of_place(const Parameter (&parameters)[P], F f) {
 /// A function of time alone, sampled where a step needs it: `of_time([](double t) { return 20.0 + 5.0 * std::sin(t); })`.
 /// For jumps and pulses use `schedule`, whose energy is exact whatever the step.
 template <class F>
-    requires std::is_invocable_r_v<double, const F&, double>
-Law of_time(F f) {
+requires std::is_invocable_r_v<double, const F&, double> Law of_time(F f) {
     auto at_place = [f = std::move(f)](const Place& place) { return static_cast<double>(f(place.time)); };
     using At = decltype(at_place);
-    return Law(std::make_shared<const detail::PlainLaw<At, 0, Place>>(std::move(at_place)), {}, Law::Uses{false, false, true}, true);
+    return Law(std::make_shared<const detail::PlainLaw<At, 0, Place>>(std::move(at_place)), {},
+               Law::Uses{false, false, true}, true);
 }
 
 } // namespace tepor

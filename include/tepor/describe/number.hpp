@@ -12,8 +12,8 @@ namespace tepor {
 class Number {
   public:
     template <class T>
-        requires std::is_arithmetic_v<T>
-    Number(T number) : number_(static_cast<double>(number)) {} // NOLINT: a number is a Number
+    requires std::is_arithmetic_v<T> Number(T number)
+        : number_(static_cast<double>(number)) {} // NOLINT: a number is a Number
     Number(Parameter parameter) : number_(parameter.value()), parameter_(std::move(parameter)) {} // NOLINT
 
     /// The plain number, or the value the parameter was made with.

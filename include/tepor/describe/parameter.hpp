@@ -18,9 +18,11 @@ class Parameter {
   public:
     /// @throws Error bad_name (empty name), bad_value (value not finite)
     Parameter(std::string name, double value) {
-        if (name.empty()) throw Error(ErrorCode::bad_name, "", "Parameter: the name is empty; give it the name reports should show");
+        if (name.empty())
+            throw Error(ErrorCode::bad_name, "", "Parameter: the name is empty; give it the name reports should show");
         if (!std::isfinite(value))
-            throw Error(ErrorCode::bad_value, name, detail::text("Parameter \"", name, "\": value = ", value, ", expected a finite number"));
+            throw Error(ErrorCode::bad_value, name,
+                        detail::text("Parameter \"", name, "\": value = ", value, ", expected a finite number"));
         info_ = std::make_shared<const Info>(Info{std::move(name), value});
     }
 

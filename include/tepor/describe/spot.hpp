@@ -6,10 +6,10 @@ namespace tepor {
 /// Where, when and at what temperature a law is evaluated. S is double or a dual number.
 template <class S>
 struct BasicSpot {
-    S temperature{};   ///< in the body's scale [degC, or K]
-    S fluid{};         ///< temperature of the fluid or surroundings on the other side of a face, same scale; 0 inside the body
-    S x{};             ///< x or r [m]
-    S y{};             ///< y or z [m]
+    S temperature{}; ///< in the body's scale [degC, or K]
+    S fluid{}; ///< temperature of the fluid or surroundings on the other side of a face, same scale; 0 inside the body
+    S x{};     ///< x or r [m]
+    S y{};     ///< y or z [m]
     double time = 0.0; ///< [s]; 0 in a steady state
 };
 

@@ -29,14 +29,19 @@ class Table {
   public:
     /// @throws Error bad_value: no points, a temperature or value not finite, temperatures not strictly rising
     explicit Table(std::vector<TablePoint> points, Outside outside = Outside::refuse) {
-        if (points.empty()) throw Error(ErrorCode::bad_value, "table", "table: it has no points; give at least one {temperature, value}");
+        if (points.empty())
+            throw Error(ErrorCode::bad_value, "table",
+                        "table: it has no points; give at least one {temperature, value}");
         for (std::size_t i = 0; i < points.size(); ++i) {
             const TablePoint& p = points[i];
             if (!std::isfinite(p.at) || !std::isfinite(p.value.number()))
-                throw Error(ErrorCode::bad_value, "table", detail::text("table: point ", i, " is (", p.at, ", ", p.value.number(), "), expected finite numbers"));
+                throw Error(ErrorCode::bad_value, "table",
+                            detail::text("table: point ", i, " is (", p.at, ", ", p.value.number(),
+                                         "), expected finite numbers"));
             if (i > 0 && !(points[i - 1].at < p.at))
                 throw Error(ErrorCode::bad_value, "table",
-                            detail::text("table: temperature ", p.at, " at point ", i, " follows ", points[i - 1].at, ", expected rising temperatures; sort the points"));
+                            detail::text("table: temperature ", p.at, " at point ", i, " follows ", points[i - 1].at,
+                                         ", expected rising temperatures; sort the points"));
         }
         data_ = std::make_shared<const Data>(Data{std::move(points), outside});
     }

@@ -19,12 +19,12 @@ class Value {
 
     Value() = default;
     template <class T>
-        requires std::is_arithmetic_v<T>
-    Value(T number) : kind_(Kind::number), number_(static_cast<double>(number)) {} // NOLINT: all of these convert
-    Value(Parameter p) : kind_(Kind::parameter), number_(p.value()), parameter_(std::move(p)) {}          // NOLINT
-    Value(Number n) : Value(n.parameter() ? Value(*n.parameter()) : Value(n.number())) {}                  // NOLINT
-    Value(Table t) : kind_(Kind::table), table_(std::make_shared<const Table>(std::move(t))) {}            // NOLINT
-    Value(Law l) : kind_(Kind::law), law_(std::make_shared<const Law>(std::move(l))) {}                    // NOLINT
+    requires std::is_arithmetic_v<T> Value(T number)
+        : kind_(Kind::number), number_(static_cast<double>(number)) {} // NOLINT: all of these convert
+    Value(Parameter p) : kind_(Kind::parameter), number_(p.value()), parameter_(std::move(p)) {}            // NOLINT
+    Value(Number n) : Value(n.parameter() ? Value(*n.parameter()) : Value(n.number())) {}                   // NOLINT
+    Value(Table t) : kind_(Kind::table), table_(std::make_shared<const Table>(std::move(t))) {}             // NOLINT
+    Value(Law l) : kind_(Kind::law), law_(std::make_shared<const Law>(std::move(l))) {}                     // NOLINT
     Value(Schedule s) : kind_(Kind::schedule), schedule_(std::make_shared<const Schedule>(std::move(s))) {} // NOLINT
 
     [[nodiscard]] Kind kind() const noexcept { return kind_; }
