@@ -10,6 +10,15 @@
 #include <tepor/base/point.hpp>
 #include <tepor/base/text.hpp>
 
+#include <tepor/quadrature/gauss.hpp>
+#include <tepor/quadrature/rule.hpp>
+#include <tepor/quadrature/rules.hpp>
+#include <tepor/quadrature/triangle_rules.hpp>
+
 #include <tepor/element/concept.hpp>
+#include <tepor/element/lagrange.hpp>
+#include <tepor/element/quadrilateral.hpp>
+#include <tepor/element/segment.hpp>
+#include <tepor/element/triangle.hpp>
 
 #include <tepor/mesh/mesh.hpp>
