@@ -4,6 +4,7 @@
 #include <tepor/version.hpp>
 
 #include <tepor/base/config.hpp>
+#include <tepor/base/dual.hpp>
 #include <tepor/base/error.hpp>
 #include <tepor/base/frame.hpp>
 #include <tepor/base/numbers.hpp>
@@ -17,8 +18,23 @@
 
 #include <tepor/element/concept.hpp>
 #include <tepor/element/lagrange.hpp>
+#include <tepor/element/map.hpp>
 #include <tepor/element/quadrilateral.hpp>
 #include <tepor/element/segment.hpp>
 #include <tepor/element/triangle.hpp>
 
+#include <tepor/describe/conditions.hpp>
+#include <tepor/describe/law.hpp>
+#include <tepor/describe/number.hpp>
+#include <tepor/describe/parameter.hpp>
+#include <tepor/describe/quantity.hpp>
+#include <tepor/describe/schedule.hpp>
+#include <tepor/describe/spot.hpp>
+#include <tepor/describe/table.hpp>
+#include <tepor/describe/value.hpp>
+
 #include <tepor/mesh/mesh.hpp>
+
+#include <tepor/linear/banded.hpp>
+#include <tepor/linear/sparse_matrix.hpp>
+#include <tepor/linear/tridiagonal.hpp>
