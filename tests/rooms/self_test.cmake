@@ -1,4 +1,4 @@
-# Proves that cmake/include_rooms.cmake accepts a clean tree and refuses every kind of planted violation.
+# Proves that cmake/scripts/include_rooms.cmake accepts a clean tree and refuses every kind of planted violation.
 # cmake -D SCRIPT=<include_rooms.cmake> -D WORK=<scratch folder> -P self_test.cmake
 
 set(failures 0)

@@ -11,6 +11,7 @@
 #endif
 
 // A program built with value-changing floating-point optimisation gives wrong bounds and loses NaN checks: refuse it.
+// TEPOR_ALLOW_FAST_MATH gives up those promises.
 #if defined(__FAST_MATH__) && !defined(TEPOR_ALLOW_FAST_MATH)
-#error "tepor: -ffast-math breaks NaN checks and certified bounds; build without it (or define TEPOR_ALLOW_FAST_MATH and give up the promises)"
+#error "tepor: -ffast-math breaks NaN checks and certified bounds; build without it, or define TEPOR_ALLOW_FAST_MATH"
 #endif

@@ -8,6 +8,7 @@
 #include <utility>
 
 // Code, value (pinned: the C wrapper shows it), and its short text, in one list.
+// clang-format off
 #define TEPOR_ERROR_CODES(entry)                                                                                       \
     entry(bad_value, 10, "a value is not finite or outside its physical range")                                        \
     entry(bad_name, 11, "a region, face, parameter or quantity of that name does not exist or exists twice")           \
@@ -32,6 +33,7 @@
     entry(bad_file, 60, "a file or buffer cannot be read or written")                                                  \
     entry(too_large, 61, "a count exceeds what 32-bit ids hold")                                                       \
     entry(internal, 90, "the library broke one of its own rules; please report it")
+// clang-format on
 
 namespace tepor {
 

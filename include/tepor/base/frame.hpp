@@ -25,9 +25,9 @@ class Frame {
     enum class Kind : int { planar, cylindrical, spherical };
 
     Frame() = default;
-    Frame(Planar planar) : kind_(Kind::planar), area_(planar.area), depth_(planar.depth) {}                 // NOLINT
-    Frame(Cylindrical cylindrical) : kind_(Kind::cylindrical), area_(cylindrical.length) {}                 // NOLINT
-    Frame(Spherical) : kind_(Kind::spherical) {}                                                            // NOLINT
+    Frame(Planar planar) : kind_(Kind::planar), area_(planar.area), depth_(planar.depth) {} // NOLINT
+    Frame(Cylindrical cylindrical) : kind_(Kind::cylindrical), area_(cylindrical.length) {} // NOLINT
+    Frame(Spherical) : kind_(Kind::spherical) {}                                            // NOLINT
 
     [[nodiscard]] Kind kind() const noexcept { return kind_; }
 

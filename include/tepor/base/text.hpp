@@ -17,8 +17,7 @@ inline void append(std::string& out, double number) {
     out.append(buffer, end);
 }
 template <std::integral Integer>
-    requires(!std::same_as<Integer, char> && !std::same_as<Integer, bool>)
-void append(std::string& out, Integer number) {
+requires(!std::same_as<Integer, char> && !std::same_as<Integer, bool>) void append(std::string& out, Integer number) {
     char buffer[24];
     const auto end = std::to_chars(buffer, buffer + sizeof buffer, number).ptr;
     out.append(buffer, end);

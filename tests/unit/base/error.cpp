@@ -8,7 +8,8 @@
 using namespace tepor;
 
 TEST_CASE("an error carries its code, offender, message and cell") {
-    const Error error(ErrorCode::bad_mesh, "cell 17", "mesh: cell 17 is clockwise; list its nodes counter-clockwise", 17);
+    const Error error(ErrorCode::bad_mesh, "cell 17", "mesh: cell 17 is clockwise; list its nodes counter-clockwise",
+                      17);
     CHECK(error.code() == ErrorCode::bad_mesh);
     CHECK(error.offender() == "cell 17");
     CHECK(std::string(error.what()).find("counter-clockwise") != std::string::npos);

@@ -1,4 +1,4 @@
-# Checks which room includes which: cmake -D ROOT=<folder that holds include/tepor> -P include_rooms.cmake
+# Checks which room includes which: `cmake/run script include_rooms`, or cmake -D ROOT=<folder of include/> -P this file.
 #
 #  - a room includes only itself and rooms standing before it in the table
 #  - fmt and streams stay in output/, Eigen/Dense and heavy standard headers stay out of the numerical rooms
@@ -13,7 +13,7 @@ set(stream_headers iostream ostream istream fstream sstream iomanip print format
 set(heavy_headers Eigen/Dense Eigen/Eigen Eigen/Sparse Eigen/Eigenvalues iostream regex functional map)
 
 if(NOT ROOT)
-    message(FATAL_ERROR "give -D ROOT=<folder that holds include/tepor>")
+    cmake_path(SET ROOT NORMALIZE "${CMAKE_CURRENT_LIST_DIR}/../..")
 endif()
 set(base "${ROOT}/include")
 set(complaints "")
@@ -33,7 +33,7 @@ foreach(header IN LISTS headers)
     if(room_part)
         list(FIND rooms "${room}" place)
         if(place EQUAL -1)
-            complain("${header}: the room `${room}` is not in the table of cmake/include_rooms.cmake")
+            complain("${header}: the room `${room}` is not in the table of cmake/scripts/include_rooms.cmake")
             continue()
         endif()
     else()
@@ -102,7 +102,7 @@ if(EXISTS "${base}/tepor/tepor.hpp")
                 complain("tepor/tepor.hpp reaches <${header}>: ${CMAKE_MATCH_1}/ is included by those who want it")
             endif()
         elseif(NOT header IN_LIST reached)
-            complain("tepor/tepor.hpp does not reach <${header}>; run cmake -P cmake/front_door.cmake")
+            complain("tepor/tepor.hpp does not reach <${header}>; run cmake/run script front_door")
         endif()
     endforeach()
 else()

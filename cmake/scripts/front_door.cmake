@@ -1,9 +1,9 @@
 # Writes include/tepor/tepor.hpp anew: every public header of the numerical rooms, in the order of the house.
-# cmake -P cmake/front_door.cmake   (or `cmake/run script front_door`); the test rooms.include_table says when it is due.
+# `cmake/run script front_door`; the test rooms.include_table says when it is due.
 
 cmake_minimum_required(VERSION 3.24)
 
-cmake_path(SET root NORMALIZE "${CMAKE_CURRENT_LIST_DIR}/..")
+cmake_path(SET root NORMALIZE "${CMAKE_CURRENT_LIST_DIR}/../..")
 set(text [[
 #pragma once
 // The front door: everything numerical. Printing and pictures are in <tepor/output/...>; this header defines nothing.
