@@ -1,0 +1,215 @@
+// Dense elimination of one front, four columns at a time. Read once per instruction set by impl/front.hpp, which sets
+// TEPOR_FRONT_SPACE (the namespace) and TEPOR_FRONT_TARGET (the attribute); alone it defines nothing.
+#if defined(TEPOR_FRONT_SPACE)
+
+namespace tepor::detail::TEPOR_FRONT_SPACE {
+
+/// c(:, 0..3) -= a(:, 0 .. depth-1) b(0..3, 0 .. depth-1)^T for 4 * Tiles rows; all column by column.
+template <std::size_t Tiles>
+TEPOR_FRONT_TARGET inline void update_tile(const double* a, const double* b, Index depth, Index stride, double* c,
+                                           Index c_stride) noexcept {
+    Four sum[Tiles][4];
+    for (std::size_t t = 0; t < Tiles; ++t) {
+        for (Index j = 0; j < 4; ++j) sum[t][j] = *reinterpret_cast<const LooseFour*>(c + j * c_stride + 4 * t);
+    }
+    for (Index k = 0; k < depth; ++k) {
+        Four left[Tiles];
+        for (std::size_t t = 0; t < Tiles; ++t) left[t] = *reinterpret_cast<const LooseFour*>(a + 4 * t);
+        for (int j = 0; j < 4; ++j) {
+            const Four right = {b[j], b[j], b[j], b[j]};
+            for (std::size_t t = 0; t < Tiles; ++t) sum[t][j] -= left[t] * right;
+        }
+        a += stride;
+        b += stride;
+    }
+    for (std::size_t t = 0; t < Tiles; ++t) {
+        for (Index j = 0; j < 4; ++j) *reinterpret_cast<LooseFour*>(c + j * c_stride + 4 * t) = sum[t][j];
+    }
+}
+
+/// The same for `rows` rows, a multiple of four.
+TEPOR_FRONT_TARGET inline void update_columns(const double* a, const double* b, Index depth, Index stride, double* c,
+                                              Index c_stride, Index rows) noexcept {
+    Index i = 0;
+    for (; i + 12 <= rows; i += 12) update_tile<3>(a + i, b, depth, stride, c + i, c_stride);
+    if (i + 8 <= rows) {
+        update_tile<2>(a + i, b, depth, stride, c + i, c_stride);
+        i += 8;
+    }
+    if (i < rows) update_tile<1>(a + i, b, depth, stride, c + i, c_stride);
+}
+
+/// Cholesky of the Width x Width block at the top of `c`, then the same columns of the `rows` rows from `below` on.
+/// The diagonal keeps the inverse of each pivot's root. Returns the first bad pivot or -1.
+template <Index Width>
+TEPOR_FRONT_TARGET inline Index factor_columns(double* c, Index stride, const double* floors, double* below,
+                                               Index rows) noexcept {
+    constexpr std::size_t count = static_cast<std::size_t>(Width);
+    Index bad = -1;
+    double inverse[count];
+    for (Index j = 0; j < Width; ++j) {
+        double pivot = c[j * stride + j];
+        if (!(pivot > floors[j])) {
+            bad = bad < 0 ? j : bad;
+            pivot = 1.0;
+        }
+        inverse[j] = 1.0 / std::sqrt(pivot);
+        c[j * stride + j] = inverse[j];
+        for (Index i = j + 1; i < Width; ++i) c[j * stride + i] *= inverse[j];
+        for (Index k = j + 1; k < Width; ++k) {
+            for (Index i = k; i < Width; ++i) c[k * stride + i] -= c[j * stride + i] * c[j * stride + k];
+        }
+    }
+    for (Index i = 0; i < rows; i += 4) {
+        Four x[count];
+        for (Index j = 0; j < Width; ++j) {
+            Four value = *reinterpret_cast<const LooseFour*>(below + j * stride + i);
+            for (Index k = 0; k < j; ++k) value -= x[k] * c[k * stride + j];
+            x[j] = value * inverse[j];
+        }
+        for (Index j = 0; j < Width; ++j) *reinterpret_cast<LooseFour*>(below + j * stride + i) = x[j];
+    }
+    return bad;
+}
+
+/// Eliminates the pivots of a front: `panel` has `pivots` columns, `stride` apart, first pivot at row `pad`, `top` rows
+/// down to the rows below. `update` (r x r, r = stride - top) takes the Schur complement. `floors[j]` is the least pivot.
+/// Returns the first bad pivot or -1.
+TEPOR_FRONT_TARGET inline Index eliminate_front(double* panel, Index pivots, Index pad, Index top, Index stride,
+                                                const double* floors, double* update) noexcept {
+    // The first block takes the odd columns, so that all others are four wide and start at a multiple of four.
+    const Index odd = pivots % 4 == 0 ? 4 : pivots % 4;
+    const Index body = stride - (pad + odd);
+    Index bad = -1;
+    double* below = panel + pad + odd;
+    switch (odd) {
+    case 1:
+        bad = factor_columns<1>(panel + pad, stride, floors, below, body);
+        break;
+    case 2:
+        bad = factor_columns<2>(panel + pad, stride, floors, below, body);
+        break;
+    case 3:
+        bad = factor_columns<3>(panel + pad, stride, floors, below, body);
+        break;
+    default:
+        bad = factor_columns<4>(panel + pad, stride, floors, below, body);
+        break;
+    }
+    // Depth in slices, so that the rows of a slice stay in the nearest cache while columns pass over them.
+    constexpr Index slice = 96;
+    for (Index j = odd; j < pivots; j += 4) {
+        double* column = panel + j * stride + pad + j;
+        update_columns(panel + pad + j, panel + pad + j, j, stride, column, stride, stride - pad - j);
+        const Index here = factor_columns<4>(column, stride, floors + j, column + 4, stride - pad - j - 4);
+        if (here >= 0 && bad < 0) bad = j + here;
+    }
+    const Index rows = stride - top;
+    for (Index from = 0; from < pivots; from += slice) {
+        const Index depth = pivots - from < slice ? pivots - from : slice;
+        const double* part = panel + from * stride + top;
+        for (Index j = 0; j < rows; j += 4) {
+            update_columns(part + j, part + j, depth, stride, update + j * rows + j, rows, rows - j);
+        }
+    }
+    return bad;
+}
+
+/// x := L^-1 x on the pivots, and sum := L(below) x. `sum` holds stride - top values.
+TEPOR_FRONT_TARGET inline void forward_front(const double* panel, Index pivots, Index pad, Index top, Index stride,
+                                             double* x, double* sum) noexcept {
+    const Index rows = stride - top;
+    for (Index i = 0; i < rows; ++i) sum[i] = 0.0;
+    const Index odd = pivots % 4;
+    for (Index j = 0; j < odd; ++j) {
+        const double* column = panel + j * stride + pad;
+        const double xj = x[j] *= column[j];
+        for (Index i = j + 1; i < pivots; ++i) x[i] -= column[i] * xj;
+        const double* low = panel + j * stride + top;
+        const Four factor = {xj, xj, xj, xj};
+        for (Index i = 0; i < rows; i += 4) {
+            *reinterpret_cast<LooseFour*>(sum + i) += *reinterpret_cast<const LooseFour*>(low + i) * factor;
+        }
+    }
+    for (Index j = odd; j < pivots; j += 4) {
+        const double* c0 = panel + j * stride + pad;
+        const double* c1 = c0 + stride;
+        const double* c2 = c1 + stride;
+        const double* c3 = c2 + stride;
+        const double x0 = x[j] * c0[j];
+        const double x1 = (x[j + 1] - c0[j + 1] * x0) * c1[j + 1];
+        const double x2 = (x[j + 2] - c0[j + 2] * x0 - c1[j + 2] * x1) * c2[j + 2];
+        const double x3 = (x[j + 3] - c0[j + 3] * x0 - c1[j + 3] * x1 - c2[j + 3] * x2) * c3[j + 3];
+        x[j] = x0;
+        x[j + 1] = x1;
+        x[j + 2] = x2;
+        x[j + 3] = x3;
+        const Four f0 = {x0, x0, x0, x0}, f1 = {x1, x1, x1, x1}, f2 = {x2, x2, x2, x2}, f3 = {x3, x3, x3, x3};
+        for (Index i = j + 4; i < pivots; i += 4) {
+            *reinterpret_cast<LooseFour*>(x + i) -=
+                *reinterpret_cast<const LooseFour*>(c0 + i) * f0 + *reinterpret_cast<const LooseFour*>(c1 + i) * f1 +
+                *reinterpret_cast<const LooseFour*>(c2 + i) * f2 + *reinterpret_cast<const LooseFour*>(c3 + i) * f3;
+        }
+        const Index shift = top - pad;
+        for (Index i = shift; i < shift + rows; i += 4) {
+            *reinterpret_cast<LooseFour*>(sum + i - shift) +=
+                *reinterpret_cast<const LooseFour*>(c0 + i) * f0 + *reinterpret_cast<const LooseFour*>(c1 + i) * f1 +
+                *reinterpret_cast<const LooseFour*>(c2 + i) * f2 + *reinterpret_cast<const LooseFour*>(c3 + i) * f3;
+        }
+    }
+}
+
+TEPOR_FRONT_TARGET inline double total(const Four& v) noexcept {
+    return (v[0] + v[2]) + (v[1] + v[3]);
+}
+
+/// x := L^-T (x - L(below)^T y) on the pivots; `y` holds stride - top values, zero in the padding.
+TEPOR_FRONT_TARGET inline void backward_front(const double* panel, Index pivots, Index pad, Index top, Index stride,
+                                              double* x, const double* y) noexcept {
+    const Index rows = stride - top;
+    const Index shift = top - pad;
+    const Index odd = pivots % 4;
+    for (Index j = pivots - 4; j >= odd; j -= 4) {
+        const double* c0 = panel + j * stride + pad;
+        const double* c1 = c0 + stride;
+        const double* c2 = c1 + stride;
+        const double* c3 = c2 + stride;
+        Four s0 = {}, s1 = {}, s2 = {}, s3 = {};
+        for (Index i = j + 4; i < pivots; i += 4) {
+            const Four v = *reinterpret_cast<const LooseFour*>(x + i);
+            s0 += *reinterpret_cast<const LooseFour*>(c0 + i) * v;
+            s1 += *reinterpret_cast<const LooseFour*>(c1 + i) * v;
+            s2 += *reinterpret_cast<const LooseFour*>(c2 + i) * v;
+            s3 += *reinterpret_cast<const LooseFour*>(c3 + i) * v;
+        }
+        for (Index i = 0; i < rows; i += 4) {
+            const Four v = *reinterpret_cast<const LooseFour*>(y + i);
+            s0 += *reinterpret_cast<const LooseFour*>(c0 + shift + i) * v;
+            s1 += *reinterpret_cast<const LooseFour*>(c1 + shift + i) * v;
+            s2 += *reinterpret_cast<const LooseFour*>(c2 + shift + i) * v;
+            s3 += *reinterpret_cast<const LooseFour*>(c3 + shift + i) * v;
+        }
+        const double x3 = (x[j + 3] - total(s3)) * c3[j + 3];
+        const double x2 = (x[j + 2] - total(s2) - c2[j + 3] * x3) * c2[j + 2];
+        const double x1 = (x[j + 1] - total(s1) - c1[j + 3] * x3 - c1[j + 2] * x2) * c1[j + 1];
+        const double x0 = (x[j] - total(s0) - c0[j + 3] * x3 - c0[j + 2] * x2 - c0[j + 1] * x1) * c0[j];
+        x[j] = x0;
+        x[j + 1] = x1;
+        x[j + 2] = x2;
+        x[j + 3] = x3;
+    }
+    for (Index j = odd - 1; j >= 0; --j) {
+        const double* column = panel + j * stride + pad;
+        double sum = x[j];
+        for (Index i = j + 1; i < pivots; ++i) sum -= column[i] * x[i];
+        Four s = {};
+        for (Index i = 0; i < rows; i += 4) {
+            s += *reinterpret_cast<const LooseFour*>(column + shift + i) * *reinterpret_cast<const LooseFour*>(y + i);
+        }
+        x[j] = (sum - total(s)) * column[j];
+    }
+}
+
+} // namespace tepor::detail::TEPOR_FRONT_SPACE
+
+#endif
