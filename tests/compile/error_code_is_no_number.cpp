@@ -1,4 +1,4 @@
-// expect: (no matching function|could not convert|cannot convert).*
+// expect: no matching (function|constructor)
 // A plain number is no cause of an Error: codes are named.
 #include <tepor/base/error.hpp>
 

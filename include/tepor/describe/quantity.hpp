@@ -54,14 +54,10 @@ class Quantity {
         switch (kind_) {
         case Kind::heat_out_through:
         case Kind::heat_from:
-        case Kind::generated_in:
-            return "W";
-        case Kind::stored_in:
-            return "J";
-        case Kind::conductance_between:
-            return "W/K";
-        default:
-            return "degC";
+        case Kind::generated_in: return "W";
+        case Kind::stored_in: return "J";
+        case Kind::conductance_between: return "W/K";
+        default: return "degC";
         }
     }
     [[nodiscard]] bool is_temperature() const noexcept { return unit()[0] == 'd'; }
@@ -143,30 +139,18 @@ inline std::string Quantity::label() const {
         if (!first().empty()) text += " in " + quoted(first());
         return text;
     }
-    case Kind::mean_in:
-        return "mean in " + quoted(first());
-    case Kind::mean_on:
-        return "mean on " + quoted(first());
-    case Kind::mean_around:
-        return detail::text("mean around (", place_.x, ", ", place_.y, ")");
-    case Kind::hottest_in:
-        return "hottest in " + quoted(first());
-    case Kind::coldest_in:
-        return "coldest in " + quoted(first());
-    case Kind::hottest_on:
-        return "hottest on " + quoted(first());
-    case Kind::coldest_on:
-        return "coldest on " + quoted(first());
-    case Kind::heat_out_through:
-        return (sign_ < 0 ? "heat in through " : "heat out through ") + quoted(first());
-    case Kind::heat_from:
-        return "heat from " + quoted(first()) + " to " + quoted(second());
-    case Kind::generated_in:
-        return "generated in " + quoted(first());
-    case Kind::stored_in:
-        return "stored in " + quoted(first());
-    case Kind::conductance_between:
-        return "conductance between " + quoted(first()) + " and " + quoted(second());
+    case Kind::mean_in: return "mean in " + quoted(first());
+    case Kind::mean_on: return "mean on " + quoted(first());
+    case Kind::mean_around: return detail::text("mean around (", place_.x, ", ", place_.y, ")");
+    case Kind::hottest_in: return "hottest in " + quoted(first());
+    case Kind::coldest_in: return "coldest in " + quoted(first());
+    case Kind::hottest_on: return "hottest on " + quoted(first());
+    case Kind::coldest_on: return "coldest on " + quoted(first());
+    case Kind::heat_out_through: return (sign_ < 0 ? "heat in through " : "heat out through ") + quoted(first());
+    case Kind::heat_from: return "heat from " + quoted(first()) + " to " + quoted(second());
+    case Kind::generated_in: return "generated in " + quoted(first());
+    case Kind::stored_in: return "stored in " + quoted(first());
+    case Kind::conductance_between: return "conductance between " + quoted(first()) + " and " + quoted(second());
     }
     return {};
 }
