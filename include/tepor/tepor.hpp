@@ -36,5 +36,6 @@
 #include <tepor/mesh/mesh.hpp>
 
 #include <tepor/linear/banded.hpp>
+#include <tepor/linear/cholesky.hpp>
 #include <tepor/linear/sparse_matrix.hpp>
 #include <tepor/linear/tridiagonal.hpp>

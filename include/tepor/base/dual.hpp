@@ -10,7 +10,7 @@ namespace tepor {
 
 /// A number and its N derivatives, carried through every operation by the chain rule (forward differentiation).
 ///
-/// Operators mix freely with double and int, comparisons look at the values, and the functions of <cmath> are found without
+/// Operators mix freely with double and int, comparisons look at the values, and the functions of `cmath` are found without
 /// a prefix: write `exp(x)`, `pow(x, 0.25)`, `max(x, 0.0)` in a generic law, not `std::exp(x)`.
 ///
 /// Where a derivative is infinite or does not exist, the value is right and the slope is a choice, so that Newton's method
