@@ -33,7 +33,10 @@
 #include <tepor/describe/table.hpp>
 #include <tepor/describe/value.hpp>
 
+#include <tepor/mesh/grading.hpp>
+#include <tepor/mesh/layers.hpp>
 #include <tepor/mesh/mesh.hpp>
+#include <tepor/mesh/stack.hpp>
 
 #include <tepor/linear/banded.hpp>
 #include <tepor/linear/cholesky.hpp>

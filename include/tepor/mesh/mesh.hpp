@@ -7,6 +7,7 @@
 #include <tepor/base/numbers.hpp>
 #include <tepor/base/point.hpp>
 #include <tepor/element/concept.hpp>
+#include <tepor/mesh/stack.hpp>
 #include <vector>
 
 namespace tepor {
@@ -37,12 +38,6 @@ struct CurvedSide {
     Id arc = 0; ///< position in MeshData::arcs
 };
 
-/// Where a node of a 1D stack lies: `fraction` of the way through its layer. Lets a Parameter move the layers.
-struct StackPlace {
-    Id layer = 0;
-    double fraction = 0.0;
-};
-
 /// The arrays of a mesh, without its element type.
 struct MeshData {
     int dim = 0;
@@ -59,6 +54,7 @@ struct MeshData {
     std::vector<MeshFace> faces;
     std::vector<MeshArc> arcs;
     std::vector<CurvedSide> curved; ///< sides on arcs; sides not listed are straight
+    LayerStack stack;               ///< 1D stacks only: what moves the nodes when a Parameter is a thickness
 
     /// Things the maker wants said, such as slivers merged by the drawing's tolerance.
     std::vector<std::string> remarks;
