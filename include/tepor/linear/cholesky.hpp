@@ -4,6 +4,7 @@
 #include <tepor/base/config.hpp>
 #include <tepor/base/numbers.hpp>
 #include <tepor/base/point.hpp>
+#include <tepor/linear/impl/buffer.hpp>
 #include <tepor/linear/impl/front.hpp>
 #include <tepor/linear/impl/supernodes.hpp>
 #include <tepor/linear/sparse_matrix.hpp>
@@ -50,8 +51,8 @@ class SparseCholesky {
     Index singular_row_ = -1;
     detail::SupernodeTree tree_;
     detail::FrontKernels kernels_;
-    std::vector<double> panel_;
-    std::vector<double> stack_[2]; // updates waiting for their parents, by parity of depth
+    detail::Buffer<double> panel_;
+    detail::Buffer<double> stack_[2]; // updates waiting for their parents, by parity of depth
     mutable std::vector<double> work_;
 };
 

@@ -4,39 +4,100 @@
 
 namespace tepor::detail::TEPOR_FRONT_SPACE {
 
-/// c(:, 0..3) -= a(:, 0 .. depth-1) b(0..3, 0 .. depth-1)^T for 4 * Tiles rows; all column by column.
-template <std::size_t Tiles>
-TEPOR_FRONT_TARGET inline void update_tile(const double* a, const double* b, Index depth, Index stride, double* c,
-                                           Index c_stride) noexcept {
-    Four sum[Tiles][4];
-    for (std::size_t t = 0; t < Tiles; ++t) {
-        for (Index j = 0; j < 4; ++j) sum[t][j] = *reinterpret_cast<const LooseFour*>(c + j * c_stride + 4 * t);
+// A macro, since a function that returns 32 bytes in registers has another calling convention per instruction set.
+#define TEPOR_LOAD(p) (*reinterpret_cast<const LooseFour*>(p))
+#define TEPOR_STORE(p) (*reinterpret_cast<LooseFour*>(p))
+
+// c(:, 0..3) -= a(:, 0 .. depth-1) b(0..3, 0 .. depth-1)^T for 4, 8 or 12 rows; all column by column. Written out, since
+// the sums must stay in registers at every optimisation level.
+TEPOR_FRONT_TARGET inline void update_4(const double* a, const double* b, Index depth, Index stride, double* c,
+                                        Index c_stride) noexcept {
+    double *c0 = c, *c1 = c0 + c_stride, *c2 = c1 + c_stride, *c3 = c2 + c_stride;
+    Four s00 = TEPOR_LOAD(c0 + 0), s01 = TEPOR_LOAD(c1 + 0), s02 = TEPOR_LOAD(c2 + 0), s03 = TEPOR_LOAD(c3 + 0);
+    for (Index k = 0; k < depth; ++k, a += stride, b += stride) {
+        const Four l0 = TEPOR_LOAD(a + 0);
+        s00 -= l0 * b[0];
+        s01 -= l0 * b[1];
+        s02 -= l0 * b[2];
+        s03 -= l0 * b[3];
     }
-    for (Index k = 0; k < depth; ++k) {
-        Four left[Tiles];
-        for (std::size_t t = 0; t < Tiles; ++t) left[t] = *reinterpret_cast<const LooseFour*>(a + 4 * t);
-        for (int j = 0; j < 4; ++j) {
-            const Four right = {b[j], b[j], b[j], b[j]};
-            for (std::size_t t = 0; t < Tiles; ++t) sum[t][j] -= left[t] * right;
-        }
-        a += stride;
-        b += stride;
+    TEPOR_STORE(c0 + 0) = s00;
+    TEPOR_STORE(c1 + 0) = s01;
+    TEPOR_STORE(c2 + 0) = s02;
+    TEPOR_STORE(c3 + 0) = s03;
+}
+
+TEPOR_FRONT_TARGET inline void update_8(const double* a, const double* b, Index depth, Index stride, double* c,
+                                        Index c_stride) noexcept {
+    double *c0 = c, *c1 = c0 + c_stride, *c2 = c1 + c_stride, *c3 = c2 + c_stride;
+    Four s00 = TEPOR_LOAD(c0 + 0), s01 = TEPOR_LOAD(c1 + 0), s02 = TEPOR_LOAD(c2 + 0), s03 = TEPOR_LOAD(c3 + 0);
+    Four s10 = TEPOR_LOAD(c0 + 4), s11 = TEPOR_LOAD(c1 + 4), s12 = TEPOR_LOAD(c2 + 4), s13 = TEPOR_LOAD(c3 + 4);
+    for (Index k = 0; k < depth; ++k, a += stride, b += stride) {
+        const Four l0 = TEPOR_LOAD(a + 0), l1 = TEPOR_LOAD(a + 4);
+        s00 -= l0 * b[0];
+        s10 -= l1 * b[0];
+        s01 -= l0 * b[1];
+        s11 -= l1 * b[1];
+        s02 -= l0 * b[2];
+        s12 -= l1 * b[2];
+        s03 -= l0 * b[3];
+        s13 -= l1 * b[3];
     }
-    for (std::size_t t = 0; t < Tiles; ++t) {
-        for (Index j = 0; j < 4; ++j) *reinterpret_cast<LooseFour*>(c + j * c_stride + 4 * t) = sum[t][j];
+    TEPOR_STORE(c0 + 0) = s00;
+    TEPOR_STORE(c1 + 0) = s01;
+    TEPOR_STORE(c2 + 0) = s02;
+    TEPOR_STORE(c3 + 0) = s03;
+    TEPOR_STORE(c0 + 4) = s10;
+    TEPOR_STORE(c1 + 4) = s11;
+    TEPOR_STORE(c2 + 4) = s12;
+    TEPOR_STORE(c3 + 4) = s13;
+}
+
+TEPOR_FRONT_TARGET inline void update_12(const double* a, const double* b, Index depth, Index stride, double* c,
+                                         Index c_stride) noexcept {
+    double *c0 = c, *c1 = c0 + c_stride, *c2 = c1 + c_stride, *c3 = c2 + c_stride;
+    Four s00 = TEPOR_LOAD(c0 + 0), s01 = TEPOR_LOAD(c1 + 0), s02 = TEPOR_LOAD(c2 + 0), s03 = TEPOR_LOAD(c3 + 0);
+    Four s10 = TEPOR_LOAD(c0 + 4), s11 = TEPOR_LOAD(c1 + 4), s12 = TEPOR_LOAD(c2 + 4), s13 = TEPOR_LOAD(c3 + 4);
+    Four s20 = TEPOR_LOAD(c0 + 8), s21 = TEPOR_LOAD(c1 + 8), s22 = TEPOR_LOAD(c2 + 8), s23 = TEPOR_LOAD(c3 + 8);
+    for (Index k = 0; k < depth; ++k, a += stride, b += stride) {
+        const Four l0 = TEPOR_LOAD(a + 0), l1 = TEPOR_LOAD(a + 4), l2 = TEPOR_LOAD(a + 8);
+        s00 -= l0 * b[0];
+        s10 -= l1 * b[0];
+        s20 -= l2 * b[0];
+        s01 -= l0 * b[1];
+        s11 -= l1 * b[1];
+        s21 -= l2 * b[1];
+        s02 -= l0 * b[2];
+        s12 -= l1 * b[2];
+        s22 -= l2 * b[2];
+        s03 -= l0 * b[3];
+        s13 -= l1 * b[3];
+        s23 -= l2 * b[3];
     }
+    TEPOR_STORE(c0 + 0) = s00;
+    TEPOR_STORE(c1 + 0) = s01;
+    TEPOR_STORE(c2 + 0) = s02;
+    TEPOR_STORE(c3 + 0) = s03;
+    TEPOR_STORE(c0 + 4) = s10;
+    TEPOR_STORE(c1 + 4) = s11;
+    TEPOR_STORE(c2 + 4) = s12;
+    TEPOR_STORE(c3 + 4) = s13;
+    TEPOR_STORE(c0 + 8) = s20;
+    TEPOR_STORE(c1 + 8) = s21;
+    TEPOR_STORE(c2 + 8) = s22;
+    TEPOR_STORE(c3 + 8) = s23;
 }
 
 /// The same for `rows` rows, a multiple of four.
 TEPOR_FRONT_TARGET inline void update_columns(const double* a, const double* b, Index depth, Index stride, double* c,
                                               Index c_stride, Index rows) noexcept {
     Index i = 0;
-    for (; i + 12 <= rows; i += 12) update_tile<3>(a + i, b, depth, stride, c + i, c_stride);
+    for (; i + 12 <= rows; i += 12) update_12(a + i, b, depth, stride, c + i, c_stride);
     if (i + 8 <= rows) {
-        update_tile<2>(a + i, b, depth, stride, c + i, c_stride);
+        update_8(a + i, b, depth, stride, c + i, c_stride);
         i += 8;
     }
-    if (i < rows) update_tile<1>(a + i, b, depth, stride, c + i, c_stride);
+    if (i < rows) update_4(a + i, b, depth, stride, c + i, c_stride);
 }
 
 /// Cholesky of the Width x Width block at the top of `c`, then the same columns of the `rows` rows from `below` on.
@@ -60,14 +121,30 @@ TEPOR_FRONT_TARGET inline Index factor_columns(double* c, Index stride, const do
             for (Index i = k; i < Width; ++i) c[k * stride + i] -= c[j * stride + i] * c[j * stride + k];
         }
     }
+    if constexpr (Width == 4) {
+        const double l10 = c[1], l20 = c[2], l30 = c[3], l21 = c[stride + 2], l31 = c[stride + 3],
+                     l32 = c[2 * stride + 3];
+        double *b0 = below, *b1 = b0 + stride, *b2 = b1 + stride, *b3 = b2 + stride;
+        for (Index i = 0; i < rows; i += 4) {
+            const Four x0 = TEPOR_LOAD(b0 + i) * inverse[0];
+            const Four x1 = (TEPOR_LOAD(b1 + i) - x0 * l10) * inverse[1];
+            const Four x2 = (TEPOR_LOAD(b2 + i) - x0 * l20 - x1 * l21) * inverse[2];
+            const Four x3 = (TEPOR_LOAD(b3 + i) - x0 * l30 - x1 * l31 - x2 * l32) * inverse[3];
+            TEPOR_STORE(b0 + i) = x0;
+            TEPOR_STORE(b1 + i) = x1;
+            TEPOR_STORE(b2 + i) = x2;
+            TEPOR_STORE(b3 + i) = x3;
+        }
+        return bad;
+    }
     for (Index i = 0; i < rows; i += 4) {
         Four x[count];
         for (Index j = 0; j < Width; ++j) {
-            Four value = *reinterpret_cast<const LooseFour*>(below + j * stride + i);
+            Four value = TEPOR_LOAD(below + j * stride + i);
             for (Index k = 0; k < j; ++k) value -= x[k] * c[k * stride + j];
             x[j] = value * inverse[j];
         }
-        for (Index j = 0; j < Width; ++j) *reinterpret_cast<LooseFour*>(below + j * stride + i) = x[j];
+        for (Index j = 0; j < Width; ++j) TEPOR_STORE(below + j * stride + i) = x[j];
     }
     return bad;
 }
@@ -83,18 +160,10 @@ TEPOR_FRONT_TARGET inline Index eliminate_front(double* panel, Index pivots, Ind
     Index bad = -1;
     double* below = panel + pad + odd;
     switch (odd) {
-    case 1:
-        bad = factor_columns<1>(panel + pad, stride, floors, below, body);
-        break;
-    case 2:
-        bad = factor_columns<2>(panel + pad, stride, floors, below, body);
-        break;
-    case 3:
-        bad = factor_columns<3>(panel + pad, stride, floors, below, body);
-        break;
-    default:
-        bad = factor_columns<4>(panel + pad, stride, floors, below, body);
-        break;
+    case 1: bad = factor_columns<1>(panel + pad, stride, floors, below, body); break;
+    case 2: bad = factor_columns<2>(panel + pad, stride, floors, below, body); break;
+    case 3: bad = factor_columns<3>(panel + pad, stride, floors, below, body); break;
+    default: bad = factor_columns<4>(panel + pad, stride, floors, below, body); break;
     }
     // Depth in slices, so that the rows of a slice stay in the nearest cache while columns pass over them.
     constexpr Index slice = 96;
@@ -128,7 +197,7 @@ TEPOR_FRONT_TARGET inline void forward_front(const double* panel, Index pivots, 
         const double* low = panel + j * stride + top;
         const Four factor = {xj, xj, xj, xj};
         for (Index i = 0; i < rows; i += 4) {
-            *reinterpret_cast<LooseFour*>(sum + i) += *reinterpret_cast<const LooseFour*>(low + i) * factor;
+            TEPOR_STORE(sum + i) += TEPOR_LOAD(low + i) * factor;
         }
     }
     for (Index j = odd; j < pivots; j += 4) {
@@ -146,15 +215,13 @@ TEPOR_FRONT_TARGET inline void forward_front(const double* panel, Index pivots, 
         x[j + 3] = x3;
         const Four f0 = {x0, x0, x0, x0}, f1 = {x1, x1, x1, x1}, f2 = {x2, x2, x2, x2}, f3 = {x3, x3, x3, x3};
         for (Index i = j + 4; i < pivots; i += 4) {
-            *reinterpret_cast<LooseFour*>(x + i) -=
-                *reinterpret_cast<const LooseFour*>(c0 + i) * f0 + *reinterpret_cast<const LooseFour*>(c1 + i) * f1 +
-                *reinterpret_cast<const LooseFour*>(c2 + i) * f2 + *reinterpret_cast<const LooseFour*>(c3 + i) * f3;
+            TEPOR_STORE(x + i) -=
+                TEPOR_LOAD(c0 + i) * f0 + TEPOR_LOAD(c1 + i) * f1 + TEPOR_LOAD(c2 + i) * f2 + TEPOR_LOAD(c3 + i) * f3;
         }
         const Index shift = top - pad;
         for (Index i = shift; i < shift + rows; i += 4) {
-            *reinterpret_cast<LooseFour*>(sum + i - shift) +=
-                *reinterpret_cast<const LooseFour*>(c0 + i) * f0 + *reinterpret_cast<const LooseFour*>(c1 + i) * f1 +
-                *reinterpret_cast<const LooseFour*>(c2 + i) * f2 + *reinterpret_cast<const LooseFour*>(c3 + i) * f3;
+            TEPOR_STORE(sum + i - shift) +=
+                TEPOR_LOAD(c0 + i) * f0 + TEPOR_LOAD(c1 + i) * f1 + TEPOR_LOAD(c2 + i) * f2 + TEPOR_LOAD(c3 + i) * f3;
         }
     }
 }
@@ -176,18 +243,18 @@ TEPOR_FRONT_TARGET inline void backward_front(const double* panel, Index pivots,
         const double* c3 = c2 + stride;
         Four s0 = {}, s1 = {}, s2 = {}, s3 = {};
         for (Index i = j + 4; i < pivots; i += 4) {
-            const Four v = *reinterpret_cast<const LooseFour*>(x + i);
-            s0 += *reinterpret_cast<const LooseFour*>(c0 + i) * v;
-            s1 += *reinterpret_cast<const LooseFour*>(c1 + i) * v;
-            s2 += *reinterpret_cast<const LooseFour*>(c2 + i) * v;
-            s3 += *reinterpret_cast<const LooseFour*>(c3 + i) * v;
+            const Four v = TEPOR_LOAD(x + i);
+            s0 += TEPOR_LOAD(c0 + i) * v;
+            s1 += TEPOR_LOAD(c1 + i) * v;
+            s2 += TEPOR_LOAD(c2 + i) * v;
+            s3 += TEPOR_LOAD(c3 + i) * v;
         }
         for (Index i = 0; i < rows; i += 4) {
-            const Four v = *reinterpret_cast<const LooseFour*>(y + i);
-            s0 += *reinterpret_cast<const LooseFour*>(c0 + shift + i) * v;
-            s1 += *reinterpret_cast<const LooseFour*>(c1 + shift + i) * v;
-            s2 += *reinterpret_cast<const LooseFour*>(c2 + shift + i) * v;
-            s3 += *reinterpret_cast<const LooseFour*>(c3 + shift + i) * v;
+            const Four v = TEPOR_LOAD(y + i);
+            s0 += TEPOR_LOAD(c0 + shift + i) * v;
+            s1 += TEPOR_LOAD(c1 + shift + i) * v;
+            s2 += TEPOR_LOAD(c2 + shift + i) * v;
+            s3 += TEPOR_LOAD(c3 + shift + i) * v;
         }
         const double x3 = (x[j + 3] - total(s3)) * c3[j + 3];
         const double x2 = (x[j + 2] - total(s2) - c2[j + 3] * x3) * c2[j + 2];
@@ -204,11 +271,14 @@ TEPOR_FRONT_TARGET inline void backward_front(const double* panel, Index pivots,
         for (Index i = j + 1; i < pivots; ++i) sum -= column[i] * x[i];
         Four s = {};
         for (Index i = 0; i < rows; i += 4) {
-            s += *reinterpret_cast<const LooseFour*>(column + shift + i) * *reinterpret_cast<const LooseFour*>(y + i);
+            s += TEPOR_LOAD(column + shift + i) * TEPOR_LOAD(y + i);
         }
         x[j] = (sum - total(s)) * column[j];
     }
 }
+
+#undef TEPOR_LOAD
+#undef TEPOR_STORE
 
 } // namespace tepor::detail::TEPOR_FRONT_SPACE
 

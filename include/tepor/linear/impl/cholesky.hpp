@@ -15,8 +15,8 @@ TEPOR_INLINE void SparseCholesky::analyze(const SparseMatrix& pattern, Index n, 
     const detail::Graph graph = detail::graph_of(pattern, n);
     const std::vector<Id> order = detail::NestedDissection(graph).order(places);
     tree_ = detail::supernode_tree(pattern, graph, detail::elimination_tree(graph, order));
-    panel_.assign(detail::as_size(tree_.panel_size), 0.0);
-    for (int side = 0; side < 2; ++side) stack_[side].resize(detail::as_size(tree_.stack_size[side]));
+    panel_.reset(tree_.panel_size);
+    for (int side = 0; side < 2; ++side) stack_[side].reset(tree_.stack_size[side]);
     work_.resize(detail::as_size(work_size()));
 }
 

@@ -74,6 +74,14 @@ class NestedDissection {
         return out;
     }
 
+    /// std::popcount without a call into the compiler's library, which processors without the instruction would need.
+    static int bits_in(std::uint64_t word) noexcept {
+        word -= (word >> 1) & 0x5555555555555555u;
+        word = (word & 0x3333333333333333u) + ((word >> 2) & 0x3333333333333333u);
+        word = (word + (word >> 4)) & 0x0f0f0f0f0f0f0f0fu;
+        return static_cast<int>((word * 0x0101010101010101u) >> 56);
+    }
+
     /// Stands in for coordinates: x = position in breadth-first order from a far vertex.
     void number_by_breadth(Segment segment) {
         queue_.clear();
@@ -324,6 +332,13 @@ class NestedDissection {
                 link_[as_size(j)][as_size(i / 64)] |= std::uint64_t{1} << (i % 64);
             }
         }
+        std::array<int, leaf_size_> degree;
+        const auto count_links = [&](Index i) {
+            int sum = 0;
+            for (const std::uint64_t word : link_[as_size(i)]) sum += word != 0 ? bits_in(word) : 0;
+            degree[as_size(i)] = sum;
+        };
+        for (Index i = 0; i < n; ++i) count_links(i);
         std::array<Id, leaf_size_> left;
         for (Index i = 0; i < n; ++i) left[as_size(i)] = as_id(i);
         std::array<Item, leaf_size_> ordered;
@@ -331,11 +346,8 @@ class NestedDissection {
             Index best = step;
             int least = std::numeric_limits<int>::max();
             for (Index k = step; k < n; ++k) {
-                const auto& row = link_[as_size(left[as_size(k)])];
-                int degree = 0;
-                for (const std::uint64_t word : row) degree += std::popcount(word);
-                if (degree < least) {
-                    least = degree;
+                if (degree[as_size(left[as_size(k)])] < least) {
+                    least = degree[as_size(left[as_size(k)])];
                     best = k;
                 }
             }
@@ -350,6 +362,7 @@ class NestedDissection {
                     for (Index k = 0; k < words_; ++k) other[as_size(k)] |= row[as_size(k)];
                     other[as_size(u / 64)] &= ~(std::uint64_t{1} << (u % 64));
                     other[as_size(v / 64)] &= ~(std::uint64_t{1} << (v % 64));
+                    if (u < n) count_links(u);
                 }
             }
         }
