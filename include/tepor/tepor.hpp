@@ -33,10 +33,20 @@
 #include <tepor/describe/table.hpp>
 #include <tepor/describe/value.hpp>
 
+#include <tepor/mesh/cell_kind.hpp>
+#include <tepor/mesh/curve.hpp>
+#include <tepor/mesh/edge_grid.hpp>
+#include <tepor/mesh/from_arrays.hpp>
 #include <tepor/mesh/grading.hpp>
+#include <tepor/mesh/inner_nodes.hpp>
 #include <tepor/mesh/layers.hpp>
+#include <tepor/mesh/locate.hpp>
 #include <tepor/mesh/mesh.hpp>
+#include <tepor/mesh/refine.hpp>
+#include <tepor/mesh/sides.hpp>
+#include <tepor/mesh/space_order.hpp>
 #include <tepor/mesh/stack.hpp>
+#include <tepor/mesh/verify.hpp>
 
 #include <tepor/linear/banded.hpp>
 #include <tepor/linear/cholesky.hpp>

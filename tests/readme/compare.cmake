@@ -1,0 +1,11 @@
+# Runs PROGRAM; when the file EXPECTED exists, what the program prints must be equal to it.
+execute_process(COMMAND "${PROGRAM}" RESULT_VARIABLE code OUTPUT_VARIABLE printed ERROR_VARIABLE err)
+if(NOT code EQUAL 0)
+    message(FATAL_ERROR "the program failed: ${code}\n${printed}${err}")
+endif()
+if(EXISTS "${EXPECTED}")
+    file(READ "${EXPECTED}" expected)
+    if(NOT printed STREQUAL expected)
+        message(FATAL_ERROR "README.md says\n${expected}and the program prints\n${printed}")
+    endif()
+endif()
