@@ -43,7 +43,7 @@ class Value {
     [[nodiscard]] bool is_kelvin() const noexcept { return kelvin_; }
 
   private:
-    friend Value kelvin(double temperature);
+    friend Value kelvin(Number temperature);
 
     Kind kind_ = Kind::none;
     bool kelvin_ = false;
@@ -56,8 +56,8 @@ class Value {
 
 /// A low absolute temperature [K] that is meant: in a kelvin body a radiating face refuses numbers below 100 otherwise,
 /// because they are nearly always degrees Celsius by mistake.
-inline Value kelvin(double temperature) {
-    Value v(temperature);
+inline Value kelvin(Number temperature) {
+    Value v(std::move(temperature));
     v.kelvin_ = true;
     return v;
 }

@@ -1,0 +1,56 @@
+#pragma once
+// CellKernels: the batch functions of one element type behind one virtual call per block of cells.
+
+#include <memory>
+#include <tepor/assembly/block.hpp>
+#include <tepor/base/frame.hpp>
+#include <tepor/base/numbers.hpp>
+
+namespace tepor {
+
+/// The element integrals of one element type, rule and frame with their types erased. A cell law of its own kind (such as
+/// the exact segment) derives from it directly; `Kernels<E>` makes one of any Element.
+class CellKernels {
+  public:
+    CellKernels() = default;
+    CellKernels(const CellKernels&) = delete;
+    CellKernels& operator=(const CellKernels&) = delete;
+    virtual ~CellKernels() = default;
+
+    int dim = 0;
+    int order = 0;
+    int nodes = 0;
+    int points = 0; ///< quadrature points per cell
+    int sides = 0;
+    int side_nodes = 0;
+    int side_points = 0;
+    /// Steady nodal values are exact for any conductivity of place and any source (the exact segment).
+    bool exact = false;
+
+    /// Local cell node that is node j of side s.
+    [[nodiscard]] virtual int side_node(int s, int j) const = 0;
+
+    /// Fills places, weights, temperatures at points and gradients from node data.
+    virtual void open(CellBlock& block) const = 0;
+
+    /// Element residual, matrix and slope from the coefficients; what is not wanted is left alone.
+    virtual void form(CellBlock& block, Wanted wanted) const = 0;
+
+    /// As open and form, for sides. `lumped` puts the quadrature points on the nodes.
+    virtual void open_side(SideBlock& block, bool lumped) const = 0;
+    virtual void form_side(SideBlock& block, Wanted wanted, bool lumped) const = 0;
+
+    /// Shape functions at quadrature point q of a cell or a side, for functionals; null for cell laws without fixed ones.
+    [[nodiscard]] virtual const double* shape_at(int q) const = 0;
+    [[nodiscard]] virtual const double* side_shape_at(int q, bool lumped) const = 0;
+
+    /// Shape functions (`nodes` entries) and reference gradients (`nodes x dim`, node by node) at reference coordinates.
+    virtual void shape(const double* xi, double* values, double* gradients) const = 0;
+
+    /// Reference coordinates of node i (`dim` entries).
+    virtual void reference_node(int i, double* xi) const = 0;
+
+    [[nodiscard]] Workspace workspace() const { return {nodes, points, side_nodes, side_points}; }
+};
+
+} // namespace tepor

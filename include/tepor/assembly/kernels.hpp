@@ -1,0 +1,159 @@
+#pragma once
+// Kernels<E>: the element integrals of an Element, written as loops over a block of cells.
+
+#include <cmath>
+#include <tepor/assembly/cell_kernels.hpp>
+#include <tepor/element/concept.hpp>
+#include <tepor/element/segment.hpp>
+#include <tepor/quadrature/rules.hpp>
+#include <vector>
+
+namespace tepor {
+
+/// Element integrals of E with any quadrature rule and frame.
+///
+/// The weak form on paper: r_i = int k grad T . grad N_i + s N_i, its derivative by T_j, and on sides int q N_i. The
+/// default rules are exact for the capacity matrix of straight cells in every frame of the element's dimension.
+/// Cost per block: O(points nodes^2) for the matrix, O(points nodes) for the residual; nothing is allocated.
+template <Element E>
+class Kernels final : public CellKernels {
+  public:
+    using Side = typename E::Side;
+
+    /// @param extra_degree raises the degree of the cell and side rules, for sources or conductivities that vary a lot
+    explicit Kernels(Frame frame = {}, int extra_degree = 0)
+        : Kernels(rule_for<E>(2 * E::order + frame.power() + extra_degree), frame, extra_degree) {}
+
+    /// With a rule of one's own on the cells.
+    template <QuadratureRule R>
+    Kernels(const R& rule, Frame frame, int extra_degree = 0) : power_(frame.power()), factor_(frame.factor(E::dim)) {
+        dim = E::dim;
+        order = E::order;
+        nodes = E::nodes;
+        sides = E::sides;
+        side_nodes = Side::nodes;
+        points = static_cast<int>(rule.size());
+        for (Index q = 0; q < rule.size(); ++q) {
+            const typename E::point xi = rule.point(q);
+            rule_weight_.push_back(rule.weight(q));
+            const auto n = E::shape(xi);
+            const auto g = E::gradient(xi);
+            for (int i = 0; i < E::nodes; ++i) {
+                shape_.push_back(n[i]);
+                for (int d = 0; d < E::dim; ++d) reference_gradient_.push_back(g(i, d));
+            }
+        }
+        if constexpr (E::dim == 2) {
+            const Rule<1> along = line_rule(2 * E::order + power_ + extra_degree);
+            side_points = static_cast<int>(along.size());
+            for (Index q = 0; q < along.size(); ++q) add_side_point(side_, along.point(q)[0], along.weight(q));
+            const Rule<1> nodal = nodal_rule();
+            for (Index q = 0; q < nodal.size(); ++q) add_side_point(lumped_side_, nodal.point(q)[0], nodal.weight(q));
+            if (static_cast<int>(nodal.size()) > side_points) side_points = static_cast<int>(nodal.size());
+        } else {
+            side_points = 1;
+        }
+    }
+
+    [[nodiscard]] int side_node(int s, int j) const override { return E::side_node(s, j); }
+    [[nodiscard]] const double* shape_at(int q) const override {
+        return shape_.data() + static_cast<Index>(q) * E::nodes;
+    }
+    [[nodiscard]] const double* side_shape_at(int q, bool lumped) const override {
+        if constexpr (E::dim == 1) {
+            static constexpr double one = 1.0;
+            return &one;
+        } else {
+            return (lumped ? lumped_side_ : side_).shape.data() + static_cast<Index>(q) * Side::nodes;
+        }
+    }
+    void shape(const double* xi, double* values, double* gradients) const override {
+        typename E::point at;
+        for (int d = 0; d < E::dim; ++d) at[d] = xi[d];
+        const auto n = E::shape(at);
+        const auto g = E::gradient(at);
+        for (int i = 0; i < E::nodes; ++i) {
+            values[i] = n[i];
+            for (int d = 0; d < E::dim; ++d) gradients[i * E::dim + d] = g(i, d);
+        }
+    }
+    void reference_node(int i, double* xi) const override {
+        const auto at = E::reference_node(i);
+        for (int d = 0; d < E::dim; ++d) xi[d] = at[d];
+    }
+
+    void open(CellBlock& block) const override;
+    void form(CellBlock& block, Wanted wanted) const override;
+    void open_side(SideBlock& block, bool lumped) const override;
+    void form_side(SideBlock& block, Wanted wanted, bool lumped) const override;
+
+  private:
+    static constexpr int W = block_width;
+    static constexpr int N = E::nodes;
+    /// Straight simplices: the gradients are the same at every point.
+    static constexpr bool constant_gradient =
+        (E::shape_of_cell == CellShape::triangle || E::shape_of_cell == CellShape::segment) && E::order == 1;
+
+    struct SideTable {
+        std::vector<double> weight, shape, gradient;
+    };
+
+    void add_side_point(SideTable& table, double t, double weight) {
+        if constexpr (E::dim == 2) {
+            typename Side::point xi;
+            xi[0] = t;
+            const auto n = Side::shape(xi);
+            const auto g = Side::gradient(xi);
+            table.weight.push_back(weight);
+            for (int i = 0; i < Side::nodes; ++i) {
+                table.shape.push_back(n[i]);
+                table.gradient.push_back(g(i, 0));
+            }
+        }
+    }
+
+    /// The rule with its points on the side's nodes: trapezoid, Simpson, three-eighths.
+    static Rule<1> nodal_rule() {
+        Rule<1> rule(1);
+        const auto add = [&rule](double t, double weight) {
+            typename Rule<1>::point_type xi;
+            xi[0] = t;
+            rule.add(xi, weight);
+        };
+        if constexpr (Side::nodes == 2) {
+            add(0.0, 0.5);
+            add(1.0, 0.5);
+        } else if constexpr (Side::nodes == 3) {
+            add(0.0, 1.0 / 6.0);
+            add(1.0, 1.0 / 6.0);
+            add(0.5, 4.0 / 6.0);
+        } else {
+            add(0.0, 1.0 / 8.0);
+            add(1.0, 1.0 / 8.0);
+            add(1.0 / 3.0, 3.0 / 8.0);
+            add(2.0 / 3.0, 3.0 / 8.0);
+        }
+        return rule;
+    }
+
+    /// factor * r^n, the measure of the frame.
+    [[nodiscard]] double measure(double r) const noexcept {
+        return power_ == 0 ? factor_ : (power_ == 1 ? factor_ * r : factor_ * r * r);
+    }
+
+    void map_segments(CellBlock& block) const;
+    void map_plane(CellBlock& block) const;
+    void add_conduction(CellBlock& block, Wanted wanted) const;
+    void add_uniform_conduction(CellBlock& block, Wanted wanted) const;
+    void add_source(CellBlock& block, Wanted wanted) const;
+
+    int power_;
+    double factor_;
+    std::vector<double> rule_weight_, shape_, reference_gradient_;
+    SideTable side_, lumped_side_;
+};
+
+} // namespace tepor
+
+#include <tepor/assembly/kernels_cells.hpp>
+#include <tepor/assembly/kernels_sides.hpp>

@@ -1,0 +1,269 @@
+#pragma once
+// The cell integrals of Kernels<E>; included by kernels.hpp.
+
+#include <tepor/assembly/kernels.hpp>
+
+namespace tepor {
+
+template <Element E>
+void Kernels<E>::map_segments(CellBlock& block) const {
+    const double* TEPOR_RESTRICT x = block.x;
+    for (int q = 0; q < points; ++q) {
+        const double* n = shape_.data() + static_cast<Index>(q) * N;
+        const double* g = reference_gradient_.data() + static_cast<Index>(q) * N;
+        double* TEPOR_RESTRICT px = block.point_x + q * W;
+        double* TEPOR_RESTRICT weight = block.weight + q * W;
+        double jacobian[W];
+        for (int c = 0; c < W; ++c) px[c] = jacobian[c] = 0.0;
+        for (int i = 0; i < N; ++i)
+            for (int c = 0; c < W; ++c) {
+                px[c] += n[i] * x[i * W + c];
+                jacobian[c] += g[i] * x[i * W + c];
+            }
+        const double w = rule_weight_[detail::as_size(q)];
+        for (int c = 0; c < W; ++c) weight[c] = w * jacobian[c] * measure(px[c]);
+        for (int i = 0; i < N; ++i) {
+            double* TEPOR_RESTRICT gx = block.gradient_x + (q * N + i) * W;
+            for (int c = 0; c < W; ++c) gx[c] = g[i] / jacobian[c];
+        }
+    }
+}
+
+template <Element E>
+void Kernels<E>::map_plane(CellBlock& block) const {
+    const double* TEPOR_RESTRICT x = block.x;
+    const double* TEPOR_RESTRICT y = block.y;
+    for (int q = 0; q < points; ++q) {
+        const double* n = shape_.data() + static_cast<Index>(q) * N;
+        const double* g = reference_gradient_.data() + static_cast<Index>(q) * 2 * N;
+        double* TEPOR_RESTRICT px = block.point_x + q * W;
+        double* TEPOR_RESTRICT py = block.point_y + q * W;
+        for (int c = 0; c < W; ++c) px[c] = py[c] = 0.0;
+        for (int i = 0; i < N; ++i)
+            for (int c = 0; c < W; ++c) {
+                px[c] += n[i] * x[i * W + c];
+                py[c] += n[i] * y[i * W + c];
+            }
+        double* TEPOR_RESTRICT weight = block.weight + q * W;
+        const double w = rule_weight_[detail::as_size(q)];
+        if (constant_gradient && q > 0) {
+            const double ratio = w / rule_weight_[0];
+            if (power_ == 0)
+                for (int c = 0; c < W; ++c) weight[c] = ratio * block.weight[c];
+            else
+                for (int c = 0; c < W; ++c) weight[c] = ratio * block.weight[c] * (px[c] / block.point_x[c]);
+            for (int i = 0; i < N * W; ++i) {
+                block.gradient_x[q * N * W + i] = block.gradient_x[i];
+                block.gradient_y[q * N * W + i] = block.gradient_y[i];
+            }
+            continue;
+        }
+        double xx[W];
+        double xe[W];
+        double yx[W];
+        double ye[W];
+        double inverse[W];
+        for (int c = 0; c < W; ++c) xx[c] = xe[c] = yx[c] = ye[c] = 0.0;
+        for (int i = 0; i < N; ++i)
+            for (int c = 0; c < W; ++c) {
+                xx[c] += g[2 * i] * x[i * W + c];
+                xe[c] += g[2 * i + 1] * x[i * W + c];
+                yx[c] += g[2 * i] * y[i * W + c];
+                ye[c] += g[2 * i + 1] * y[i * W + c];
+            }
+        for (int c = 0; c < W; ++c) {
+            const double jacobian = xx[c] * ye[c] - xe[c] * yx[c];
+            weight[c] = w * jacobian * measure(px[c]);
+            inverse[c] = 1.0 / jacobian;
+        }
+        for (int i = 0; i < N; ++i) {
+            double* TEPOR_RESTRICT gx = block.gradient_x + (q * N + i) * W;
+            double* TEPOR_RESTRICT gy = block.gradient_y + (q * N + i) * W;
+            for (int c = 0; c < W; ++c) {
+                gx[c] = (ye[c] * g[2 * i] - yx[c] * g[2 * i + 1]) * inverse[c];
+                gy[c] = (xx[c] * g[2 * i + 1] - xe[c] * g[2 * i]) * inverse[c];
+            }
+        }
+    }
+}
+
+template <Element E>
+void Kernels<E>::open(CellBlock& block) const {
+    if constexpr (E::dim == 1) {
+        map_segments(block);
+    } else {
+        map_plane(block);
+    }
+    if (!block.T) return;
+    for (int q = 0; q < points; ++q) {
+        const double* n = shape_.data() + static_cast<Index>(q) * N;
+        double* TEPOR_RESTRICT T = block.point_T + q * W;
+        for (int c = 0; c < W; ++c) T[c] = 0.0;
+        for (int i = 0; i < N; ++i)
+            for (int c = 0; c < W; ++c) T[c] += n[i] * block.T[i * W + c];
+    }
+}
+
+template <Element E>
+void Kernels<E>::form(CellBlock& block, Wanted wanted) const {
+    if (wanted.residual)
+        for (int i = 0; i < N * W; ++i) block.residual[i] = 0.0;
+    if (wanted.matrix)
+        for (int i = 0; i < N * (N + 1) / 2 * W; ++i) block.matrix[i] = 0.0;
+    if (wanted.slope)
+        for (int i = 0; i < N * N * W; ++i) block.slope[i] = 0.0;
+    if (block.conductivities > 0) add_conduction(block, wanted);
+    if (block.source) add_source(block, wanted);
+}
+
+template <Element E>
+void Kernels<E>::add_uniform_conduction(CellBlock& block, Wanted wanted) const {
+    // constant gradients: the point weights add up first
+    double total[W];
+    for (int c = 0; c < W; ++c) total[c] = 0.0;
+    for (int q = 0; q < points; ++q) {
+        const double* TEPOR_RESTRICT weight = block.weight + q * W;
+        if (block.k_uniform)
+            for (int c = 0; c < W; ++c) total[c] += weight[c] * block.k[0][0];
+        else
+            for (int c = 0; c < W; ++c) total[c] += weight[c] * block.k[0][q * W + c];
+    }
+    const double* TEPOR_RESTRICT gx = block.gradient_x;
+    const double* TEPOR_RESTRICT gy = block.gradient_y;
+    if (wanted.matrix) {
+        int pair = 0;
+        for (int i = 0; i < N; ++i)
+            for (int j = 0; j <= i; ++j, ++pair) {
+                double* TEPOR_RESTRICT m = block.matrix + pair * W;
+                if constexpr (E::dim == 1)
+                    for (int c = 0; c < W; ++c) m[c] += total[c] * (gx[i * W + c] * gx[j * W + c]);
+                else
+                    for (int c = 0; c < W; ++c)
+                        m[c] += total[c] * (gx[i * W + c] * gx[j * W + c] + gy[i * W + c] * gy[j * W + c]);
+            }
+    }
+    if (wanted.residual) {
+        double tx[W];
+        double ty[W];
+        for (int c = 0; c < W; ++c) tx[c] = ty[c] = 0.0;
+        for (int i = 0; i < N; ++i)
+            for (int c = 0; c < W; ++c) {
+                tx[c] += gx[i * W + c] * block.T[i * W + c];
+                if constexpr (E::dim == 2) ty[c] += gy[i * W + c] * block.T[i * W + c];
+            }
+        for (int i = 0; i < N; ++i) {
+            double* TEPOR_RESTRICT r = block.residual + i * W;
+            if constexpr (E::dim == 1)
+                for (int c = 0; c < W; ++c) r[c] += total[c] * (gx[i * W + c] * tx[c]);
+            else
+                for (int c = 0; c < W; ++c) r[c] += total[c] * (gx[i * W + c] * tx[c] + gy[i * W + c] * ty[c]);
+        }
+    }
+}
+
+template <Element E>
+void Kernels<E>::add_conduction(CellBlock& block, Wanted wanted) const {
+    const bool isotropic = block.conductivities == 1;
+    if constexpr (constant_gradient)
+        if (isotropic && !wanted.slope) return add_uniform_conduction(block, wanted);
+    const bool two = E::dim == 2;
+    constexpr auto entries = detail::as_size(N * W);
+    double ax[entries]; // k grad N_i at a point, times its weight
+    double ay[entries];
+    double tx[W];
+    double ty[W];
+    for (int q = 0; q < points; ++q) {
+        const double* TEPOR_RESTRICT weight = block.weight + q * W;
+        const double* TEPOR_RESTRICT gx = block.gradient_x + q * N * W;
+        const double* TEPOR_RESTRICT gy = block.gradient_y + q * N * W;
+        double kxx[W];
+        double kyy[W];
+        double kxy[W];
+        for (int c = 0; c < W; ++c) {
+            const int at = block.k_uniform ? 0 : q * W + c;
+            kxx[c] = weight[c] * block.k[0][at];
+            kyy[c] = isotropic ? kxx[c] : weight[c] * block.k[1][at];
+            kxy[c] = block.conductivities == 3 ? weight[c] * block.k[2][at] : 0.0;
+        }
+        const bool crossed = block.conductivities == 3;
+        for (int i = 0; i < N; ++i)
+            for (int c = 0; c < W; ++c) {
+                if constexpr (E::dim == 1) {
+                    ax[i * W + c] = kxx[c] * gx[i * W + c];
+                } else {
+                    ax[i * W + c] = kxx[c] * gx[i * W + c] + (crossed ? kxy[c] * gy[i * W + c] : 0.0);
+                    ay[i * W + c] = kyy[c] * gy[i * W + c] + (crossed ? kxy[c] * gx[i * W + c] : 0.0);
+                }
+            }
+        if (wanted.matrix) {
+            int pair = 0;
+            for (int i = 0; i < N; ++i)
+                for (int j = 0; j <= i; ++j, ++pair) {
+                    double* TEPOR_RESTRICT m = block.matrix + pair * W;
+                    if constexpr (E::dim == 1)
+                        for (int c = 0; c < W; ++c) m[c] += ax[i * W + c] * gx[j * W + c];
+                    else
+                        for (int c = 0; c < W; ++c)
+                            m[c] += ax[i * W + c] * gx[j * W + c] + ay[i * W + c] * gy[j * W + c];
+                }
+        }
+        if (!wanted.residual && !wanted.slope) continue;
+        for (int c = 0; c < W; ++c) tx[c] = ty[c] = 0.0;
+        for (int i = 0; i < N; ++i)
+            for (int c = 0; c < W; ++c) {
+                tx[c] += gx[i * W + c] * block.T[i * W + c];
+                if constexpr (E::dim == 2) ty[c] += gy[i * W + c] * block.T[i * W + c];
+            }
+        if (wanted.residual)
+            for (int i = 0; i < N; ++i) {
+                double* TEPOR_RESTRICT r = block.residual + i * W;
+                for (int c = 0; c < W; ++c) r[c] += ax[i * W + c] * tx[c] + (two ? ay[i * W + c] * ty[c] : 0.0);
+            }
+        if (!wanted.slope) continue;
+        // k' N_j (grad T . grad N_i): the tensor's slope on grad T, then on grad N_i
+        const double* n = shape_.data() + static_cast<Index>(q) * N;
+        double fx[W];
+        double fy[W];
+        for (int c = 0; c < W; ++c) {
+            const int at = q * W + c;
+            const double dxx = block.k_slope[0] ? weight[c] * block.k_slope[0][at] : 0.0;
+            const double dyy = isotropic ? dxx : (block.k_slope[1] ? weight[c] * block.k_slope[1][at] : 0.0);
+            const double dxy = block.k_slope[2] ? weight[c] * block.k_slope[2][at] : 0.0;
+            fx[c] = dxx * tx[c] + dxy * ty[c];
+            fy[c] = dyy * ty[c] + dxy * tx[c];
+        }
+        for (int i = 0; i < N; ++i) {
+            double along[W];
+            for (int c = 0; c < W; ++c) along[c] = fx[c] * gx[i * W + c] + (two ? fy[c] * gy[i * W + c] : 0.0);
+            for (int j = 0; j < N; ++j) {
+                double* TEPOR_RESTRICT u = block.slope + (i * N + j) * W;
+                for (int c = 0; c < W; ++c) u[c] += along[c] * n[j];
+            }
+        }
+    }
+}
+
+template <Element E>
+void Kernels<E>::add_source(CellBlock& block, Wanted wanted) const {
+    for (int q = 0; q < points; ++q) {
+        const double* n = shape_.data() + static_cast<Index>(q) * N;
+        const double* TEPOR_RESTRICT weight = block.weight + q * W;
+        if (wanted.residual)
+            for (int i = 0; i < N; ++i) {
+                double* TEPOR_RESTRICT r = block.residual + i * W;
+                for (int c = 0; c < W; ++c) r[c] += weight[c] * block.source[q * W + c] * n[i];
+            }
+        if (!wanted.matrix || !block.source_slope) continue;
+        double s[W];
+        for (int c = 0; c < W; ++c) s[c] = weight[c] * block.source_slope[q * W + c];
+        int pair = 0;
+        for (int i = 0; i < N; ++i)
+            for (int j = 0; j <= i; ++j, ++pair) {
+                const double nn = n[i] * n[j];
+                double* TEPOR_RESTRICT m = block.matrix + pair * W;
+                for (int c = 0; c < W; ++c) m[c] += s[c] * nn;
+            }
+    }
+}
+
+} // namespace tepor

@@ -1,0 +1,49 @@
+#pragma once
+// One pass over a model: residual, matrix and heat accounts at a temperature.
+
+#include <tepor/assembly/block.hpp>
+#include <tepor/base/config.hpp>
+#include <tepor/body/model.hpp>
+#include <vector>
+
+namespace tepor {
+
+/// Heat by statement [W], positive out of the body except where it says generated.
+struct Accounts {
+    std::vector<double> generated; ///< per region, Generation
+    std::vector<double> side_loss; ///< per region, SideFilm
+    std::vector<double> local;     ///< per LocalHeat
+    std::vector<double> face;      ///< per face term, face after face: film, radiation, flux
+    std::vector<double> contact;   ///< per contact, from its first region to its second
+};
+
+/// What a pass is given, asked for, and found.
+struct Pass {
+    const double* T = nullptr; ///< all unknowns; null means zero everywhere (linear models)
+    TimeSpan time{};
+    bool conduction = true; ///< cells conduct (off: only what acts on the body)
+
+    double* residual =
+        nullptr; ///< all unknowns, set (not added to); null: not wanted. Heat into the body that T would need [W]
+    SparseMatrix* matrix = nullptr; ///< lower (and upper when the model has a slope) set; null: not wanted
+    Accounts* accounts = nullptr;   ///< null: not wanted
+
+    double side_traffic = 0.0;   ///< sum of |flow| over the cell sides of faces, prescribed ones excepted
+    double source_traffic = 0.0; ///< sum of |source| over cells
+    Fault fault{};               ///< the first evaluation that cannot be used; results are then incomplete
+};
+
+/// Evaluates the weak form of the model: r_i = int k grad T . grad N_i - sources + what leaves through faces and contacts.
+/// At a free unknown of a solution r is zero; at a prescribed one it is the heat that enters the body there.
+/// Cost O(cells points nodes^2) with the matrix, O(cells points nodes) without; allocates nothing but the contents of
+/// `accounts` (and laws with more than 16 parameters).
+TEPOR_INLINE void assemble(const Model& model, const Values& values, Workspace& work, Pass& pass);
+
+/// Gives a matrix the model's pattern, values zero; `upper` only when the model has an unsymmetric derivative.
+TEPOR_INLINE void prepare_matrix(const Model& model, SparseMatrix& matrix);
+
+} // namespace tepor
+
+#ifndef TEPOR_COMPILED
+#include <tepor/body/impl/assemble.hpp>
+#endif
