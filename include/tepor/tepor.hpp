@@ -46,9 +46,25 @@
 #include <tepor/mesh/sides.hpp>
 #include <tepor/mesh/space_order.hpp>
 #include <tepor/mesh/stack.hpp>
+#include <tepor/mesh/tile_axis.hpp>
+#include <tepor/mesh/tiles.hpp>
 #include <tepor/mesh/verify.hpp>
+
+#include <tepor/assembly/block.hpp>
+#include <tepor/assembly/cell_kernels.hpp>
+#include <tepor/assembly/kernels.hpp>
+#include <tepor/assembly/kernels_cells.hpp>
+#include <tepor/assembly/kernels_sides.hpp>
 
 #include <tepor/linear/banded.hpp>
 #include <tepor/linear/cholesky.hpp>
 #include <tepor/linear/sparse_matrix.hpp>
 #include <tepor/linear/tridiagonal.hpp>
+
+#include <tepor/body/assemble.hpp>
+#include <tepor/body/body.hpp>
+#include <tepor/body/coefficient.hpp>
+#include <tepor/body/model.hpp>
+#include <tepor/body/pattern.hpp>
+#include <tepor/body/split.hpp>
+#include <tepor/body/statements.hpp>

@@ -3,35 +3,24 @@
 #include <cmath>
 #include <doctest/doctest.h>
 #include <limits>
-#include <string>
 #include <tepor/base/error.hpp>
 #include <tepor/describe/parameter.hpp>
 #include <tepor/element/map.hpp>
 #include <tepor/element/segment.hpp>
 #include <tepor/mesh/layers.hpp>
+#include <tepor/mesh/refine.hpp>
+#include <tepor/mesh/verify.hpp>
 #include <tests/support/archetypes.hpp>
+#include <tests/support/refused.hpp>
 
 using namespace tepor;
+using test::check_refused;
 
 namespace {
 
 const std::vector<Layer> wall{{.region = "working lining", .thickness = 0.230, .cells = 8},
                               {.region = "backing", .thickness = 0.115, .cells = 6, .grading = finer_at_both_ends(3.0)},
                               {.region = "casing", .thickness = 0.006}};
-
-/// The code, offender and message of what `make` throws.
-template <class Make>
-void check_refused(Make make, ErrorCode code, const std::string& offender, const std::string& words) {
-    try {
-        make();
-        FAIL_CHECK("no error, expected: " << words);
-    } catch (const Error& error) {
-        CHECK(error.code() == code);
-        CHECK(error.offender() == offender);
-        CAPTURE(error.what());
-        CHECK(std::string(error.what()).find(words) != std::string::npos);
-    }
-}
 
 /// A cell law with its two end nodes and no shape functions.
 struct TwoEnds {
@@ -47,6 +36,7 @@ struct TwoEnds {
 TEST_CASE_TEMPLATE("layers fill the stack from left to right without gap or overlap", E, Segment<1>, Segment<2>,
                    Segment<3>, test::BareSegment) {
     const Mesh<E> mesh = layers<E>(wall, Planar{.area = 2.0}, {.start = -0.1});
+    verify(mesh).or_throw();
     CHECK(mesh.cell_count() == 15);
     CHECK(mesh.node_count() == 15 * E::order + 1);
     CHECK(mesh.frame.factor(1) == 2.0);
@@ -129,6 +119,23 @@ TEST_CASE("a parameter as thickness is kept, and moving the nodes equals meshing
     const auto anew = layers<Segment<3>>(stack, Cylindrical{.length = 3.0}, {.start = 0.31});
     CHECK(mesh.nodes == anew.nodes);
     CHECK(mesh.cells == anew.cells);
+}
+
+TEST_CASE_TEMPLATE("a refined stack moves with its parameters as the stack it came from", E, Segment<1>, Segment<2>,
+                   Segment<3>) {
+    auto fine = refined(refined(layers<E>(wall, Planar{}, {.start = 0.5})));
+    REQUIRE(fine.stack.given());
+    CHECK(fine.stack.layer_of_cell.size() == fine.region.size());
+    const double as_made[] = {0.230, 0.115, 0.006};
+    const auto before = fine.nodes;
+    detail::place_nodes(fine.stack, 0.5, as_made, fine.nodes.data());
+    for (std::size_t n = 0; n < before.size(); ++n) CHECK(distance(before[n], fine.nodes[n]) <= 1e-15);
+    const double moved[] = {0.1, 0.3, 0.02};
+    auto coarse = layers<E>(wall, Planar{}, {.start = 0.5});
+    detail::place_nodes(coarse.stack, 0.25, moved, coarse.nodes.data());
+    const auto expected = refined(refined(coarse));
+    detail::place_nodes(fine.stack, 0.25, moved, fine.nodes.data());
+    for (std::size_t n = 0; n < before.size(); ++n) CHECK(distance(expected.nodes[n], fine.nodes[n]) <= 1e-15);
 }
 
 TEST_CASE("a node's place says how it moves with each thickness") {

@@ -103,6 +103,23 @@ TEPOR_INLINE ChildTable make_child_table(const CellKind& kind) {
     return table;
 }
 
+/// The places of the finer nodes in the layers of a 1D stack, so that a Parameter moves them as it moved the coarse ones.
+TEPOR_INLINE void refine_stack(const MeshData& coarse, const ChildTable& table, MeshData& fine) {
+    const LayerStack& from = coarse.stack;
+    LayerStack& to = fine.stack;
+    to.start = from.start;
+    to.thickness = from.thickness;
+    to.place.resize(fine.nodes.size());
+    const Id* node = fine.cells.data(); // children follow each other as their parents do
+    for (Index c = 0; c < coarse.cell_count(); ++c) {
+        const StackPlace left = from.place[as_size(coarse.cell(c)[0])];
+        const StackPlace right = from.place[as_size(coarse.cell(c)[1])];
+        for (const int spot : table.node)
+            to.place[as_size(*node++)] = between(left, right, table.spots[as_size(spot)].xi.x);
+        to.layer_of_cell.insert(to.layer_of_cell.end(), as_size(table.children), from.layer_of_cell[as_size(c)]);
+    }
+}
+
 TEPOR_INLINE void refine_uniformly(const MeshData& coarse, const CellKind& kind, MeshData& fine) {
     const ChildTable table = make_child_table(kind);
     const int n = kind.nodes;
@@ -206,6 +223,7 @@ TEPOR_INLINE void refine_uniformly(const MeshData& coarse, const CellKind& kind,
     }
     for (const CurvedSide& c : coarse.curved)
         for (int half = 0; half < halves; ++half) fine.curved.push_back({child_side(c.side, half), c.arc});
+    if (coarse.stack.given()) refine_stack(coarse, table, fine);
 }
 
 } // namespace tepor::detail
