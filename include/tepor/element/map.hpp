@@ -47,7 +47,7 @@ double determinant(const Eigen::Matrix<double, Dim, Dim>& j) noexcept {
 }
 
 /// Reference coordinates of the point t in [0,1] of side s, walked from its first to its second vertex; in 1D the end node.
-/// Source: the sides of a reference cell are straight, whatever the order.
+/// The sides of a reference cell are straight, whatever the order.
 template <Element E>
 typename E::point side_point(int s, double t) {
     if constexpr (E::dim == 1)
@@ -72,9 +72,11 @@ template <Element E>
 struct ReferencePlace {
     typename E::point xi;
     bool converged = false; ///< false: no reference point found, such as far outside a curved cell
+    int steps = 0;          ///< of Newton; the last one confirms
 };
 
-/// Reference coordinates of the place p: Newton from the middle of the cell, one step for affine cells.
+/// Reference coordinates of the place p: Newton from the middle of the cell, one step and one to confirm for
+/// affine cells.
 ///
 /// Converged when a step moves xi by less than 1e-13. Points outside the cell are followed a little way (a reference
 /// coordinate beyond 3 gives up), so that the caller can judge with outside_by(). No allocation.
@@ -96,6 +98,7 @@ ReferencePlace<E> inverse_map(CellNodes<E> x, Point p) {
             step[1] = (j(0, 0) * r.y - j(1, 0) * r.x) / d;
         }
         found.xi += step;
+        ++found.steps;
         const double moved = step.cwiseAbs().maxCoeff();
         if (!(found.xi.cwiseAbs().maxCoeff() < 3.0)) return found;
         // Close to rounding the steps stop shrinking: on cells far from the origin that is the best there is.

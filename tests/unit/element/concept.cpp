@@ -62,7 +62,7 @@ double monomial(const auto& xi, int i, int j) {
     return value;
 }
 
-/// The largest error in reproducing the monomials x^i y^j that `belongs` selects, over the sample points.
+/// The largest error in reproducing x^i y^j over the sample points.
 template <class E>
 double reproduction_error(int i, int j) {
     double worst = 0.0;

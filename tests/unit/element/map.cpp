@@ -51,6 +51,16 @@ TEST_CASE_TEMPLATE("the inverse map returns the reference point of every place i
     }
 }
 
+TEST_CASE_TEMPLATE("the inverse map is Newton's: one step on an affine cell, a handful on a bent one", E, MAPPED) {
+    const auto rule = rule_for<E>(3);
+    for (Index q = 0; q < rule.size(); ++q) {
+        const auto affine = bent_cell<E>(0.0);
+        CHECK(inverse_map<E>(affine, place<E>(affine, rule.point(q))).steps <= 2);
+        const auto bent = bent_cell<E>(1.0);
+        CHECK(inverse_map<E>(bent, place<E>(bent, rule.point(q))).steps <= 7);
+    }
+}
+
 TEST_CASE_TEMPLATE("the Jacobian is the derivative of the place", E, MAPPED) {
     const auto x = bent_cell<E>(1.0);
     const auto rule = rule_for<E>(3);
