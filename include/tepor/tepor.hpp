@@ -68,3 +68,15 @@
 #include <tepor/body/pattern.hpp>
 #include <tepor/body/split.hpp>
 #include <tepor/body/statements.hpp>
+
+#include <tepor/flux/conductance.hpp>
+#include <tepor/flux/defect.hpp>
+#include <tepor/flux/equilibrate.hpp>
+#include <tepor/flux/equilibrated.hpp>
+#include <tepor/flux/fan.hpp>
+#include <tepor/flux/loads.hpp>
+#include <tepor/flux/neighbours.hpp>
+#include <tepor/flux/problem.hpp>
+#include <tepor/flux/residual.hpp>
+#include <tepor/flux/sweep.hpp>
+#include <tepor/flux/tables2.hpp>

@@ -1,0 +1,133 @@
+#pragma once
+// Breadth-first tree over the cells and lowest-order fluxes along it.
+
+#include <cmath>
+#include <limits>
+#include <tepor/flux/residual.hpp>
+
+namespace tepor::detail {
+
+TEPOR_INLINE CarriedNorms carry_left_over(const FluxWork& work, const std::vector<LeftOver>& left_over) {
+    const FluxProblem& problem = work.problem;
+    const MeshData& mesh = *problem.mesh;
+    const std::size_t cells = as_size(mesh.cell_count());
+    // Exit of each cell: one of its sides (the way to its parent or out of the body), 3 for a sink, or -1 while not reached.
+    std::vector<signed char> exit(cells, -1);
+    std::vector<Id> order;
+    order.reserve(cells);
+    const auto sink = [&](std::size_t c) { return !problem.sink.empty() && problem.sink[c] > 0.0; };
+    const auto lets_out = [&](const FluxSide& side) {
+        return side.kind == SideKind::fixed ||
+               (side.kind == SideKind::open &&
+                (side.film > 0.0 || (side.trace >= 0 && problem.traces[as_size(side.trace)].least_slope > 0.0)));
+    };
+    const auto film_of = [&](const FluxSide& side) {
+        return side.film + (side.trace >= 0 ? problem.traces[as_size(side.trace)].least_slope : 0.0);
+    };
+    for (const FluxSide& side : problem.sides)
+        if (lets_out(side) && exit[as_size(side.side.cell)] < 0) {
+            exit[as_size(side.side.cell)] = static_cast<signed char>(side.side.side);
+            order.push_back(side.side.cell);
+        }
+    // The cell behind a side, -1 at the boundary; `back` receives its local side.
+    const auto behind = [&](std::size_t slot, Id& back) -> Id {
+        Id n = work.neighbours[slot];
+        if (n <= -2) {
+            const FluxSide& side = problem.sides[as_size(-2 - n)];
+            if (side.kind != SideKind::contact) return -1;
+            const CellSide other = problem.sides[as_size(side.partner)].side;
+            back = other.side;
+            return other.cell;
+        }
+        if (n < 0) return -1;
+        back = n % 3;
+        return n / 3;
+    };
+    std::size_t done = 0;
+    const auto spread_out = [&] {
+        for (; done < order.size(); ++done) {
+            const std::size_t c = as_size(order[done]);
+            for (std::size_t s = 0; s < 3; ++s) {
+                Id back = 0;
+                const Id other = behind(3 * c + s, back);
+                if (other < 0 || exit[as_size(other)] >= 0) continue;
+                exit[as_size(other)] = static_cast<signed char>(back);
+                order.push_back(other);
+            }
+        }
+    };
+    spread_out();
+    CarriedNorms out;
+    if (order.size() < cells) { // bodies held by their sinks alone
+        for (std::size_t c = 0; c < cells; ++c)
+            if (exit[c] < 0 && sink(c)) {
+                exit[c] = 3;
+                order.push_back(as_id(c));
+            }
+        spread_out();
+        for (std::size_t c = 0; c < cells; ++c)
+            if (exit[c] < 0 && left_over[c].value != 0.0) out.residual = std::numeric_limits<double>::infinity();
+    }
+    // Children before parents: what each cell sends to its exit.
+    std::vector<LeftOver> sent = left_over;
+    for (std::size_t i = order.size(); i-- > 0;) {
+        const std::size_t c = as_size(order[i]);
+        if (exit[c] == 3) continue;
+        Id back = 0;
+        const Id parent = behind(3 * c + as_size(exit[c]), back);
+        if (parent < 0) continue;
+        sent[as_size(parent)].value += sent[c].value;
+        sent[as_size(parent)].doubt += sent[c].doubt;
+    }
+    double residual = 0.0, rounding = 0.0;
+    for (const Id cell : order) {
+        const std::size_t c = as_size(cell);
+        const Id* node = mesh.cell(cell);
+        const Point x[3] = {mesh.nodes[as_size(node[0])], mesh.nodes[as_size(node[1])], mesh.nodes[as_size(node[2])]};
+        const double twice = cross(x[1] - x[0], x[2] - x[0]);
+        double leaves[3], doubts[3];
+        for (std::size_t s = 0; s < 3; ++s) {
+            leaves[s] = doubts[s] = 0.0;
+            Id back = 0;
+            const Id other = behind(3 * c + s, back);
+            if (exit[c] == static_cast<signed char>(s)) {
+                leaves[s] = sent[c].value;
+                doubts[s] = sent[c].doubt;
+            } else if (other >= 0 && exit[as_size(other)] == static_cast<signed char>(back)) {
+                leaves[s] = -sent[as_size(other)].value;
+                doubts[s] = sent[as_size(other)].doubt;
+            }
+        }
+        // Lowest-order field sum_s leaves_s (x - x_opposite)/(2 |T|): its vertex values
+        double sum = 0.0, sx = 0.0, sy = 0.0, doubt = 0.0;
+        for (std::size_t i = 0; i < 3; ++i) {
+            double vx = 0.0, vy = 0.0;
+            for (std::size_t s = 0; s < 3; ++s) {
+                const Point d = x[i] - x[(s + 2) % 3];
+                vx += leaves[s] * d.x, vy += leaves[s] * d.y;
+                doubt += doubts[s] * (std::abs(d.x) + std::abs(d.y));
+            }
+            sum += vx * vx + vy * vy, sx += vx, sy += vy;
+        }
+        const double weight = 0.5 / (twice * problem.conductivity[c]);
+        residual += weight / 12.0 * (sum + sx * sx + sy * sy);
+        rounding += weight * doubt * doubt;
+        if (exit[c] == 3) {
+            residual += 2.0 * sent[c].value * sent[c].value / (twice * problem.sink[c]);
+            rounding += 2.0 * sent[c].doubt * sent[c].doubt / (twice * problem.sink[c]);
+        } else if (const Id n = work.neighbours[3 * c + as_size(exit[c])]; n <= -2) {
+            const FluxSide& side = problem.sides[as_size(-2 - n)];
+            if (side.kind != SideKind::fixed) { // mismatch with the law of the film, the radiation or the contact
+                const Point d = x[(as_size(exit[c]) + 1) % 3] - x[as_size(exit[c])];
+                const double share = 1.0 / (film_of(side) * std::sqrt(dot(d, d)));
+                residual += share * sent[c].value * sent[c].value;
+                rounding += share * sent[c].doubt * sent[c].doubt;
+            }
+        }
+    }
+    out.residual += std::sqrt(residual);
+    out.rounding = std::sqrt(rounding);
+    return out;
+}
+
+} // namespace tepor::detail
