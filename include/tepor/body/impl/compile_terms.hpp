@@ -4,7 +4,7 @@
 #include <algorithm>
 #include <tepor/base/text.hpp>
 #include <tepor/body/model.hpp>
-#include <tepor/body/split.hpp>
+#include <tepor/body/impl/split.hpp> // SideKey, KeyedSide
 
 namespace tepor::detail {
 
