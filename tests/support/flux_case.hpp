@@ -65,7 +65,6 @@ class FluxCase {
   public:
     MeshData mesh;
     FluxProblem problem;
-    std::vector<Id> dof;
     Index dofs = 0;
     std::vector<char> held;             ///< per dof: temperature prescribed
     std::vector<double> given;          ///< its value
@@ -82,11 +81,9 @@ class FluxCase {
     }
     FluxCase(const FluxCase& other) { *this = other; }
     FluxCase& operator=(const FluxCase& other) {
-        mesh = other.mesh, problem = other.problem, dof = other.dof, dofs = other.dofs, held = other.held,
-        given = other.given;
-        matrix = other.matrix, load = other.load;
+        mesh = other.mesh, problem = other.problem, dofs = other.dofs, held = other.held, given = other.given;
+        matrix = other.matrix, load = other.load, tensor = other.tensor;
         problem.mesh = &mesh;
-        problem.dof = dof.data();
         return *this;
     }
 
@@ -132,8 +129,8 @@ class FluxCase {
                 for (int n = 0; n < mesh.order + 1; ++n) {
                     const int local = n == 2 ? 3 + s.side.side : (s.side.side + n) % 3;
                     const std::size_t at = as_size(s.side.cell) * as_size(mesh.nodes_per_cell) + as_size(local);
-                    held[as_size(dof[at])] = 1;
-                    given[as_size(dof[at])] = g(mesh.nodes[as_size(mesh.cells[at])]);
+                    held[as_size(problem.dof[at])] = 1;
+                    given[as_size(problem.dof[at])] = g(mesh.nodes[as_size(mesh.cells[at])]);
                 }
     }
 
@@ -177,7 +174,7 @@ class FluxCase {
 
     /// Degrees of freedom and values of the shape functions at t along a side.
     void on_side(CellSide side, double t, std::array<Id, 3>& who, std::array<double, 3>& n) const {
-        const Id* d = dof.data() + as_size(side.cell) * as_size(mesh.nodes_per_cell);
+        const Id* d = problem.dof.data() + as_size(side.cell) * as_size(mesh.nodes_per_cell);
         who = {d[side.side], d[(side.side + 1) % 3], mesh.order == 2 ? d[3 + side.side] : d[side.side]};
         n = mesh.order == 2 ? std::array{(1 - t) * (1 - 2 * t), t * (2 * t - 1), 4 * t * (1 - t)}
                             : std::array{1 - t, t, 0.0};
@@ -186,11 +183,30 @@ class FluxCase {
     double area(Index c) const { return 0.5 * cross(corner(c, 1) - corner(c, 0), corner(c, 2) - corner(c, 0)); }
     double length(CellSide s) const { return distance(corner(s.cell, s.side), corner(s.cell, s.side + 1)); }
 
+    std::vector<std::array<double, 3>> tensor; ///< per cell (kxx, kxy, kyy), or empty
+
+    /// Gives every cell a conductivity tensor.
+    void conduct_like(std::vector<std::array<double, 3>> k) {
+        tensor = std::move(k);
+        problem.stretch.resize(3 * tensor.size());
+        for (std::size_t c = 0; c < tensor.size(); ++c) {
+            const auto& [xx, xy, yy] = tensor[c];
+            problem.conductivity[c] = std::sqrt(xx * yy - xy * xy);
+            detail::stretch_of(xx, xy, yy, problem.stretch.data() + 3 * c);
+        }
+    }
+
+    double conduct(Index c, Point a, Point b) const {
+        if (tensor.empty()) return problem.conductivity[as_size(c)] * dot(a, b);
+        const auto& [xx, xy, yy] = tensor[as_size(c)];
+        return a.x * (xx * b.x + xy * b.y) + a.y * (xy * b.x + yy * b.y);
+    }
+
     void assemble() {
         std::vector<Eigen::Triplet<double>> entries;
         load = Eigen::VectorXd::Zero(dofs);
         for (Index c = 0; c < mesh.cell_count(); ++c) {
-            const Id* d = dof.data() + as_size(c) * as_size(mesh.nodes_per_cell);
+            const Id* d = problem.dof.data() + as_size(c) * as_size(mesh.nodes_per_cell);
             const double sink = problem.sink.empty() ? 0.0 : problem.sink[as_size(c)];
             const double f =
                 problem.source[as_size(c)] + (sink > 0 ? sink * problem.sink_temperature[as_size(c)] : 0.0);
@@ -201,15 +217,13 @@ class FluxCase {
                 for (int i = 0; i < mesh.nodes_per_cell; ++i) {
                     load[d[i]] += w * area(c) * f * n[i];
                     for (int j = 0; j < mesh.nodes_per_cell; ++j)
-                        entries.emplace_back(
-                            d[i], d[j],
-                            w * area(c) * (problem.conductivity[as_size(c)] * dot(g[i], g[j]) + sink * n[i] * n[j]));
+                        entries.emplace_back(d[i], d[j], w * area(c) * (conduct(c, g[i], g[j]) + sink * n[i] * n[j]));
                 }
             });
         }
         constexpr int a[6] = {0, 1, 2, 0, 1, 2}, b[6] = {0, 1, 2, 1, 2, 0};
         for (const SpreadSource& w : problem.spread) {
-            const Id* d = dof.data() + as_size(w.cell) * as_size(mesh.nodes_per_cell);
+            const Id* d = problem.dof.data() + as_size(w.cell) * as_size(mesh.nodes_per_cell);
             double against[3] = {};
             for (int p = 0; p < 6; ++p) {
                 against[a[p]] += w.moment[p];
@@ -302,15 +316,14 @@ class FluxCase {
                 if (mesh.order == 2) parent[as_size(root(mine + 3 + s))] = root(theirs + 3 + r);
             }
         std::vector<Id> number(mesh.cells.size(), -1);
-        dof.resize(mesh.cells.size());
+        problem.dof.resize(mesh.cells.size());
         Id next = 0;
-        for (std::size_t i = 0; i < dof.size(); ++i) {
+        for (std::size_t i = 0; i < problem.dof.size(); ++i) {
             Id& n = number[as_size(root(static_cast<Id>(i)))];
             if (n < 0) n = next++;
-            dof[i] = n;
+            problem.dof[i] = n;
         }
         dofs = next;
-        problem.dof = dof.data();
         held.clear();
     }
 };

@@ -30,10 +30,11 @@ struct Defect1 {
 inline Defect1 defect_order1(const FluxWork& work, const double* outflow, Index c) noexcept {
     const FluxProblem& problem = work.problem;
     const Id* node = problem.mesh->cells.data() + 3 * as_size(c);
-    const Id* dof = problem.dof + 3 * as_size(c);
+    const Id* dof = problem.dof.data() + 3 * as_size(c);
     const double* out = outflow + 6 * as_size(c);
     const Point a = problem.mesh->nodes[as_size(node[0])];
-    const Point t1 = problem.mesh->nodes[as_size(node[1])] - a, t2 = problem.mesh->nodes[as_size(node[2])] - a;
+    const Point t1 = stretched(problem, as_id(c), problem.mesh->nodes[as_size(node[1])] - a),
+                t2 = stretched(problem, as_id(c), problem.mesh->nodes[as_size(node[2])] - a);
     const Point edge[3] = {t1, t2 - t1, {-t2.x, -t2.y}}; // along the sides, counter-clockwise
     Defect1 d;
     d.k = problem.conductivity[as_size(c)];
@@ -90,10 +91,11 @@ inline Defect2 defect_order2(const FluxWork& work, const Equilibrated& flux, Ind
     const FluxProblem& problem = work.problem;
     const FluxTables2& t = flux_tables2();
     const Id* node = problem.mesh->cells.data() + 6 * as_size(c);
-    const Id* dof = problem.dof + 6 * as_size(c);
+    const Id* dof = problem.dof.data() + 6 * as_size(c);
     const double* out = flux.outflow.data() + 9 * as_size(c);
     const Point a = problem.mesh->nodes[as_size(node[0])];
-    const Point t1 = problem.mesh->nodes[as_size(node[1])] - a, t2 = problem.mesh->nodes[as_size(node[2])] - a;
+    const Point t1 = stretched(problem, as_id(c), problem.mesh->nodes[as_size(node[1])] - a),
+                t2 = stretched(problem, as_id(c), problem.mesh->nodes[as_size(node[2])] - a);
     const double k = problem.conductivity[as_size(c)];
     const double j = cross(t1, t2);
     const double gxx = dot(t1, t1), gxy = dot(t1, t2), gyy = dot(t2, t2);

@@ -10,7 +10,7 @@ namespace tepor::detail {
 /// The values of a nodal field at the start, middle and end of a side, from the degrees of freedom of its cell.
 inline std::array<double, 3> values_along(const FluxProblem& problem, const double* values, CellSide side) noexcept {
     const int order = problem.mesh->order;
-    const Id* dof = problem.dof + as_size(side.cell) * as_size(problem.mesh->nodes_per_cell);
+    const Id* dof = problem.dof.data() + as_size(side.cell) * as_size(problem.mesh->nodes_per_cell);
     const double start = values[dof[side.side]];
     const double end = values[dof[side.side == 2 ? 0 : side.side + 1]];
     return {start, order == 2 ? values[dof[3 + side.side]] : 0.5 * (start + end), end};

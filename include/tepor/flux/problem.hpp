@@ -1,6 +1,7 @@
 #pragma once
 // Everything an equilibrated flux needs to know of a linear conduction problem, as plain arrays.
 
+#include <cmath>
 #include <cstdint>
 #include <tepor/base/config.hpp>
 #include <tepor/base/numbers.hpp>
@@ -57,14 +58,34 @@ struct SpreadSource {
 /// frame is left to the caller. Conductivity is constant in every cell.
 struct FluxProblem {
     const MeshData* mesh = nullptr;
-    const Id* dof = nullptr;              ///< degree of freedom of each cell node, nodes_per_cell per cell
-    std::vector<double> conductivity;     ///< [W/(m K)] per cell
-    std::vector<double> source;           ///< [W/m3] per cell
-    std::vector<double> sink;             ///< loss per volume and kelvin, c >= 0 [W/(m3 K)] per cell, or empty
+    std::vector<Id> dof;              ///< degree of freedom of each cell node, nodes_per_cell per cell
+    std::vector<double> conductivity; ///< [W/(m K)] per cell; of a tensor the root of its determinant
+    std::vector<double> stretch;      ///< conductivity tensors: stretch_of, 3 per cell; empty when all are isotropic
+    std::vector<double> source;       ///< [W/m3] per cell
+    std::vector<double> sink;         ///< loss per volume and kelvin, c >= 0 [W/(m3 K)] per cell, or empty
     std::vector<double> sink_temperature; ///< [degC] per cell, or empty
     std::vector<FluxSide> sides;
     std::vector<SideTrace> traces;
     std::vector<SpreadSource> spread; ///< at most one per cell
 };
 
+namespace detail {
+
+/// Inverse of the Cholesky factor of a conductivity tensor, (1/l_xx, entry yx, 1/l_yy). In the coordinates it maps to, the cell
+/// conducts like an isotropic one of conductivity sqrt(det), with the same heat through every side.
+inline void stretch_of(double kxx, double kxy, double kyy, double* out) noexcept {
+    const double lx = std::sqrt(kxx), lower = kxy / lx, ly = std::sqrt(kyy - lower * lower);
+    out[0] = 1.0 / lx;
+    out[1] = -lower / (lx * ly);
+    out[2] = 1.0 / ly;
+}
+
+/// A vector of cell c in the coordinates in which the cell is isotropic.
+inline Point stretched(const FluxProblem& problem, Id c, Point v) noexcept {
+    if (problem.stretch.empty()) return v;
+    const double* f = problem.stretch.data() + 3 * as_size(c);
+    return {f[0] * v.x, f[1] * v.x + f[2] * v.y};
+}
+
+} // namespace detail
 } // namespace tepor

@@ -28,7 +28,7 @@ TEPOR_INLINE TwoSided conductance_bounds(const FluxProblem& problem, const doubl
     still.per_side = flux.per_side;
     still.outflow.assign(flux.outflow.size(), 0.0);
     still.bubble.assign(flux.bubble.size(), 0.0);
-    const std::vector<double> level(as_size(*std::max_element(problem.dof, problem.dof + mesh.cells.size())) + 1, 0.0);
+    const std::vector<double> level(as_size(*std::max_element(problem.dof.begin(), problem.dof.end())) + 1, 0.0);
     const FluxWork flat{problem, level.data(), {}, {}, {}};
     double upper = 0.0, energy = 0.0, flow = 0.0, left_over = 0.0;
     for (Index c = 0; c < mesh.cell_count(); ++c) {

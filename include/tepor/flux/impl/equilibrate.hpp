@@ -41,17 +41,18 @@ inline FluxWork prepare_flux(const FluxProblem& problem, const double* temperatu
             source_loads(problem, temperature)};
 }
 
-/// Longest side: the diameter of a triangle.
-inline double diameter(const MeshData& mesh, Index c) noexcept {
-    const Id* n = mesh.cell(c);
-    const Point a = mesh.nodes[as_size(n[0])], b = mesh.nodes[as_size(n[1])], d = mesh.nodes[as_size(n[2])];
-    return std::max({distance(a, b), distance(b, d), distance(d, a)});
-}
-
 /// Largest ratio |integral of (g - mean g) v| / (|g - mean g| |||v|||) on a cell: L. E. Payne and H. F. Weinberger, Arch. Rational
 /// Mech. Anal. 5 (1960) 286 (convex cell), or the sink alone.
 inline double oscillation_factor(const FluxProblem& problem, Index c) noexcept {
-    const double factor = diameter(*problem.mesh, c) / (pi * std::sqrt(problem.conductivity[as_size(c)]));
+    const Id* n = problem.mesh->cell(c);
+    const auto& x = problem.mesh->nodes;
+    double longest = 0.0; // squared, in the coordinates in which the cell is isotropic
+    for (int i = 0; i < 3; ++i) {
+        const Point e = stretched(problem, as_id(c), x[as_size(n[i == 2 ? 0 : i + 1])] - x[as_size(n[i])]);
+        longest = std::max(longest, dot(e, e));
+    }
+    const double k = problem.stretch.empty() ? problem.conductivity[as_size(c)] : 1.0;
+    const double factor = std::sqrt(longest / k) / pi;
     const double sink = problem.sink.empty() ? 0.0 : problem.sink[as_size(c)];
     return sink > 0.0 ? std::min(factor, 1.0 / std::sqrt(sink)) : factor;
 }

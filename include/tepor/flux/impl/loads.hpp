@@ -122,13 +122,14 @@ inline double lost_squared(int order, const double (&u)[6]) noexcept {
 
 TEPOR_INLINE SourceLoads source_loads(const FluxProblem& problem, const double* temperature) {
     SourceLoads out;
-    if (problem.sink.empty() && problem.spread.empty()) return out;
+    if (problem.sink.empty() && problem.spread.empty() && problem.stretch.empty())
+        return out; // area times source will do
     const MeshData& mesh = *problem.mesh;
     const Index cells = mesh.cell_count();
     const int order = mesh.order;
     out.per_cell = order == 1 ? 3 : 6;
     out.load.assign(as_size(cells) * as_size(out.per_cell), 0.0);
-    out.lost.assign(as_size(cells), 0.0);
+    if (!problem.sink.empty() || !problem.spread.empty()) out.lost.assign(as_size(cells), 0.0);
     for (Index c = 0; c < cells; ++c) {
         const double area = triangle_area(mesh, c);
         double* load = out.load.data() + as_size(c) * as_size(out.per_cell);
@@ -136,7 +137,7 @@ TEPOR_INLINE SourceLoads source_loads(const FluxProblem& problem, const double* 
         double f[6];
         const double constant =
             problem.source[as_size(c)] + (sink != 0.0 ? sink * problem.sink_temperature[as_size(c)] : 0.0);
-        const Id* dof = problem.dof + as_size(c) * as_size(mesh.nodes_per_cell);
+        const Id* dof = problem.dof.data() + as_size(c) * as_size(mesh.nodes_per_cell);
         for (int n = 0; n < out.per_cell; ++n) f[n] = constant - (sink != 0.0 ? sink * temperature[dof[n]] : 0.0);
         if (order == 1) {
             const double sum = f[0] + f[1] + f[2];

@@ -83,7 +83,10 @@ TEPOR_INLINE CarriedNorms carry_left_over(const FluxWork& work, const std::vecto
     for (const Id cell : order) {
         const std::size_t c = as_size(cell);
         const Id* node = mesh.cell(cell);
-        const Point x[3] = {mesh.nodes[as_size(node[0])], mesh.nodes[as_size(node[1])], mesh.nodes[as_size(node[2])]};
+        const Point place[3] = {mesh.nodes[as_size(node[0])], mesh.nodes[as_size(node[1])],
+                                mesh.nodes[as_size(node[2])]};
+        const Point x[3] = {
+            {0.0, 0.0}, stretched(problem, cell, place[1] - place[0]), stretched(problem, cell, place[2] - place[0])};
         const double twice = cross(x[1] - x[0], x[2] - x[0]);
         double leaves[3], doubts[3];
         for (std::size_t s = 0; s < 3; ++s) {
@@ -113,12 +116,13 @@ TEPOR_INLINE CarriedNorms carry_left_over(const FluxWork& work, const std::vecto
         residual += weight / 12.0 * (sum + sx * sx + sy * sy);
         rounding += weight * doubt * doubt;
         if (exit[c] == 3) {
-            residual += 2.0 * sent[c].value * sent[c].value / (twice * problem.sink[c]);
-            rounding += 2.0 * sent[c].doubt * sent[c].doubt / (twice * problem.sink[c]);
+            const double share = 2.0 / (cross(place[1] - place[0], place[2] - place[0]) * problem.sink[c]);
+            residual += share * sent[c].value * sent[c].value;
+            rounding += share * sent[c].doubt * sent[c].doubt;
         } else if (const Id n = work.neighbours[3 * c + as_size(exit[c])]; n <= -2) {
             const FluxSide& side = problem.sides[as_size(-2 - n)];
             if (side.kind != SideKind::fixed) { // mismatch with the law of the film, the radiation or the contact
-                const Point d = x[(as_size(exit[c]) + 1) % 3] - x[as_size(exit[c])];
+                const Point d = place[(as_size(exit[c]) + 1) % 3] - place[as_size(exit[c])];
                 const double share = 1.0 / (film_of(side) * std::sqrt(dot(d, d)));
                 residual += share * sent[c].value * sent[c].value;
                 rounding += share * sent[c].doubt * sent[c].doubt;

@@ -51,9 +51,10 @@ TEPOR_INLINE void sweep_order1(const FluxWork& work, double* outflow) {
                 const FanCell f = fan[as_size(j)];
                 const Id i1 = FanWalk::next_corner(f.corner), i2 = FanWalk::next_corner(i1);
                 const Id* node = mesh.cells.data() + 3 * as_size(f.cell);
-                const Id* dof = problem.dof + 3 * as_size(f.cell);
+                const Id* dof = problem.dof.data() + 3 * as_size(f.cell);
                 const Point a = mesh.nodes[as_size(node[f.corner])];
-                const Point t1 = mesh.nodes[as_size(node[i1])] - a, t2 = mesh.nodes[as_size(node[i2])] - a;
+                const Point t1 = stretched(problem, f.cell, mesh.nodes[as_size(node[i1])] - a),
+                            t2 = stretched(problem, f.cell, mesh.nodes[as_size(node[i2])] - a);
                 const double k = problem.conductivity[as_size(f.cell)];
                 const double u1 = work.temperature[dof[i1]] - work.temperature[dof[f.corner]];
                 const double u2 = work.temperature[dof[i2]] - work.temperature[dof[f.corner]];

@@ -37,9 +37,10 @@ inline void prepare_part(const FluxWork& work, FanCell f, const FluxTables2& t, 
     const MeshData& mesh = *problem.mesh;
     const Id i0 = f.corner, i1 = FanWalk::next_corner(i0), i2 = FanWalk::next_corner(i1);
     const Id* node = mesh.cells.data() + 6 * as_size(f.cell);
-    const Id* dof = problem.dof + 6 * as_size(f.cell);
+    const Id* dof = problem.dof.data() + 6 * as_size(f.cell);
     const Point a = mesh.nodes[as_size(node[i0])];
-    const Point t1 = mesh.nodes[as_size(node[i1])] - a, t2 = mesh.nodes[as_size(node[i2])] - a;
+    const Point t1 = stretched(problem, f.cell, mesh.nodes[as_size(node[i1])] - a),
+                t2 = stretched(problem, f.cell, mesh.nodes[as_size(node[i2])] - a);
     const double k = problem.conductivity[as_size(f.cell)];
     const double j = cross(t1, t2);
     p.area = 0.5 * j;
