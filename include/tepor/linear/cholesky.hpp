@@ -4,9 +4,9 @@
 #include <tepor/base/config.hpp>
 #include <tepor/base/numbers.hpp>
 #include <tepor/base/point.hpp>
-#include <tepor/linear/impl/buffer.hpp>
-#include <tepor/linear/impl/front.hpp>
-#include <tepor/linear/impl/supernodes.hpp>
+#include <tepor/linear/detail/buffer.hpp>
+#include <tepor/linear/detail/front_kernels.hpp>
+#include <tepor/linear/detail/supernode_tree.hpp>
 #include <tepor/linear/sparse_matrix.hpp>
 #include <vector>
 

@@ -3,8 +3,10 @@
 
 #include <algorithm>
 #include <tepor/linear/cholesky.hpp>
+#include <tepor/linear/impl/front.hpp>
 #include <tepor/linear/impl/nested_dissection.hpp>
 #include <tepor/linear/impl/pivot.hpp>
+#include <tepor/linear/impl/supernodes.hpp>
 
 namespace tepor {
 

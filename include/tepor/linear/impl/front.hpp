@@ -2,7 +2,7 @@
 // The dense front kernels for the instruction sets of the machine, chosen when the program runs.
 
 #include <cmath>
-#include <tepor/base/numbers.hpp>
+#include <tepor/linear/detail/front_kernels.hpp>
 
 namespace tepor::detail {
 
@@ -56,17 +56,10 @@ using LooseFour = Four;
 
 namespace tepor::detail {
 
-/// The kernels in use.
-struct FrontKernels {
-    decltype(&plain::eliminate_front) eliminate = &plain::eliminate_front;
-    decltype(&plain::forward_front) forward = &plain::forward_front;
-    decltype(&plain::backward_front) backward = &plain::backward_front;
-};
-
 /// The best kernels the processor can run. Bits of a result are the same on every run of one machine; between machines
 /// with and without fused multiply-add they differ by rounding.
 inline FrontKernels front_kernels() noexcept {
-    FrontKernels kernels;
+    FrontKernels kernels{&plain::eliminate_front, &plain::forward_front, &plain::backward_front};
 #if defined(__GNUC__) && defined(__x86_64__)
     if (__builtin_cpu_supports("avx2") && __builtin_cpu_supports("fma")) {
         kernels = {&wide::eliminate_front, &wide::forward_front, &wide::backward_front};

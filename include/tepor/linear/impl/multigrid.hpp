@@ -1,0 +1,177 @@
+#pragma once
+// Building the levels of multigrid, and the cycle through them.
+
+#include <algorithm>
+#include <cmath>
+#include <tepor/linear/impl/galerkin.hpp>
+#include <tepor/linear/impl/multigrid_level.hpp>
+#include <tepor/linear/impl/pivot.hpp>
+#include <tepor/linear/multigrid.hpp>
+
+namespace tepor {
+namespace detail {
+
+/// Rows in blocks fixed by their number alone. Few rows: one block, since entries between blocks weaken the sweeps.
+inline std::vector<Index> blocks_of(Index rows) {
+    const Index count = rows < 4000 ? 1 : rows < 100000 ? 2 : 8;
+    std::vector<Index> block;
+    for (Index b = 0; b <= count; ++b) block.push_back(rows * b / count);
+    return block;
+}
+
+/// Every other border, for levels that have become small.
+inline std::vector<Index> merged_blocks(const std::vector<Index>& block) {
+    std::vector<Index> out;
+    for (std::size_t b = 0; b + 1 < block.size(); b += 2) out.push_back(block[b]);
+    out.push_back(block.back());
+    return out;
+}
+
+} // namespace detail
+
+TEPOR_INLINE bool Multigrid::setup(const SparseMatrix& matrix, Index n) {
+    size_ = n;
+    singular_row_ = -1;
+    coarse_size_ = 0;
+    level_.clear();
+    complexity_ = 0.0;
+    if (n == 0) return true;
+    std::vector<Index> block = detail::blocks_of(n);
+    SparseMatrix coarse;
+    const SparseMatrix* a = &matrix;
+    detail::Buffer<float> scale;
+    detail::StrongGraph strong;
+    std::vector<std::vector<Id>> roots; // a row of the level above for every row of a level
+    double first_entries = 1.0;
+    for (Index rows = n;;) {
+        const double entries = detail::as_double(a->start[detail::as_size(rows)]);
+        if (level_.empty()) first_entries = entries;
+        complexity_ += entries / first_entries;
+        scale.reset(rows);
+        for (Index i = 0; i < rows; ++i) {
+            const double diagonal = a->diagonal(i);
+            if (!(diagonal > 0.0) || !std::isfinite(diagonal)) {
+                singular_row_ = level_.empty() ? i : 0;
+                return false;
+            }
+            scale[i] = static_cast<float>(1.0 / std::sqrt(diagonal));
+        }
+        if (level_.empty()) scale_ = scale;
+        if (rows <= options_.coarsest) return factor_coarsest(*a, scale);
+        double strength = rows < 1000 ? options_.low_strength : options_.strength;
+        detail::Aggregates aggregates;
+        while (true) {
+            detail::find_strong(*a, rows, strength, strong);
+            aggregates = detail::aggregate(strong, rows, block);
+            if (aggregates.count * 10 < rows * 6 || !(strength > options_.low_strength)) break;
+            strength = std::max(options_.low_strength, strength / 4.0);
+        }
+        detail::MultigridLevel level = detail::make_level(*a, rows, block, scale);
+        if (aggregates.count == 0 ||
+            aggregates.count * 10 > rows * 9) { // nothing left to coarsen: the sweeps settle it
+            level_.push_back(std::move(level));
+            return true;
+        }
+        detail::Prolongation p = detail::smooth_prolongation(strong, rows, aggregates);
+        SparseMatrix next = detail::galerkin(*a, rows, p);
+        // Scale both sides of the prolongation, as the matrices are.
+        const Index count = aggregates.count;
+        detail::Buffer<float> below(count);
+        for (Index c = 0; c < count; ++c) below[c] = static_cast<float>(1.0 / std::sqrt(next.diagonal(c)));
+        for (Index i = 0; i < rows; ++i) {
+            const float above = 1.0f / scale[i];
+            for (Index k = p.start[i]; k < p.start[i + 1]; ++k) p.value[k] *= above * below[p.column[k]];
+        }
+        level.prolongation = std::move(p);
+        level_.push_back(std::move(level));
+        coarse = std::move(next);
+        a = &coarse;
+        block = std::move(aggregates.block);
+        rows = count;
+        while (block.size() > 2 && rows / static_cast<Index>(block.size() - 1) < 2000)
+            block = detail::merged_blocks(block);
+    }
+}
+
+TEPOR_INLINE bool Multigrid::factor_coarsest(const SparseMatrix& matrix, const detail::Buffer<float>& scale) {
+    const Index n = matrix.rows < size_ || !level_.empty() ? matrix.rows : size_;
+    coarse_size_ = n;
+    coarse_.assign(detail::as_size(n * n), 0.0);
+    coarse_x_.resize(detail::as_size(n));
+    coarse_right_.resize(detail::as_size(n));
+    const double floor = 8.0 * detail::pivot_floor(size_); // the levels above have added their rounding
+    for (Index i = 0; i < n; ++i) {
+        double* row = coarse_.data() + i * n;
+        for (Index p = matrix.start[detail::as_size(i)]; p < matrix.start[detail::as_size(i) + 1]; ++p) {
+            const Index j = matrix.column[detail::as_size(p)];
+            row[j] = matrix.lower[detail::as_size(p)] * static_cast<double>(scale[i]) * static_cast<double>(scale[j]);
+        }
+        for (Index j = 0; j < i; ++j) {
+            const double* other = coarse_.data() + j * n;
+            double sum = row[j];
+            for (Index k = 0; k < j; ++k) sum -= row[k] * other[k];
+            row[j] = sum * other[j];
+        }
+        double pivot = row[i];
+        for (Index k = 0; k < i; ++k) pivot -= row[k] * row[k];
+        if (!(pivot > floor)) {
+            if (singular_row_ < 0) singular_row_ = level_.empty() ? i : 0;
+            pivot = 1.0;
+        }
+        row[i] = 1.0 / std::sqrt(pivot);
+    }
+    return singular_row_ < 0;
+}
+
+TEPOR_INLINE void Multigrid::descend(std::size_t depth) noexcept {
+    if (depth == level_.size()) { // the coarsest
+        const Index n = coarse_size_;
+        double* x = coarse_x_.data();
+        for (Index i = 0; i < n; ++i) {
+            const double* row = coarse_.data() + i * n;
+            double sum = static_cast<double>(coarse_right_[detail::as_size(i)]);
+            for (Index j = 0; j < i; ++j) sum -= row[j] * x[j];
+            x[i] = sum * row[i];
+        }
+        for (Index i = n - 1; i >= 0; --i) {
+            const double* row = coarse_.data() + i * n;
+            x[i] *= row[i];
+            for (Index j = 0; j < i; ++j) x[j] -= row[j] * x[i];
+        }
+        for (Index i = 0; i < n; ++i) coarse_right_[detail::as_size(i)] = static_cast<float>(x[i]);
+        return;
+    }
+    detail::MultigridLevel& level = level_[depth];
+    for (std::size_t b = 0; b + 1 < level.block.size(); b += 2) detail::forward_blocks(level, b);
+    if (level.prolongation.columns > 0) {
+        detail::subtract_cross(level, level.x.data(), level.residual.data());
+        const bool last = depth + 1 == level_.size();
+        float* right = last ? coarse_right_.data() : level_[depth + 1].right.data();
+        detail::restrict_to(level.prolongation, level.residual.data(), right);
+        descend(depth + 1);
+        const float* correction = last ? coarse_right_.data() : level_[depth + 1].x.data();
+        detail::prolong_from(level.prolongation, correction, level.x.data());
+    }
+    detail::subtract_cross(level, level.x.data(), level.right.data());
+    for (std::size_t b = 0; b + 1 < level.block.size(); b += 2) detail::backward_blocks(level, b);
+}
+
+TEPOR_INLINE void Multigrid::cycle(const double* r, double* z) noexcept {
+    const Index n = size_;
+    if (n == 0) return;
+    // Single precision has a small range: work on r over its largest value.
+    double largest = 0.0;
+    for (Index i = 0; i < n; ++i) largest = std::max(largest, std::abs(r[i] * static_cast<double>(scale_[i])));
+    if (!(largest > 0.0) || !std::isfinite(largest)) {
+        for (Index i = 0; i < n; ++i) z[i] = largest > 0.0 ? r[i] : 0.0;
+        return;
+    }
+    const double factor = 1.0 / largest;
+    float* right = level_.empty() ? coarse_right_.data() : level_[0].right.data();
+    for (Index i = 0; i < n; ++i) right[i] = static_cast<float>(r[i] * static_cast<double>(scale_[i]) * factor);
+    descend(0);
+    const float* x = level_.empty() ? coarse_right_.data() : level_[0].x.data();
+    for (Index i = 0; i < n; ++i) z[i] = static_cast<double>(x[i]) * static_cast<double>(scale_[i]) * largest;
+}
+
+} // namespace tepor
