@@ -58,6 +58,12 @@
 
 #include <tepor/linear/banded.hpp>
 #include <tepor/linear/cholesky.hpp>
+#include <tepor/linear/choose.hpp>
+#include <tepor/linear/concept.hpp>
+#include <tepor/linear/conjugate_gradient.hpp>
+#include <tepor/linear/krylov.hpp>
+#include <tepor/linear/multigrid.hpp>
+#include <tepor/linear/multigrid_solver.hpp>
 #include <tepor/linear/sparse_matrix.hpp>
 #include <tepor/linear/tridiagonal.hpp>
 
