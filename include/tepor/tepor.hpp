@@ -80,6 +80,7 @@
 #include <tepor/flux/equilibrate.hpp>
 #include <tepor/flux/equilibrated.hpp>
 #include <tepor/flux/fan.hpp>
+#include <tepor/flux/line.hpp>
 #include <tepor/flux/loads.hpp>
 #include <tepor/flux/neighbours.hpp>
 #include <tepor/flux/problem.hpp>

@@ -6,6 +6,7 @@
 #include <tepor/base/text.hpp>
 #include <tepor/flux/defect.hpp>
 #include <tepor/flux/equilibrate.hpp>
+#include <tepor/flux/line.hpp>
 #include <tepor/flux/neighbours.hpp>
 #include <tepor/flux/residual.hpp>
 #include <tepor/flux/sweep.hpp>
@@ -63,6 +64,7 @@ TEPOR_INLINE Equilibrated equilibrate(const FluxProblem& problem, const double* 
     using namespace detail;
     check_flux_problem(problem);
     const MeshData& mesh = *problem.mesh;
+    if (mesh.dim == 1) return equilibrate_line(problem, temperature);
     const std::size_t cells = as_size(mesh.cell_count());
     const FluxWork work = prepare_flux(problem, temperature);
     Equilibrated flux;
@@ -133,14 +135,18 @@ TEPOR_INLINE PairBound pair_bound(const FluxProblem& primal, const double* tempe
                                   const Equilibrated& adjoint_flux) {
     using namespace detail;
     const MeshData& mesh = *primal.mesh;
-    const FluxWork first{primal, temperature, {}, {}, source_loads(primal, temperature)};
-    const FluxWork second{adjoint, influence, {}, {}, source_loads(adjoint, influence)};
     double product = 0.0;
-    for (Index c = 0; c < mesh.cell_count(); ++c)
-        product += mesh.order == 1
-                       ? Defect1::product(defect_order1(first, flux.outflow.data(), c),
-                                          defect_order1(second, adjoint_flux.outflow.data(), c))
-                       : Defect2::product(defect_order2(first, flux, c), defect_order2(second, adjoint_flux, c));
+    if (mesh.dim == 1) {
+        product = line_product(primal, temperature, flux, adjoint, influence, adjoint_flux);
+    } else {
+        const FluxWork first{primal, temperature, {}, {}, source_loads(primal, temperature)};
+        const FluxWork second{adjoint, influence, {}, {}, source_loads(adjoint, influence)};
+        for (Index c = 0; c < mesh.cell_count(); ++c)
+            product += mesh.order == 1
+                           ? Defect1::product(defect_order1(first, flux.outflow.data(), c),
+                                              defect_order1(second, adjoint_flux.outflow.data(), c))
+                           : Defect2::product(defect_order2(first, flux, c), defect_order2(second, adjoint_flux, c));
+    }
     // With inexact balances the two parts of a defect are not orthogonal: |e|^2 + |s|^2 <= eta^2 + 2 |e| lost.
     const double extra_t = flux.residual + flux.rounding, extra_z = adjoint_flux.residual + adjoint_flux.rounding;
     const double eta_t = std::sqrt(flux.squared_total) + extra_t,
