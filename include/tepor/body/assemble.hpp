@@ -17,11 +17,28 @@ struct Accounts {
     std::vector<double> contact;   ///< per contact, from its first region to its second
 };
 
+/// A part of the weak form, for heat flows through faces, interfaces and contacts: only what is listed takes part.
+struct Restriction {
+    std::vector<Id> regions; ///< their cells, with conduction and what acts per volume
+    struct Sides {
+        Id face = 0;    ///< whose terms act
+        SideList sides; ///< some of its sides
+    };
+    std::vector<Sides> faces;
+    std::vector<Id> contacts;
+    std::vector<Id> locals;
+};
+
 /// What a pass is given, asked for, and found.
 struct Pass {
-    const double* T = nullptr; ///< all unknowns; null means zero everywhere (linear models)
+    const double* T = nullptr; ///< all unknowns, required
     TimeSpan time{};
-    bool conduction = true; ///< cells conduct (off: only what acts on the body)
+    const Restriction* only = nullptr; ///< null: the whole model
+
+    /// For functionals: with weights (all unknowns) the pass sums weights . r into `weighted` and adds J^T weights to `transposed`.
+    const double* weights = nullptr;
+    double weighted = 0.0;
+    double* transposed = nullptr; ///< all unknowns, added to; may be null
 
     double* residual =
         nullptr; ///< all unknowns, set (not added to); null: not wanted. Heat into the body that T would need [W]

@@ -27,14 +27,26 @@ class Assembler {
 
     void run() {
         start();
+        if (pass_.only) return run_part(*pass_.only);
         for (std::size_t r = 0; r < model_.regions.size() && !pass_.fault; ++r) cells(r);
         std::size_t term = 0;
         for (std::size_t f = 0; f < model_.faces.size() && !pass_.fault; ++f) {
-            if (!model_.faces[f].terms.empty()) face(model_.faces[f], term);
+            if (!model_.faces[f].terms.empty()) face(model_.faces[f], model_.faces[f].sides, term);
             term += model_.faces[f].terms.size();
         }
         for (std::size_t c = 0; c < model_.contacts.size() && !pass_.fault; ++c) contact(c);
-        for (std::size_t l = 0; l < model_.locals.size(); ++l) local(l);
+        for (std::size_t l = 0; l < model_.locals.size() && !pass_.fault; ++l) local(l);
+    }
+
+    void run_part(const Restriction& only) {
+        for (const Id r : only.regions)
+            if (!pass_.fault) cells(as_size(r));
+        for (const Restriction::Sides& f : only.faces)
+            if (!pass_.fault) face(model_.faces[as_size(f.face)], f.sides, first_term(f.face));
+        for (const Id c : only.contacts)
+            if (!pass_.fault) contact(as_size(c));
+        for (const Id l : only.locals)
+            if (!pass_.fault) local(as_size(l));
     }
 
   private:
@@ -48,6 +60,7 @@ class Assembler {
             for (double& v : pass_.matrix->upper) v = 0.0;
         }
         pass_.side_traffic = pass_.source_traffic = 0.0;
+        pass_.weighted = 0.0;
         pass_.fault = {};
         if (!pass_.accounts) return;
         Accounts& a = *pass_.accounts;
@@ -59,6 +72,15 @@ class Assembler {
         a.face.assign(terms, 0.0);
         a.contact.assign(model_.contacts.size(), 0.0);
     }
+
+    [[nodiscard]] std::size_t first_term(Id face) const {
+        std::size_t term = 0;
+        for (Id f = 0; f < face; ++f) term += model_.faces[as_size(f)].terms.size();
+        return term;
+    }
+
+    [[nodiscard]] bool wants_residual() const { return pass_.residual || pass_.weights; }
+    [[nodiscard]] bool wants_matrix() const { return pass_.matrix || (pass_.weights && pass_.transposed); }
 
     /// A coefficient on the points of the block into `value` (and `slope`); faults are kept with their cell.
     bool evaluate(const Coefficient& c, const Points& at, double* value, double* slope, const Id* cells, int count) {
@@ -75,7 +97,7 @@ class Assembler {
         CellBlock& block = work_.cells;
         double* const nodal_T = work_.nodal_T;
         block.T = pass_.T ? nodal_T : nullptr;
-        block.conductivities = pass_.conduction ? region.conductivities : 0;
+        block.conductivities = region.conductivities;
         bool k_uniform = true;
         bool k_slope = false;
         for (int m = 0; m < region.conductivities; ++m) {
@@ -84,15 +106,15 @@ class Assembler {
         }
         const bool sources = !region.volume.empty();
         Wanted wanted;
-        wanted.residual = pass_.residual != nullptr && (pass_.T || sources);
-        wanted.matrix = pass_.matrix != nullptr;
-        wanted.slope = wanted.matrix && k_slope && pass_.T && pass_.conduction;
+        wanted.residual = wants_residual();
+        wanted.matrix = wants_matrix();
+        wanted.slope = wanted.matrix && k_slope && pass_.T;
         block.k_uniform = k_uniform;
         for (int m = 0; m < 3; ++m) {
             block.k[m] = m < region.conductivities ? work_.coefficient[m] : nullptr;
             block.k_slope[m] = wanted.slope && m < region.conductivities ? work_.coefficient[3 + m] : nullptr;
         }
-        if (k_uniform && pass_.conduction)
+        if (k_uniform)
             for (int m = 0; m < region.conductivities; ++m)
                 if (const Fault fault =
                         region.k[m].evaluate(slots_, pass_.time, {1, nullptr, nullptr, &place_->x, &place_->y},
@@ -108,7 +130,7 @@ class Assembler {
             kernel_.open(block);
             const Points at{static_cast<Index>(kernel_.points) * W, pass_.T ? block.point_T : nullptr, nullptr,
                             block.point_x, block.point_y};
-            if (!k_uniform && pass_.conduction)
+            if (!k_uniform)
                 for (int m = 0; m < region.conductivities; ++m)
                     if (!evaluate(region.k[m], at, work_.coefficient[m],
                                   wanted.slope ? work_.coefficient[3 + m] : nullptr, ids, block.count))
@@ -177,12 +199,13 @@ class Assembler {
     void scatter(const CellBlock& block, Id first, Wanted wanted) {
         const int n = kernel_.nodes;
         const int pairs = n * (n + 1) / 2;
-        if (wanted.residual)
+        if (pass_.residual)
             for (int b = 0; b < block.count; ++b) {
                 const Id* ids = model_.cell(first + b);
                 for (int i = 0; i < n; ++i) pass_.residual[ids[i]] += block.residual[i * W + b];
             }
-        if (!wanted.matrix) return;
+        if (pass_.weights) weigh_cells(block, first, wanted);
+        if (!pass_.matrix) return;
         double* lower = pass_.matrix->lower.data();
         const Id* map = model_.scatter.data() + static_cast<Index>(first) * pairs;
         for (int b = 0; b < block.count; ++b)
@@ -212,7 +235,26 @@ class Assembler {
         }
     }
 
-    void face(const FaceModel& face, std::size_t first_term) {
+    void weigh_cells(const CellBlock& block, Id first, Wanted wanted) {
+        const int n = kernel_.nodes;
+        for (int b = 0; b < block.count; ++b) {
+            const Id* ids = model_.cell(first + b);
+            for (int i = 0; i < n; ++i) {
+                const double w = pass_.weights[ids[i]];
+                if (w == 0.0) continue;
+                pass_.weighted += w * block.residual[i * W + b];
+                if (!pass_.transposed) continue;
+                for (int j = 0; j < n; ++j) {
+                    const int pair = i > j ? i * (i + 1) / 2 + j : j * (j + 1) / 2 + i;
+                    double J = block.matrix[pair * W + b];
+                    if (wanted.slope) J += block.slope[(i * n + j) * W + b];
+                    pass_.transposed[ids[j]] += w * J;
+                }
+            }
+        }
+    }
+
+    void face(const FaceModel& face, const SideList& sides, std::size_t first_term) {
         SideBlock& block = work_.sides;
         block.T = pass_.T ? work_.side_nodal_T : nullptr;
         double* TEPOR_RESTRICT flux = work_.side_coefficient[0];
@@ -220,12 +262,12 @@ class Assembler {
         block.flux = flux;
         block.flux_slope = slope;
         Wanted wanted;
-        wanted.residual = pass_.residual != nullptr;
-        wanted.matrix = pass_.matrix != nullptr;
+        wanted.residual = wants_residual();
+        wanted.matrix = wants_matrix();
         Id ids[W];
         const Index n = static_cast<Index>(kernel_.side_points) * W;
-        for (Index s = 0; s < face.sides.count(); s += W) {
-            block.count = gather_sides(model_, place_, pass_.T, work_.side_nodal_T, face.sides, s, block, ids);
+        for (Index s = 0; s < sides.count(); s += W) {
+            block.count = gather_sides(model_, place_, pass_.T, work_.side_nodal_T, sides, s, block, ids);
             kernel_.open_side(block, model_.lumped_faces);
             for (Index i = 0; i < n; ++i) flux[i] = slope[i] = 0.0;
             for (std::size_t t = 0; t < face.terms.size(); ++t)
@@ -237,7 +279,7 @@ class Assembler {
                 pass_.side_traffic += std::abs(sum);
             }
             kernel_.form_side(block, wanted, model_.lumped_faces);
-            scatter_sides(face.sides, s, block.count, 1.0);
+            scatter_sides(sides, s, block.count, 1.0);
         }
     }
 
@@ -289,7 +331,25 @@ class Assembler {
             const Id* ids = sides.unknowns.data() + (first + b) * m;
             if (pass_.residual)
                 for (int i = 0; i < m; ++i) pass_.residual[ids[i]] += sign * block.residual[i * W + b];
+            if (pass_.weights) weigh_side(ids, ids, b, sign);
             if (pass_.matrix) add_side_matrix(sides.side[as_size(first + b)].cell, ids, b);
+        }
+    }
+
+    /// Rows of the unknowns `row`, columns of `column`; the residual counts once, with its own columns.
+    void weigh_side(const Id* row, const Id* column, int b, double sign) {
+        const SideBlock& block = work_.sides;
+        const int m = kernel_.side_nodes;
+        for (int i = 0; i < m; ++i) {
+            const double w = pass_.weights[row[i]];
+            if (w == 0.0) continue;
+            if (row == column) pass_.weighted += sign * w * block.residual[i * W + b];
+            if (!pass_.transposed) continue;
+            const double column_sign = row == column ? 1.0 : -1.0;
+            for (int j = 0; j < m; ++j) {
+                const int pair = i > j ? i * (i + 1) / 2 + j : j * (j + 1) / 2 + i;
+                pass_.transposed[column[j]] += column_sign * w * block.matrix[pair * W + b];
+            }
         }
     }
 
@@ -328,8 +388,8 @@ class Assembler {
         block.flux_slope = slope;
         const int m = kernel_.side_nodes;
         Wanted wanted;
-        wanted.residual = pass_.residual != nullptr || pass_.accounts != nullptr;
-        wanted.matrix = pass_.matrix != nullptr;
+        wanted.residual = wants_residual() || pass_.accounts != nullptr;
+        wanted.matrix = wants_matrix();
         Id ids[W];
         const Index n = static_cast<Index>(kernel_.side_points) * W;
         for (Index s = 0; s < contact.first.count(); s += W) {
@@ -354,6 +414,13 @@ class Assembler {
                     for (int b = 0; b < block.count; ++b) pass_.accounts->contact[k] += block.residual[i * W + b];
             scatter_sides(contact.first, s, block.count, 1.0);
             scatter_sides(contact.second, s, block.count, -1.0);
+            if (pass_.weights)
+                for (int b = 0; b < block.count; ++b) {
+                    const Id* first = contact.first.unknowns.data() + (s + b) * m;
+                    const Id* second = contact.second.unknowns.data() + (s + b) * m;
+                    weigh_side(first, second, b, 1.0);
+                    weigh_side(second, first, b, 1.0);
+                }
             if (pass_.matrix) cross_terms(contact, s, block.count);
         }
     }
@@ -385,6 +452,9 @@ class Assembler {
         if (pass_.residual)
             for (std::size_t i = 0; i < heat.unknowns.size(); ++i)
                 pass_.residual[heat.unknowns[i]] -= total * heat.share[i];
+        if (pass_.weights)
+            for (std::size_t i = 0; i < heat.unknowns.size(); ++i)
+                pass_.weighted -= pass_.weights[heat.unknowns[i]] * total * heat.share[i];
         if (pass_.accounts) pass_.accounts->local[l] = total;
         pass_.source_traffic += std::abs(total);
     }

@@ -1,0 +1,187 @@
+#pragma once
+// Heat balances and their rounding floor.
+
+#include <algorithm>
+#include <cmath>
+#include <limits>
+#include <tepor/base/text.hpp>
+#include <tepor/body/impl/gather.hpp>
+#include <tepor/body/impl/split.hpp>
+#include <tepor/field/field.hpp>
+
+namespace tepor {
+
+TEPOR_INLINE std::string size_in_words(const MeshData& mesh) {
+    const Frame& frame = mesh.frame;
+    const double size = frame.size(mesh.dim);
+    switch (frame.kind()) {
+    case Frame::Kind::planar:
+        return mesh.dim == 1 ? detail::text(size, " m2 of wall") : detail::text("a depth of ", size, " m");
+    case Frame::Kind::cylindrical:
+        return mesh.dim == 1 ? detail::text("a length of ", size, " m") : std::string("the whole body of revolution");
+    case Frame::Kind::spherical: return "the whole sphere";
+    }
+    return {};
+}
+
+namespace detail {
+
+/// Area of a list of sides [m2] for the frame's size.
+inline double area_of(const Model& model, const Values& values, Workspace& work, const SideList& sides) {
+    SideBlock& block = work.sides;
+    block.T = nullptr;
+    Id ids[block_width];
+    double area = 0.0;
+    for (Index s = 0; s < sides.count(); s += block_width) {
+        block.count = gather_sides(model, model.places_of(values), nullptr, nullptr, sides, s, block, ids);
+        model.kernels->open_side(block, false);
+        for (int q = 0; q < model.kernels->side_points; ++q)
+            for (int b = 0; b < block.count; ++b) area += block.weight[q * block_width + b];
+    }
+    return area;
+}
+
+/// Largest k / h over the cells, h the least distance at which a shape function falls from 1 to 0.
+inline double largest_conductance(const Model& model, const Values& values, Workspace& work, const double* T) {
+    const CellKernels& kernel = *model.kernels;
+    CellBlock& block = work.cells;
+    block.T = work.nodal_T;
+    double largest = 0.0;
+    Id ids[block_width];
+    for (const RegionModel& region : model.regions)
+        for (Id c = region.first_cell; c < region.last_cell; c += block_width) {
+            block.count =
+                gather_cells(model, model.places_of(values), T, work.nodal_T, c, region.last_cell, block, ids);
+            kernel.open(block);
+            const Points at{static_cast<Index>(kernel.points) * block_width, block.point_T, nullptr, block.point_x,
+                            block.point_y};
+            double* k = work.coefficient[0];
+            for (int m = 0; m < (region.conductivities > 1 ? 2 : 1); ++m) {
+                if (const Fault fault = region.k[m].evaluate(values.slots.data(), {}, at, k, nullptr)) raise(fault);
+                for (int i = 0; i < kernel.nodes; ++i)
+                    for (int b = 0; b < block.count; ++b) {
+                        const double gx = block.gradient_x[i * block_width + b];
+                        const double gy = kernel.dim == 2 ? block.gradient_y[i * block_width + b] : 0.0;
+                        largest = std::max(largest, k[b] * std::sqrt(gx * gx + gy * gy));
+                    }
+            }
+        }
+    return largest;
+}
+
+/// Part of the surface belongs to no face: some side has one cell and no name.
+inline bool has_unnamed_surface(const Model& model) {
+    const MeshData& mesh = *model.mesh;
+    std::vector<KeyedSide> sides;
+    sides.reserve(mesh.region.size() * as_size(mesh.sides_per_cell));
+    for (Index c = 0; c < mesh.cell_count(); ++c)
+        for (int s = 0; s < mesh.sides_per_cell; ++s)
+            sides.push_back({side_key(mesh, *model.kernels, as_id(c), s), {as_id(c), s}});
+    sort_by_key(sides);
+    std::vector<SideKey> named;
+    for (const MeshFace& face : mesh.faces)
+        for (const CellSide side : face.sides) named.push_back(side_key(mesh, *model.kernels, side.cell, side.side));
+    std::sort(named.begin(), named.end());
+    for (std::size_t i = 0; i < sides.size(); ++i) {
+        const bool shared =
+            (i > 0 && sides[i - 1].key == sides[i].key) || (i + 1 < sides.size() && sides[i + 1].key == sides[i].key);
+        if (!shared && !std::binary_search(named.begin(), named.end(), sides[i].key)) {
+            const bool on_axis = mesh.frame.power() > 0 && mesh.nodes[as_size(sides[i].key.first)].x == 0.0 &&
+                                 mesh.nodes[as_size(sides[i].key.second)].x == 0.0;
+            if (!on_axis) return true;
+        }
+    }
+    return false;
+}
+
+} // namespace detail
+
+TEPOR_INLINE double rounding_floor(const Model& model, const Values& values, Workspace& work, const double* T) {
+    double hottest = 0.0;
+    for (Index u = 0; u < model.unknowns; ++u) hottest = std::max(hottest, std::abs(T[u]));
+    double area = 0.0;
+    for (const FaceModel& face : model.faces)
+        if (face.fixed.given() || !face.terms.empty()) area += detail::area_of(model, values, work, face.sides);
+    double factor = 16.0;
+    if (model.mesh->dim == 1) factor = std::max(factor, std::sqrt(detail::as_double(model.user_cell.size())));
+    return std::numeric_limits<double>::epsilon() * hottest * detail::largest_conductance(model, values, work, T) *
+           factor * area;
+}
+
+TEPOR_INLINE Balance Field::balance() const {
+    const Model& m = *model_;
+    Workspace work = m.kernels->workspace();
+    Accounts accounts;
+    Pass pass;
+    pass.T = temperature_.data();
+    pass.time = {time_, time_, 1.0};
+    pass.accounts = &accounts;
+    assemble(m, values_, work, pass);
+    if (pass.fault) raise(pass.fault);
+
+    Balance b;
+    b.size = size_in_words(*m.mesh);
+    const auto leaves = [&b](double heat) { (heat > 0.0 ? b.out : b.in) += std::abs(heat); };
+    for (std::size_t r = 0; r < m.regions.size(); ++r) {
+        RegionHeat region{m.regions[r].name, accounts.generated[r], accounts.side_loss[r],
+                          storage_.empty() ? 0.0 : storage_[r]};
+        for (std::size_t l = 0; l < m.locals.size(); ++l)
+            if (m.locals[l].region == detail::as_id(r)) region.generated += accounts.local[l];
+        b.generated += region.generated;
+        b.stored += region.stored;
+        leaves(region.side_loss);
+        b.regions.push_back(std::move(region));
+    }
+    double reaction_in = 0.0;
+    double traffic = pass.side_traffic + pass.source_traffic;
+    for (Index u = m.free; u < m.unknowns; ++u) {
+        const double r = reaction_[detail::as_size(u)];
+        reaction_in += r;
+        traffic += std::abs(r);
+        leaves(-r);
+    }
+    for (const double s : storage_) traffic += std::abs(s);
+    b.gross = 0.5 * traffic;
+
+    std::size_t term = 0;
+    double through_terms = 0.0;
+    std::vector<double> by_face(m.faces.size(), 0.0);
+    for (std::size_t f = 0; f < m.faces.size(); ++f)
+        for (std::size_t t = 0; t < m.faces[f].terms.size(); ++t, ++term) {
+            through_terms += accounts.face[term];
+            leaves(accounts.face[term]);
+        }
+    double side_losses = 0.0;
+    for (const double s : accounts.side_loss) side_losses += s;
+    b.left_over = reaction_in + b.generated - through_terms - side_losses - b.stored;
+    b.floor = rounding_floor(m, values_, work, temperature_.data());
+
+    term = 0;
+    for (std::size_t f = 0; f < m.faces.size(); ++f) {
+        const FaceModel& face = m.faces[f];
+        FaceHeat heat;
+        heat.name = face.name;
+        heat.area = detail::area_of(m, values_, work, face.sides);
+        for (const FaceTerm& t : face.terms) {
+            double& kind = t.kind == FaceTerm::Kind::film
+                               ? heat.film
+                               : (t.kind == FaceTerm::Kind::radiation ? heat.radiation : heat.flux);
+            kind += accounts.face[term++];
+        }
+        const Functional flow = compile(m, values_, heat_out_through(face.name));
+        heat.adiabatic = flow.heats.empty() && flow.reaction.unknown.empty();
+        if (flow.unbounded) {
+            heat.unbounded = true;
+            heat.unbounded_x = flow.unbounded->x;
+            heat.unbounded_y = flow.unbounded->y;
+        } else {
+            heat.out = evaluate(flow, m, values_, work, temperature_.data(), reaction_.data(), {time_, time_, 1.0});
+            if (face.fixed.given()) heat.prescribed = heat.out - heat.film - heat.radiation - heat.flux;
+        }
+        b.faces.push_back(std::move(heat));
+    }
+    b.has_unnamed = detail::has_unnamed_surface(m);
+    return b;
+}
+
+} // namespace tepor

@@ -1,0 +1,98 @@
+#pragma once
+// Engine: a factor (or multigrid hierarchy) and the work vectors of a solve, and the pool a body keeps of them.
+
+#include <memory>
+#include <mutex>
+#include <tepor/base/config.hpp>
+#include <tepor/body/assemble.hpp>
+#include <tepor/body/body.hpp>
+#include <tepor/body/model.hpp>
+#include <tepor/linear/banded.hpp>
+#include <tepor/linear/cholesky.hpp>
+#include <tepor/linear/conjugate_gradient.hpp>
+#include <tepor/linear/multigrid.hpp>
+#include <tepor/linear/tridiagonal.hpp>
+#include <vector>
+
+namespace tepor {
+
+/// How many right-hand sides a factor will meet: what tells a direct from an iterative solve.
+enum class Purpose { one_solve, many_solves };
+
+/// The linear algebra of one model: matrix over all unknowns, factor of its free block, work vectors. One thread at a time.
+class Engine {
+  public:
+    TEPOR_INLINE explicit Engine(std::shared_ptr<const Model> model);
+
+    /// Decomposes the free block of `matrix` as it stands.
+    /// @return false when it is singular; see singular_unknown()
+    [[nodiscard]] TEPOR_INLINE bool factor(Purpose purpose);
+
+    /// b := A^-1 b for the free unknowns, in place; with a direct factor it allocates nothing.
+    /// `limit` is the residual sum of |r| an iterative solve has to reach [W]; direct ones ignore it.
+    /// @return false when an iteration stalled
+    [[nodiscard]] TEPOR_INLINE bool solve(double* b, double limit);
+    /// The same with the transposed matrix.
+    [[nodiscard]] TEPOR_INLINE bool solve_transposed(double* b, double limit);
+
+    [[nodiscard]] Id singular_unknown() const noexcept { return singular_; }
+    [[nodiscard]] const Model& model() const noexcept { return *model_; }
+    [[nodiscard]] const std::shared_ptr<const Model>& shared_model() const noexcept { return model_; }
+    /// The factor in use is exact up to rounding.
+    [[nodiscard]] bool direct() const noexcept { return method_ != Method::multigrid; }
+    /// Iterations of the last solve; 0 for direct ones.
+    [[nodiscard]] Index iterations() const noexcept { return iterations_; }
+
+    SparseMatrix matrix;
+    std::vector<double> residual; ///< all unknowns
+    std::vector<double> step;     ///< free unknowns
+    Workspace work;
+
+    /// Values that entered the matrix when it was factored, for reuse; empty when it may not be reused.
+    std::vector<double> key;
+
+  private:
+    enum class Method { none, tridiagonal, banded, banded_lu, cholesky, multigrid };
+
+    [[nodiscard]] TEPOR_INLINE bool factor_line();
+    [[nodiscard]] TEPOR_INLINE bool solve_unsymmetric(double* b, double limit, bool transposed);
+    TEPOR_INLINE void precondition(const double* r, double* z) noexcept;
+
+    std::shared_ptr<const Model> model_;
+    Method method_ = Method::none;
+    Id singular_ = -1;
+    Index iterations_ = 0;
+    bool analyzed_ = false;
+    Tridiagonal tridiagonal_;
+    BandedCholesky banded_;
+    BandedLu banded_lu_;
+    SparseCholesky cholesky_;
+    Multigrid multigrid_;
+    ConjugateGradientWork cg_work_;
+    std::vector<double> cg_x_;
+};
+
+/// The values that enter the matrix, in slot order: the key an engine is reused by.
+[[nodiscard]] TEPOR_INLINE std::vector<double> matrix_key(const Model& model, const Values& values);
+
+/// A few engines a body keeps between steady solves, guarded: a const Body is safe from many threads, and setting a value
+/// back finds its factor again.
+class EnginePool final : public Body::Store {
+  public:
+    /// An engine factored for this key if there is one, else any idle or a new one.
+    [[nodiscard]] TEPOR_INLINE std::unique_ptr<Engine> borrow(const std::shared_ptr<const Model>& model,
+                                                              const std::vector<double>& key);
+    /// Gives it back for reuse.
+    TEPOR_INLINE void give_back(std::unique_ptr<Engine> engine);
+
+  private:
+    static constexpr std::size_t most = 4;
+    std::mutex guard_;
+    std::vector<std::unique_ptr<Engine>> idle_; // most recent last
+};
+
+} // namespace tepor
+
+#ifndef TEPOR_COMPILED
+#include <tepor/solve/impl/engine.hpp>
+#endif

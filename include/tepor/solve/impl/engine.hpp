@@ -1,0 +1,157 @@
+#pragma once
+// Which factor for which matrix, and the pool.
+
+#include <cmath>
+#include <tepor/solve/engine.hpp>
+
+namespace tepor {
+
+namespace detail {
+
+/// One solve: multigrid pays from about here on. Many: a factor pays up to about there.
+inline constexpr Index multigrid_from = 20000;
+inline constexpr Index direct_up_to = 200000;
+
+} // namespace detail
+
+TEPOR_INLINE Engine::Engine(std::shared_ptr<const Model> model)
+    : work(model->kernels->workspace()), model_(std::move(model)) {
+    prepare_matrix(*model_, matrix);
+    residual.assign(detail::as_size(model_->unknowns), 0.0);
+    step.assign(detail::as_size(model_->free), 0.0);
+}
+
+TEPOR_INLINE bool Engine::factor_line() {
+    const Index n = model_->free;
+    if (!matrix.symmetric()) {
+        method_ = Method::banded_lu;
+        const bool fine = banded_lu_.factor(matrix, n);
+        singular_ = fine ? -1 : detail::as_id(banded_lu_.singular_row());
+        return fine;
+    }
+    if (half_bandwidth(matrix, n) <= 1) {
+        method_ = Method::tridiagonal;
+        const bool fine = tridiagonal_.factor(matrix, n);
+        singular_ = fine ? -1 : detail::as_id(tridiagonal_.singular_row());
+        return fine;
+    }
+    method_ = Method::banded;
+    const bool fine = banded_.factor(matrix, n);
+    singular_ = fine ? -1 : detail::as_id(banded_.singular_row());
+    return fine;
+}
+
+TEPOR_INLINE bool Engine::factor(Purpose purpose) {
+    singular_ = -1;
+    const Index n = model_->free;
+    if (n == 0) return true;
+    if (model_->mesh->dim == 1) return factor_line();
+    const bool iterate = n >= (purpose == Purpose::one_solve ? detail::multigrid_from : detail::direct_up_to);
+    if (iterate) {
+        method_ = Method::multigrid;
+        const bool fine = multigrid_.setup(matrix, n);
+        singular_ = fine ? -1 : detail::as_id(multigrid_.singular_row());
+        if (fine) return true;
+    }
+    method_ = Method::cholesky;
+    if (!analyzed_) cholesky_.analyze(matrix, n, model_->places.data());
+    analyzed_ = true;
+    const bool fine = cholesky_.factor(matrix);
+    singular_ = fine ? -1 : detail::as_id(cholesky_.singular_row());
+    return fine;
+}
+
+TEPOR_INLINE void Engine::precondition(const double* r, double* z) noexcept {
+    const Index n = model_->free;
+    if (method_ == Method::multigrid) {
+        multigrid_.cycle(r, z);
+        return;
+    }
+    for (Index i = 0; i < n; ++i) z[i] = r[i];
+    cholesky_.solve(z);
+}
+
+TEPOR_INLINE bool Engine::solve(double* b, double limit) {
+    iterations_ = 0;
+    const Index n = model_->free;
+    if (n == 0) return true;
+    switch (method_) {
+    case Method::none: return false;
+    case Method::tridiagonal: tridiagonal_.solve(b); return true;
+    case Method::banded: banded_.solve(b); return true;
+    case Method::banded_lu: banded_lu_.solve(b); return true;
+    case Method::cholesky:
+    case Method::multigrid: break;
+    }
+    if (!matrix.symmetric()) return solve_unsymmetric(b, limit, false);
+    if (method_ == Method::cholesky) {
+        cholesky_.solve(b);
+        return true;
+    }
+    cg_x_.assign(detail::as_size(n), 0.0);
+    const auto reached = [n, limit](const double* r, double relative) {
+        if (relative > 1e-6) return false;
+        double sum = 0.0;
+        for (Index i = 0; i < n; ++i) sum += std::abs(r[i]);
+        return sum <= limit || relative < 1e-15;
+    };
+    IterationLimits limits;
+    const IterationReport report = conjugate_gradient(
+        matrix, n, b, cg_x_.data(), [this](const double* r, double* z) { multigrid_.cycle(r, z); }, limits, cg_work_,
+        reached);
+    iterations_ = report.iterations;
+    for (Index i = 0; i < n; ++i) b[i] = cg_x_[detail::as_size(i)];
+    return report.converged || report.residual < 1e-12;
+}
+
+TEPOR_INLINE bool Engine::solve_transposed(double* b, double limit) {
+    if (method_ == Method::banded_lu) {
+        banded_lu_.solve_transposed(b);
+        return true;
+    }
+    if (matrix.symmetric()) return solve(b, limit);
+    return solve_unsymmetric(b, limit, true);
+}
+
+TEPOR_INLINE bool Engine::solve_unsymmetric(double* b, double limit, bool transposed) {
+    (void)limit;
+    (void)transposed;
+    precondition(b, b);
+    return true;
+}
+
+TEPOR_INLINE std::vector<double> matrix_key(const Model& model, const Values& values) {
+    std::vector<double> key;
+    key.reserve(values.slots.size() + 1);
+    key.push_back(0.0); // never empty, so that an unfactored engine matches nothing
+    for (std::size_t s = 0; s < values.slots.size(); ++s)
+        if (model.roles[s].matrix || model.roles[s].place) key.push_back(values.slots[s]);
+    return key;
+}
+
+TEPOR_INLINE std::unique_ptr<Engine> EnginePool::borrow(const std::shared_ptr<const Model>& model,
+                                                        const std::vector<double>& key) {
+    {
+        const std::lock_guard<std::mutex> lock(guard_);
+        for (std::size_t i = idle_.size(); i-- > 0;)
+            if (idle_[i]->key == key) {
+                std::unique_ptr<Engine> found = std::move(idle_[i]);
+                idle_.erase(idle_.begin() + static_cast<Index>(i));
+                return found;
+            }
+        if (idle_.size() == most) {
+            std::unique_ptr<Engine> oldest = std::move(idle_.front());
+            idle_.erase(idle_.begin());
+            oldest->key.clear();
+            return oldest;
+        }
+    }
+    return std::make_unique<Engine>(model);
+}
+
+TEPOR_INLINE void EnginePool::give_back(std::unique_ptr<Engine> engine) {
+    const std::lock_guard<std::mutex> lock(guard_);
+    if (idle_.size() < most) idle_.push_back(std::move(engine));
+}
+
+} // namespace tepor

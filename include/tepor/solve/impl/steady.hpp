@@ -1,0 +1,145 @@
+#pragma once
+// The steady solve: one linear solve, or Newton's method with a line search.
+
+#include <cmath>
+#include <tepor/solve/engine.hpp>
+#include <tepor/solve/impl/newton.hpp>
+#include <tepor/solve/steady.hpp>
+
+namespace tepor {
+
+namespace detail {
+
+class SteadySolve {
+  public:
+    SteadySolve(Engine& engine, const Values& values, const SteadyOptions& options)
+        : engine_(engine), model_(engine.model()), values_(values), options_(options) {}
+
+    /// Fills T (prescribed part set already), leaves the residual of the result in the engine.
+    void run(double* T, bool factored) {
+        evaluate(T, !factored);
+        if (pass_.fault) raise(pass_.fault);
+        for (Index pass = 0;; ++pass) {
+            const double limit = options_.tolerance * gross_traffic(model_, pass_, engine_.residual.data()) +
+                                 residual_rounding(model_, engine_.matrix, T);
+            const double now = residual_sum(model_, engine_.residual.data());
+            history_.push_back({now, limit, 0.0, 1.0});
+            if (!std::isfinite(now)) stalled(T, "the residual is not finite");
+            // a linear body is solved at least once, so that its answer does not depend on where it started
+            if (now <= limit && (pass > 0 || model_.nonlinear)) break;
+            if (model_.nonlinear ? pass >= options_.most_passes : pass >= 4) stalled(T, "the passes ran out");
+            if (!factored && !engine_.factor(Purpose::one_solve)) raise_singular(model_, engine_.singular_unknown());
+            factored = !model_.nonlinear;
+            for (Index u = 0; u < model_.free; ++u) engine_.step[as_size(u)] = -engine_.residual[as_size(u)];
+            if (!engine_.solve(engine_.step.data(), 0.1 * limit)) stalled(T, "the linear solve stalled");
+            advance(T, now, limit);
+        }
+    }
+
+    [[nodiscard]] std::vector<SolvePass> take_history() { return std::move(history_); }
+
+  private:
+    void evaluate(const double* T, bool with_matrix) {
+        pass_ = Pass{};
+        pass_.T = T;
+        pass_.residual = engine_.residual.data();
+        pass_.matrix = with_matrix ? &engine_.matrix : nullptr;
+        assemble(model_, values_, engine_.work, pass_);
+    }
+
+    /// Takes the step; in a nonlinear body halves it until the residual falls.
+    void advance(double* T, double before, double limit) {
+        const double* step = engine_.step.data();
+        double largest = 0.0;
+        for (Index u = 0; u < model_.free; ++u) largest = std::max(largest, std::abs(step[u]));
+        double share = 1.0;
+        double taken = 0.0;
+        for (int halving = 0;; ++halving) {
+            for (Index u = 0; u < model_.free; ++u) T[u] += (share - taken) * step[u];
+            taken = share;
+            const bool last_try = !model_.nonlinear || halving == 40;
+            // the matrix comes along with the first try, which is nearly always taken
+            evaluate(T, model_.nonlinear && halving == 0);
+            const double now = pass_.fault ? HUGE_VAL : residual_sum(model_, engine_.residual.data());
+            if (now <= (1.0 - 1e-4 * share) * before || now <= limit || last_try) {
+                if (pass_.fault) raise(pass_.fault);
+                if (last_try && model_.nonlinear && !(now < before))
+                    stalled(T, "no step along Newton's direction lowers the residual");
+                if (halving > 0) evaluate(T, true);
+                break;
+            }
+            share *= 0.5;
+        }
+        history_.back().step = share * largest;
+        history_.back().damping = share;
+    }
+
+    [[noreturn]] void stalled(const double* T, const char* why) {
+        Id worst = 0;
+        for (Index u = 0; u < model_.free; ++u)
+            if (!(std::abs(engine_.residual[as_size(u)]) <= std::abs(engine_.residual[as_size(worst)])))
+                worst = as_id(u);
+        const Point p = model_.free > 0 ? model_.places_of(values_)[worst] : Point{};
+        std::string message =
+            text("steady: not converged, ", why, " after ", history_.size(), " passes; worst at (", p.x, ", ", p.y,
+                 "), temperature ", model_.free > 0 ? T[worst] : 0.0, "; residual [W] by pass:");
+        for (const SolvePass& pass : history_) message += text(" ", pass.residual);
+        message += text(
+            " (limit ", history_.empty() ? 0.0 : history_.back().limit,
+            "); check values and units, start nearer with SteadyOptions::start, or look for a source that runs away");
+        throw Error(ErrorCode::not_converged, "", message);
+    }
+
+    Engine& engine_;
+    const Model& model_;
+    const Values& values_;
+    const SteadyOptions& options_;
+    Pass pass_;
+    std::vector<SolvePass> history_;
+};
+
+inline void validate(const SteadyOptions& options) {
+    if (!(options.tolerance > 0.0 && options.tolerance < 1.0))
+        throw Error(ErrorCode::bad_value, "tolerance",
+                    text("SteadyOptions: tolerance = ", options.tolerance, ", expected 0 < tolerance < 1"));
+    if (options.most_passes < 1)
+        throw Error(ErrorCode::bad_value, "most_passes",
+                    text("SteadyOptions: most_passes = ", options.most_passes, ", expected at least 1"));
+}
+
+} // namespace detail
+
+TEPOR_INLINE Field steady(const Body& body, const SteadyOptions& options) {
+    detail::validate(options);
+    const std::shared_ptr<const Model> model = body.model();
+    Values values = body.values();
+    detail::require_level(*model, values);
+    std::vector<double> T(detail::as_size(model->unknowns));
+    if (options.from) {
+        if (options.from->temperature().size() != T.size())
+            throw Error(
+                ErrorCode::bad_value, "from",
+                "SteadyOptions: the field to start from belongs to another mesh; start from a field of this body");
+        T = options.from->temperature();
+    } else {
+        const double start = options.start ? *options.start : detail::start_temperature(*model, values, {});
+        std::fill(T.begin(), T.end(), start);
+    }
+    model->prescribe(values, {}, T.data());
+
+    EnginePool& pool = body.kept<EnginePool>();
+    const std::vector<double> key = matrix_key(*model, values);
+    std::unique_ptr<Engine> engine = pool.borrow(model, key);
+    const bool factored = !model->nonlinear && engine->key == key;
+    engine->key.clear();
+    detail::SteadySolve solve(*engine, values, options);
+    solve.run(T.data(), factored);
+    detail::check_tables(*model, values, engine->work, T.data());
+    Field field(model, std::move(values), std::move(T), engine->residual);
+    field.passes() = solve.take_history();
+    if (!model->nonlinear) engine->key = key;
+    pool.give_back(std::move(engine));
+    return field;
+}
+
+} // namespace tepor

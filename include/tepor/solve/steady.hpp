@@ -1,0 +1,33 @@
+#pragma once
+// steady: the temperature field at rest.
+
+#include <optional>
+#include <tepor/base/config.hpp>
+#include <tepor/body/body.hpp>
+#include <tepor/field/field.hpp>
+
+namespace tepor {
+
+/// How a steady solve starts and when it stops.
+struct SteadyOptions {
+    double tolerance = 1e-10;    ///< sum of |r| over the free unknowns, as a share of the gross heat traffic
+    Index most_passes = 60;      ///< of Newton's method
+    std::optional<double> start; ///< temperature everywhere to start from; default: the mean of the temperatures given
+    const Field* from = nullptr; ///< or a field of a body described alike
+};
+
+/// The steady temperature field of a body at its present parameter values.
+///
+/// Linear bodies take one solve; where conductivity, films, sources or radiation depend on temperature, Newton's method with
+/// the exact slope and a line search. Converged means: the sum of |r| over the free unknowns is below tolerance times the
+/// gross heat traffic plus what rounding leaves. A factor is kept by the body and used again while no value in the matrix
+/// changes. Safe from many threads on a const Body.
+/// @throws Error no_level (nothing sets the temperature level of a part), not_converged (with the history and the worst place),
+///         singular, outside_table, bad_law, and whatever the description gets wrong
+[[nodiscard]] TEPOR_INLINE Field steady(const Body& body, const SteadyOptions& options = {});
+
+} // namespace tepor
+
+#ifndef TEPOR_COMPILED
+#include <tepor/solve/impl/steady.hpp>
+#endif
