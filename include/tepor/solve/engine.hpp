@@ -9,7 +9,9 @@
 #include <tepor/body/model.hpp>
 #include <tepor/linear/banded.hpp>
 #include <tepor/linear/cholesky.hpp>
+#include <tepor/linear/choose.hpp>
 #include <tepor/linear/conjugate_gradient.hpp>
+#include <tepor/linear/krylov.hpp>
 #include <tepor/linear/multigrid.hpp>
 #include <tepor/linear/tridiagonal.hpp>
 #include <vector>
@@ -69,6 +71,8 @@ class Engine {
     SparseCholesky cholesky_;
     Multigrid multigrid_;
     ConjugateGradientWork cg_work_;
+    KrylovWork krylov_work_;
+    SparseMatrix symmetric_part_;
     std::vector<double> cg_x_;
 };
 

@@ -68,11 +68,11 @@ inline std::vector<Id> rank_unknowns(const Model& model, const std::vector<Id>& 
     std::vector<int> walk; // local nodes from left to right
     for (int i = 0; i < mesh.nodes_per_cell; ++i) walk.push_back(i);
     std::sort(walk.begin(), walk.end(), [&](int a, int b) {
-        double xa = 0.0;
-        double xb = 0.0;
-        model.kernels->reference_node(a, &xa);
-        model.kernels->reference_node(b, &xb);
-        return xa < xb;
+        double xa[2] = {0.0, 0.0};
+        double xb[2] = {0.0, 0.0};
+        model.kernels->reference_node(a, xa);
+        model.kernels->reference_node(b, xb);
+        return xa[0] < xb[0];
     });
     std::vector<unsigned char> seen(owner.size(), 0);
     order.reserve(owner.size());

@@ -8,9 +8,15 @@ namespace tepor {
 
 namespace detail {
 
-/// One solve: multigrid pays from about here on. Many: a factor pays up to about there.
-inline constexpr Index multigrid_from = 20000;
-inline constexpr Index direct_up_to = 200000;
+/// An iteration is done when the sum of |r| is below `limit`, or when rounding allows no more.
+inline auto stop_below(Index n, double limit) {
+    return [n, limit](const double* r, double relative) {
+        if (relative < 1e-15) return true;
+        double sum = 0.0;
+        for (Index i = 0; i < n; ++i) sum += std::abs(r[i]);
+        return sum <= limit;
+    };
+}
 
 } // namespace detail
 
@@ -46,17 +52,27 @@ TEPOR_INLINE bool Engine::factor(Purpose purpose) {
     const Index n = model_->free;
     if (n == 0) return true;
     if (model_->mesh->dim == 1) return factor_line();
-    const bool iterate = n >= (purpose == Purpose::one_solve ? detail::multigrid_from : detail::direct_up_to);
+    const bool iterate = choose_solver(n, 2, purpose == Purpose::one_solve ? 1 : 1000) == SolverKind::multigrid;
+    // an unsymmetric slope is preconditioned by its symmetric part
+    if (!matrix.symmetric()) {
+        symmetric_part_.rows = matrix.rows;
+        symmetric_part_.start = matrix.start;
+        symmetric_part_.column = matrix.column;
+        symmetric_part_.lower.resize(matrix.lower.size());
+        for (std::size_t e = 0; e < matrix.lower.size(); ++e)
+            symmetric_part_.lower[e] = 0.5 * (matrix.lower[e] + matrix.upper[e]);
+    }
+    const SparseMatrix& definite = matrix.symmetric() ? matrix : symmetric_part_;
     if (iterate) {
         method_ = Method::multigrid;
-        const bool fine = multigrid_.setup(matrix, n);
+        const bool fine = multigrid_.setup(definite, n);
         singular_ = fine ? -1 : detail::as_id(multigrid_.singular_row());
         if (fine) return true;
     }
     method_ = Method::cholesky;
-    if (!analyzed_) cholesky_.analyze(matrix, n, model_->places.data());
+    if (!analyzed_) cholesky_.analyze(definite, n, model_->places.data());
     analyzed_ = true;
-    const bool fine = cholesky_.factor(matrix);
+    const bool fine = cholesky_.factor(definite);
     singular_ = fine ? -1 : detail::as_id(cholesky_.singular_row());
     return fine;
 }
@@ -89,16 +105,9 @@ TEPOR_INLINE bool Engine::solve(double* b, double limit) {
         return true;
     }
     cg_x_.assign(detail::as_size(n), 0.0);
-    const auto reached = [n, limit](const double* r, double relative) {
-        if (relative > 1e-6) return false;
-        double sum = 0.0;
-        for (Index i = 0; i < n; ++i) sum += std::abs(r[i]);
-        return sum <= limit || relative < 1e-15;
-    };
-    IterationLimits limits;
-    const IterationReport report = conjugate_gradient(
-        matrix, n, b, cg_x_.data(), [this](const double* r, double* z) { multigrid_.cycle(r, z); }, limits, cg_work_,
-        reached);
+    const auto cycle = [this](const double* r, double* z) { multigrid_.cycle(r, z); };
+    const IterationReport report = conjugate_gradient(matrix, n, b, cg_x_.data(), cycle, IterationLimits{}, cg_work_,
+                                                      detail::stop_below(n, limit));
     iterations_ = report.iterations;
     for (Index i = 0; i < n; ++i) b[i] = cg_x_[detail::as_size(i)];
     return report.converged || report.residual < 1e-12;
@@ -114,10 +123,17 @@ TEPOR_INLINE bool Engine::solve_transposed(double* b, double limit) {
 }
 
 TEPOR_INLINE bool Engine::solve_unsymmetric(double* b, double limit, bool transposed) {
-    (void)limit;
-    (void)transposed;
-    precondition(b, b);
-    return true;
+    const Index n = model_->free;
+    cg_x_.assign(detail::as_size(n), 0.0);
+    const auto apply = [&](const double* x, double* y) {
+        transposed ? multiply_transposed(matrix, n, x, y) : multiply(matrix, n, x, y);
+    };
+    const IterationReport report = bicgstab(
+        apply, n, b, cg_x_.data(), [this](const double* r, double* z) { precondition(r, z); }, IterationLimits{},
+        krylov_work_, detail::stop_below(n, limit));
+    iterations_ = report.iterations;
+    for (Index i = 0; i < n; ++i) b[i] = cg_x_[detail::as_size(i)];
+    return report.converged || report.residual < 1e-10;
 }
 
 TEPOR_INLINE std::vector<double> matrix_key(const Model& model, const Values& values) {

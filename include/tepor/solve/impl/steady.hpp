@@ -31,7 +31,7 @@ class SteadySolve {
             if (!factored && !engine_.factor(Purpose::one_solve)) raise_singular(model_, engine_.singular_unknown());
             factored = !model_.nonlinear;
             for (Index u = 0; u < model_.free; ++u) engine_.step[as_size(u)] = -engine_.residual[as_size(u)];
-            if (!engine_.solve(engine_.step.data(), 0.1 * limit)) stalled(T, "the linear solve stalled");
+            if (!engine_.solve(engine_.step.data(), linear_limit(now, limit))) stalled(T, "the linear solve stalled");
             advance(T, now, limit);
         }
     }
@@ -45,6 +45,17 @@ class SteadySolve {
         pass_.residual = engine_.residual.data();
         pass_.matrix = with_matrix ? &engine_.matrix : nullptr;
         assemble(model_, values_, engine_.work, pass_);
+    }
+
+    /// How far an iterative linear solve has to go: Newton's own progress tells (Eisenstat & Walker 1996, choice 2).
+    [[nodiscard]] double linear_limit(double now, double limit) const {
+        if (!model_.nonlinear) return 0.1 * limit;
+        double forcing = 0.01;
+        if (history_.size() > 1) {
+            const double drop = now / history_[history_.size() - 2].residual;
+            forcing = std::min(forcing, 0.5 * drop * drop);
+        }
+        return std::max(0.1 * limit, forcing * now);
     }
 
     /// Takes the step; in a nonlinear body halves it until the residual falls.
