@@ -87,3 +87,10 @@
 #include <tepor/flux/residual.hpp>
 #include <tepor/flux/sweep.hpp>
 #include <tepor/flux/tables2.hpp>
+
+#include <tepor/field/balance.hpp>
+#include <tepor/field/field.hpp>
+#include <tepor/field/functional.hpp>
+
+#include <tepor/solve/engine.hpp>
+#include <tepor/solve/steady.hpp>
