@@ -70,6 +70,7 @@
 #include <tepor/body/assemble.hpp>
 #include <tepor/body/body.hpp>
 #include <tepor/body/coefficient.hpp>
+#include <tepor/body/gather.hpp>
 #include <tepor/body/model.hpp>
 #include <tepor/body/pattern.hpp>
 #include <tepor/body/split.hpp>

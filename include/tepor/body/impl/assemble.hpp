@@ -3,7 +3,7 @@
 
 #include <cmath>
 #include <tepor/body/assemble.hpp>
-#include <tepor/body/impl/gather.hpp>
+#include <tepor/body/gather.hpp>
 
 namespace tepor {
 

@@ -3,8 +3,8 @@
 
 #include <algorithm>
 #include <tepor/base/text.hpp>
-#include <tepor/body/model.hpp>
 #include <tepor/body/impl/split.hpp> // SideKey, KeyedSide
+#include <tepor/body/model.hpp>
 
 namespace tepor::detail {
 

@@ -5,8 +5,8 @@
 #include <cmath>
 #include <limits>
 #include <tepor/base/text.hpp>
-#include <tepor/body/impl/gather.hpp>
-#include <tepor/body/impl/split.hpp>
+#include <tepor/body/gather.hpp>
+#include <tepor/body/split.hpp>
 #include <tepor/field/field.hpp>
 
 namespace tepor {

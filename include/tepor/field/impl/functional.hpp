@@ -4,7 +4,7 @@
 #include <algorithm>
 #include <cmath>
 #include <tepor/base/text.hpp>
-#include <tepor/body/impl/gather.hpp>
+#include <tepor/body/gather.hpp>
 #include <tepor/body/split.hpp>
 #include <tepor/field/functional.hpp>
 #include <tepor/field/impl/edge_flux.hpp>

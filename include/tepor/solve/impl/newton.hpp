@@ -5,7 +5,7 @@
 #include <cmath>
 #include <limits>
 #include <tepor/base/text.hpp>
-#include <tepor/body/impl/gather.hpp>
+#include <tepor/body/gather.hpp>
 #include <tepor/field/field.hpp>
 #include <tepor/solve/engine.hpp>
 
