@@ -78,6 +78,7 @@
 
 #include <tepor/flux/conductance.hpp>
 #include <tepor/flux/defect.hpp>
+#include <tepor/flux/disc.hpp>
 #include <tepor/flux/equilibrate.hpp>
 #include <tepor/flux/equilibrated.hpp>
 #include <tepor/flux/fan.hpp>
