@@ -1,0 +1,554 @@
+#pragma once
+// The painting rule: regions of the faces of an arrangement, what of its edges can be seen, and the names of outer edges.
+
+#include <algorithm>
+#include <cmath>
+#include <limits>
+#include <tepor/base/error.hpp>
+#include <tepor/base/text.hpp>
+#include <tepor/mesh/curve.hpp>
+#include <tepor/mesh/drawing.hpp>
+#include <tepor/mesh/quality.hpp>
+
+namespace tepor::detail {
+
+/// One face of the arrangement: how often each part winds around it.
+struct PaintFace {
+    std::vector<int> winding;
+    Id region = -1;
+    std::vector<Id> cuts; ///< items of cuts that hold it
+};
+
+/// Faces of the arrangement by triangulating it; fills left_face and right_face of its pieces.
+class Painter {
+  public:
+    Painter(const Section& section, Arrangement& arrangement);
+
+    std::vector<PaintFace> faces;
+    std::vector<std::string> regions; ///< by number, in the order first added
+    std::vector<Id> face_of_point;    ///< face around each point that ends no piece, -1 for others
+
+  private:
+    void find_faces();
+    void wind();
+    void paint();
+
+    const Section& section_;
+    Arrangement& arrangement_;
+};
+
+TEPOR_INLINE Painter::Painter(const Section& section, Arrangement& arrangement)
+    : section_(section), arrangement_(arrangement) {
+    find_faces();
+    wind();
+    paint();
+}
+
+TEPOR_INLINE void Painter::find_faces() {
+    PlaneGraph graph;
+    graph.points = arrangement_.points;
+    graph.arcs = arrangement_.arcs;
+    graph.tolerance = arrangement_.tolerance;
+    for (const auto& p : arrangement_.pieces) {
+        PlaneGraph::Edge e;
+        e.a = p.a;
+        e.b = p.b;
+        e.arc = p.arc;
+        graph.edges.push_back(e);
+    }
+    Targets targets;
+    Refiner refiner(graph, targets);
+    refiner.start(false);
+
+    Delaunay& mesh = refiner.mesh;
+    std::vector<Id> face(mesh.label.size(), -1);
+    std::vector<Id> stack;
+    Id count = 0;
+    const auto flood = [&](Id t) {
+        if (face[as_size(t)] >= 0) return;
+        face[as_size(t)] = count;
+        stack.push_back(t);
+        while (!stack.empty()) {
+            const Id k = stack.back();
+            stack.pop_back();
+            for (Id h = 3 * k; h < 3 * k + 3; ++h) {
+                const Id g = mesh.twin[as_size(h)];
+                if (g < 0 || mesh.segment[as_size(h)] >= 0 || face[as_size(g / 3)] >= 0) continue;
+                face[as_size(g / 3)] = count;
+                stack.push_back(g / 3);
+            }
+        }
+        ++count;
+    };
+    flood(mesh.out[0] / 3); // a corner of the bounding square lies outside: face 0
+    for (Id t = 0; t < static_cast<Id>(face.size()); ++t) flood(t);
+    faces.resize(as_size(count));
+    for (std::size_t s = 0; s < refiner.edge_of_segment.size(); ++s) {
+        const Id h = mesh.segment_edge[s]; // in the direction of the piece, since start() leaves it so
+        auto& p = arrangement_.pieces[as_size(refiner.edge_of_segment[s])];
+        p.left_face = face[as_size(h / 3)];
+        p.right_face = face[as_size(mesh.twin[as_size(h)] / 3)];
+    }
+    std::vector<char> used(arrangement_.points.size(), 0);
+    for (const auto& p : arrangement_.pieces) used[as_size(p.a)] = used[as_size(p.b)] = 1;
+    face_of_point.assign(arrangement_.points.size(), -1);
+    for (std::size_t k = 0; k < used.size(); ++k)
+        if (used[k] == 0) face_of_point[k] = face[as_size(mesh.out[as_size(refiner.vertex_of_point[k])] / 3)];
+}
+
+TEPOR_INLINE void Painter::wind() {
+    const auto& pieces = arrangement_.pieces;
+    std::vector<std::vector<Id>> across(faces.size());
+    for (std::size_t k = 0; k < pieces.size(); ++k) {
+        across[as_size(pieces[k].left_face)].push_back(as_id(k));
+        across[as_size(pieces[k].right_face)].push_back(as_id(k));
+    }
+    std::vector<Id> stack{0};
+    faces[0].winding.assign(as_size(arrangement_.parts), 0);
+    while (!stack.empty()) {
+        const Id f = stack.back();
+        stack.pop_back();
+        for (Id k : across[as_size(f)]) {
+            const auto& p = pieces[as_size(k)];
+            const bool to_left = p.right_face == f;
+            const Id g = to_left ? p.left_face : p.right_face;
+            if (!faces[as_size(g)].winding.empty()) continue;
+            faces[as_size(g)].winding = faces[as_size(f)].winding;
+            for (const auto& o : p.owners)
+                if (o.part >= 0) faces[as_size(g)].winding[as_size(o.part)] += to_left ? o.sign : -o.sign;
+            stack.push_back(g);
+        }
+    }
+}
+
+TEPOR_INLINE void Painter::paint() {
+    std::vector<Id> region_of_item;
+    for (const auto& item : section_.items()) {
+        Id r = -1;
+        if (!item.cut) {
+            const auto found = std::find(regions.begin(), regions.end(), item.name);
+            r = as_id(found - regions.begin());
+            if (found == regions.end()) regions.push_back(item.name);
+        }
+        region_of_item.push_back(r);
+    }
+    for (PaintFace& face : faces) {
+        Id top = -1; // the item painted last
+        for (std::size_t part = 0; part < face.winding.size(); ++part) {
+            if (face.winding[part] == 0) continue;
+            const Id item = arrangement_.item_of_part[part];
+            if (section_.items()[as_size(item)].cut)
+                face.cuts.push_back(item);
+            else
+                top = std::max(top, item);
+        }
+        if (top >= 0 && face.cuts.empty()) face.region = region_of_item[as_size(top)];
+    }
+}
+
+/// The edges that can be seen, and the names of outer ones.
+class EdgeNamer {
+  public:
+    EdgeNamer(const Section& section, const Arrangement& arrangement, const Painter& painter, Picture& picture)
+        : section_(section), arrangement_(arrangement), painter_(painter), picture_(picture) {}
+
+    void run();
+
+  private:
+    /// A seen edge with what it came from.
+    struct Seen {
+        Id a;
+        Id b;
+        Id piece;
+        std::vector<Id> faces;
+    };
+
+    [[nodiscard]] Id region(Id face) const { return painter_.faces[as_size(face)].region; }
+    [[nodiscard]] bool outer(const Seen& s) const {
+        const auto& p = arrangement_.pieces[as_size(s.piece)];
+        return (region(p.left_face) < 0) != (region(p.right_face) < 0);
+    }
+    [[nodiscard]] Id arc(const Seen& s) const { return arrangement_.pieces[as_size(s.piece)].arc; }
+    [[nodiscard]] double length(const Seen& s) const;
+    Id face_number(const std::string& name);
+    void see();
+    void name_cuts();
+    void name_shape_edge(const Section::Face& face);
+    void name_between(const Section::Face& face);
+    Id point_on_edge(Point p, const std::string& name);
+    void dissolve();
+    void finish();
+
+    const Section& section_;
+    const Arrangement& arrangement_;
+    const Painter& painter_;
+    Picture& picture_;
+    std::vector<Point> points_;
+    std::vector<Seen> seen_;
+    std::vector<char> keep_;     ///< points that must stay
+    std::vector<int> pieces_at_; ///< pieces of the arrangement at each point
+};
+
+TEPOR_INLINE double EdgeNamer::length(const Seen& s) const {
+    const Point a = points_[as_size(s.a)];
+    const Point b = points_[as_size(s.b)];
+    const double chord = distance(a, b);
+    if (arc(s) < 0) return chord;
+    const double r = arrangement_.arcs[as_size(arc(s))].radius;
+    return 2.0 * r * std::asin(std::min(1.0, 0.5 * chord / r));
+}
+
+TEPOR_INLINE Id EdgeNamer::face_number(const std::string& name) {
+    auto& names = picture_.faces;
+    const auto found = std::find(names.begin(), names.end(), name);
+    if (found != names.end()) return as_id(found - names.begin());
+    names.push_back(name);
+    return as_id(names.size()) - 1;
+}
+
+TEPOR_INLINE void EdgeNamer::see() {
+    points_ = arrangement_.points;
+    keep_.assign(points_.size(), 0);
+    pieces_at_.assign(points_.size(), 0);
+    for (std::size_t k = 0; k < arrangement_.pieces.size(); ++k) {
+        const auto& p = arrangement_.pieces[k];
+        ++pieces_at_[as_size(p.a)];
+        ++pieces_at_[as_size(p.b)];
+        const Id l = region(p.left_face);
+        const Id r = region(p.right_face);
+        const bool line = std::any_of(p.owners.begin(), p.owners.end(), [](const auto& o) { return o.item < 0; });
+        if (l != r || (line && l >= 0)) seen_.push_back({p.a, p.b, as_id(k), {}});
+    }
+    for (std::size_t i = 0; i < arrangement_.held.size(); ++i) keep_[as_size(arrangement_.held[i])] = 1;
+}
+
+TEPOR_INLINE void EdgeNamer::name_cuts() {
+    for (std::size_t i = 0; i < section_.items().size(); ++i) {
+        const auto& item = section_.items()[i];
+        if (!item.cut || item.name.empty()) continue;
+        Id number = -1;
+        for (Seen& s : seen_) {
+            if (!outer(s)) continue;
+            const auto& p = arrangement_.pieces[as_size(s.piece)];
+            const Id empty = region(p.left_face) < 0 ? p.left_face : p.right_face;
+            const auto& cuts = painter_.faces[as_size(empty)].cuts;
+            if (std::find(cuts.begin(), cuts.end(), as_id(i)) == cuts.end()) continue;
+            if (std::none_of(p.owners.begin(), p.owners.end(), [&](const auto& o) { return o.item == as_id(i); }))
+                continue;
+            if (number < 0) number = face_number(item.name);
+            s.faces.push_back(number);
+        }
+        if (number < 0)
+            picture_.remarks.push_back(text("the cut of face \"", item.name, "\" touches nothing; it leaves no face"));
+    }
+}
+
+TEPOR_INLINE void EdgeNamer::name_shape_edge(const Section::Face& face) {
+    const Id number = face_number(face.name);
+    bool any = false;
+    for (Seen& s : seen_) {
+        const auto& owners = arrangement_.pieces[as_size(s.piece)].owners;
+        if (!outer(s) || std::none_of(owners.begin(), owners.end(),
+                                      [&](const auto& o) { return o.item == static_cast<Id>(face.drawn.item); }))
+            continue;
+        s.faces.push_back(number);
+        any = true;
+    }
+    if (!any)
+        throw Error(ErrorCode::bad_name, face.name,
+                    text("face \"", face.name,
+                         "\": no part of the edge of that shape is outer edge; it is hidden or inside the body"));
+}
+
+/// The point of the outer edge nearest to p; edges are split there.
+TEPOR_INLINE Id EdgeNamer::point_on_edge(Point p, const std::string& name) {
+    double best = std::numeric_limits<double>::infinity();
+    std::size_t edge = 0;
+    double best_t = 0.0;
+    Point where;
+    for (std::size_t k = 0; k < seen_.size(); ++k) {
+        if (!outer(seen_[k])) continue;
+        const Point a = points_[as_size(seen_[k].a)];
+        const Point b = points_[as_size(seen_[k].b)];
+        ShapeEdge e{a, b, false, {}, 0.0};
+        if (arc(seen_[k]) >= 0) {
+            e.arc = true;
+            e.centre = arrangement_.arcs[as_size(arc(seen_[k]))].centre;
+            e.radius = arrangement_.arcs[as_size(arc(seen_[k]))].radius;
+        }
+        double t = project_on_edge(e, p).t;
+        t = std::isfinite(t) ? std::clamp(t, 0.0, 1.0) : 0.0;
+        const Point q = t == 0.0 ? a : t == 1.0 ? b : e.arc ? on_arc({e.centre, e.radius}, a, b, t) : a + t * (b - a);
+        if (distance(p, q) < best) {
+            best = distance(p, q);
+            edge = k;
+            best_t = t;
+            where = q;
+        }
+    }
+    if (!(best <= 1e-6 * arrangement_.diagonal))
+        throw Error(ErrorCode::bad_geometry, name,
+                    text("face \"", name, "\": the point (", p.x, ", ", p.y, ") lies ", best,
+                         " m off the outer edge, expected on it; nearest is (", where.x, ", ", where.y, ")"));
+    Seen& s = seen_[edge];
+    // An end of the edge within reach is meant, not a place a hair beside it.
+    const double reach = std::max(2.0 * arrangement_.tolerance, 2.0 * best);
+    for (Id v : {s.a, s.b})
+        if (best_t == (v == s.a ? 0.0 : 1.0) || distance(points_[as_size(v)], where) <= reach) {
+            keep_[as_size(v)] = 1;
+            return v;
+        }
+    const Id v = as_id(points_.size());
+    points_.push_back(where);
+    keep_.push_back(1);
+    pieces_at_.push_back(2);
+    Seen second = s;
+    second.a = v;
+    s.b = v;
+    seen_.push_back(second);
+    return v;
+}
+
+TEPOR_INLINE void EdgeNamer::name_between(const Section::Face& face) {
+    const Id from = point_on_edge(face.from, face.name);
+    const Id to = point_on_edge(face.to, face.name);
+    const Id through = face.has_through ? point_on_edge(face.through, face.name) : -1;
+    if (from == to)
+        throw Error(
+            ErrorCode::bad_geometry, face.name,
+            text("face \"", face.name,
+                 "\": both points are the same point of the edge; name a whole loop with the edge of its shape"));
+    // Walk with the body on the left. Leaving a point where the outline touches itself: the sharpest turn to the right of the
+    // way on, which keeps to the same area.
+    const auto start_of = [&](const Seen& s) {
+        const auto& p = arrangement_.pieces[as_size(s.piece)];
+        return region(p.left_face) >= 0 ? s.a : s.b;
+    };
+    const auto end_of = [&](const Seen& s) { return start_of(s) == s.a ? s.b : s.a; };
+    PlaneGraph view;
+    view.points = points_;
+    view.arcs = arrangement_.arcs;
+    const auto leaving = [&](const Seen& s, Id v) {
+        PlaneGraph::Edge e;
+        e.a = s.a;
+        e.b = s.b;
+        e.arc = arc(s);
+        return view.leaving(e, v);
+    };
+    std::vector<std::vector<std::size_t>> out(points_.size());
+    for (std::size_t k = 0; k < seen_.size(); ++k)
+        if (outer(seen_[k])) out[as_size(start_of(seen_[k]))].push_back(k);
+    struct Way {
+        std::vector<std::size_t> edges;
+        double length = 0.0;
+        bool arrives = false;
+        bool passes = false;
+    };
+    const auto walk = [&](Id start, Id goal, Id by) {
+        Way best;
+        for (std::size_t first : out[as_size(start)]) {
+            Way way;
+            std::size_t k = first;
+            for (std::size_t steps = 0; steps <= seen_.size(); ++steps) {
+                way.edges.push_back(k);
+                way.length += length(seen_[k]);
+                const Id v = end_of(seen_[k]);
+                if (v == by) way.passes = true;
+                if (v == goal) {
+                    way.arrives = true;
+                    break;
+                }
+                if (v == start) break;
+                // Turn: the next edge clockwise from the way back.
+                const Point back = leaving(seen_[k], v);
+                std::size_t next = seen_.size();
+                double least = 1e300;
+                for (std::size_t c : out[as_size(v)]) {
+                    const Point d = leaving(seen_[c], v);
+                    double turn = std::atan2(cross(d, back), dot(d, back)); // clockwise from back to d
+                    if (turn <= 0.0) turn += 2.0 * pi;
+                    if (turn < least) {
+                        least = turn;
+                        next = c;
+                    }
+                }
+                if (next == seen_.size()) break;
+                k = next;
+            }
+            if (way.arrives && (!best.arrives || way.length < best.length)) best = way;
+        }
+        return best;
+    };
+    const Way there = walk(from, to, through);
+    const Way back = walk(to, from, through);
+    const Way* chosen = nullptr;
+    if (through >= 0) {
+        chosen = there.arrives && there.passes ? &there : back.arrives && back.passes ? &back : nullptr;
+        if (chosen == nullptr)
+            throw Error(ErrorCode::bad_geometry, face.name,
+                        text("face \"", face.name,
+                             "\": no way along one outline joins its three points; give points of one loop, in order"));
+    } else {
+        if (!there.arrives && !back.arrives)
+            throw Error(ErrorCode::bad_geometry, face.name,
+                        text("face \"", face.name, "\": (", face.from.x, ", ", face.from.y, ") and (", face.to.x, ", ",
+                             face.to.y, ") lie on different loops of the outer edge, expected one loop"));
+        if (there.arrives && back.arrives && std::abs(there.length - back.length) <= 1e-9 * arrangement_.diagonal)
+            throw Error(ErrorCode::bad_geometry, face.name,
+                        text("face \"", face.name, "\": both ways from (", face.from.x, ", ", face.from.y, ") to (",
+                             face.to.x, ", ", face.to.y, ") are ", there.length, " m long; give a point in between"));
+        chosen = !back.arrives || (there.arrives && there.length < back.length) ? &there : &back;
+    }
+    const Id number = face_number(face.name);
+    for (std::size_t k : chosen->edges) seen_[k].faces.push_back(number);
+}
+
+/// Points left over from hidden edges, in the middle of what is now one straight edge or one arc, go.
+TEPOR_INLINE void EdgeNamer::dissolve() {
+    std::vector<std::vector<std::size_t>> at(points_.size());
+    for (std::size_t k = 0; k < seen_.size(); ++k) {
+        std::sort(seen_[k].faces.begin(), seen_[k].faces.end());
+        seen_[k].faces.erase(std::unique(seen_[k].faces.begin(), seen_[k].faces.end()), seen_[k].faces.end());
+        at[as_size(seen_[k].a)].push_back(k);
+        at[as_size(seen_[k].b)].push_back(k);
+    }
+    std::vector<char> gone(seen_.size(), 0);
+    for (std::size_t v = 0; v < points_.size(); ++v) {
+        if (at[v].size() != 2 || keep_[v] != 0 || pieces_at_[v] <= 2) continue;
+        const std::size_t i = at[v][0];
+        const std::size_t j = at[v][1];
+        Seen& s = seen_[i];
+        Seen& t = seen_[j];
+        if (i == j || arc(s) != arc(t) || s.faces != t.faces) continue;
+        const auto& p = arrangement_.pieces[as_size(s.piece)];
+        const auto& q = arrangement_.pieces[as_size(t.piece)];
+        // The same direction: one enters v, the other leaves it.
+        const bool along = (s.b == as_id(v)) != (t.b == as_id(v));
+        const Id ql = along ? q.left_face : q.right_face;
+        const Id qr = along ? q.right_face : q.left_face;
+        if (region(p.left_face) != region(ql) || region(p.right_face) != region(qr)) continue;
+        const Id far_s = s.b == as_id(v) ? s.a : s.b;
+        const Id far_t = t.b == as_id(v) ? t.a : t.b;
+        if (far_s == far_t) continue;
+        const Point a = points_[as_size(far_s)];
+        const Point b = points_[as_size(far_t)];
+        if (arc(s) < 0) {
+            if (!(std::abs(cross(b - a, points_[v] - a)) <= 0.01 * arrangement_.tolerance * distance(a, b)) ||
+                !(dot(points_[v] - a, b - points_[v]) > 0.0))
+                continue;
+        } else {
+            const Point c = arrangement_.arcs[as_size(arc(s))].centre;
+            const Point m = points_[v];
+            const double turn =
+                std::atan2(cross(a - c, m - c), dot(a - c, m - c)) + std::atan2(cross(m - c, b - c), dot(m - c, b - c));
+            if (!(std::abs(turn) < 0.6 * pi)) continue;
+        }
+        if (s.b == as_id(v))
+            s.b = far_t;
+        else
+            s.a = far_t;
+        gone[j] = 1;
+        auto& list = at[as_size(far_t)];
+        std::replace(list.begin(), list.end(), j, i);
+        at[v].clear();
+    }
+    std::size_t kept = 0;
+    for (std::size_t k = 0; k < seen_.size(); ++k)
+        if (gone[k] == 0) {
+            if (kept != k) seen_[kept] = std::move(seen_[k]);
+            ++kept;
+        }
+    seen_.resize(kept);
+}
+
+TEPOR_INLINE void EdgeNamer::finish() {
+    PlaneGraph& graph = picture_.graph;
+    graph.tolerance = arrangement_.tolerance;
+    std::vector<Id> point(points_.size(), -1);
+    const auto use = [&](Id k) {
+        if (point[as_size(k)] < 0) {
+            point[as_size(k)] = as_id(graph.points.size());
+            graph.points.push_back(points_[as_size(k)]);
+        }
+        return point[as_size(k)];
+    };
+    // Regions that can be seen, in the order added; arcs that are used.
+    std::vector<Id> region_number(painter_.regions.size(), -1);
+    for (const Seen& s : seen_) {
+        const auto& p = arrangement_.pieces[as_size(s.piece)];
+        for (Id f : {p.left_face, p.right_face})
+            if (region(f) >= 0) region_number[as_size(region(f))] = 0;
+    }
+    for (std::size_t r = 0; r < region_number.size(); ++r) {
+        if (region_number[r] < 0) {
+            picture_.remarks.push_back(
+                text("region \"", painter_.regions[r], "\" is painted over or cut away; it has no cells"));
+            continue;
+        }
+        region_number[r] = as_id(picture_.regions.size());
+        picture_.regions.push_back(painter_.regions[r]);
+    }
+    if (picture_.regions.empty())
+        throw Error(ErrorCode::bad_geometry, "section",
+                    "section: nothing is left; the cuts remove everything that was painted");
+    std::vector<Id> arc_number(arrangement_.arcs.size(), -1);
+    const auto number_of = [&](Id r) { return r < 0 ? Id{-1} : region_number[as_size(r)]; };
+    for (const Seen& s : seen_) {
+        const auto& p = arrangement_.pieces[as_size(s.piece)];
+        PlaneGraph::Edge e;
+        e.a = use(s.a);
+        e.b = use(s.b);
+        if (p.arc >= 0) {
+            Id& n = arc_number[as_size(p.arc)];
+            if (n < 0) {
+                n = as_id(graph.arcs.size());
+                graph.arcs.push_back(arrangement_.arcs[as_size(p.arc)]);
+            }
+            e.arc = n;
+        }
+        e.left = number_of(region(p.left_face));
+        e.right = number_of(region(p.right_face));
+        if (!s.faces.empty()) {
+            const auto found = std::find(graph.face_sets.begin(), graph.face_sets.end(), s.faces);
+            e.face_set = as_id(found - graph.face_sets.begin());
+            if (found == graph.face_sets.end()) graph.face_sets.push_back(s.faces);
+        }
+        graph.edges.push_back(e);
+    }
+    for (std::size_t i = 0; i < arrangement_.held.size(); ++i) {
+        const Id k = arrangement_.held[i];
+        const Id f = painter_.face_of_point[as_size(k)];
+        if (point[as_size(k)] >= 0) continue;
+        // On a hidden edge: the regions beside it tell.
+        Id r = f >= 0 ? region(f) : -1;
+        for (const auto& p : arrangement_.pieces)
+            if (f < 0 && (p.a == k || p.b == k)) r = std::max(r, region(p.left_face));
+        if (r < 0)
+            throw Error(
+                ErrorCode::bad_geometry, "hold",
+                text("hold: the point (", section_.held()[i].x, ", ", section_.held()[i].y, ") lies outside the body"));
+        graph.held.push_back(use(k));
+    }
+}
+
+TEPOR_INLINE void EdgeNamer::run() {
+    see();
+    name_cuts();
+    for (const auto& face : section_.faces()) {
+        if (face.kind == Section::Face::Kind::between) name_between(face);
+        if (face.kind == Section::Face::Kind::edge) name_shape_edge(face);
+        if (face.kind == Section::Face::Kind::test || face.kind == Section::Face::Kind::rest) face_number(face.name);
+    }
+    dissolve();
+    finish();
+}
+
+TEPOR_INLINE Picture look_at(const Section& section) {
+    Picture picture;
+    Arrangement arrangement = arrange(section, picture.remarks);
+    const Painter painter(section, arrangement);
+    EdgeNamer(section, arrangement, painter, picture).run();
+    return picture;
+}
+
+} // namespace tepor::detail
