@@ -31,7 +31,7 @@ inline double residual_rounding(const Model& model, const SparseMatrix& matrix, 
     for (Index u = 0; u < model.free; ++u) sum += std::abs(matrix.diagonal(u));
     double hottest = 0.0;
     for (Index u = 0; u < model.unknowns; ++u) hottest = std::max(hottest, std::abs(T[u]));
-    return 2.0 * std::numeric_limits<double>::epsilon() * hottest * sum;
+    return 8.0 * std::numeric_limits<double>::epsilon() * hottest * sum;
 }
 
 /// Mean of the outside and prescribed temperatures that are plain values: where a solve starts.
