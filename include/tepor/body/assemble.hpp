@@ -34,6 +34,7 @@ struct Pass {
     const double* T = nullptr; ///< all unknowns, required
     TimeSpan time{};
     const Restriction* only = nullptr; ///< null: the whole model
+    bool cells = true;                 ///< off: only faces, contacts and local heats
 
     /// For functionals: with weights (all unknowns) the pass sums weights . r into `weighted` and adds J^T weights to `transposed`.
     const double* weights = nullptr;

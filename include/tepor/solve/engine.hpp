@@ -47,7 +47,8 @@ class Engine {
 
     SparseMatrix matrix;
     std::vector<double> residual; ///< all unknowns
-    std::vector<double> step;     ///< free unknowns
+    std::vector<double> step;     ///< all unknowns, zero where prescribed
+    std::vector<double> product;  ///< all unknowns, scratch
     Workspace work;
 
     /// Values that entered the matrix when it was factored, for reuse; empty when it may not be reused.

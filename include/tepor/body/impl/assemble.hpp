@@ -28,7 +28,7 @@ class Assembler {
     void run() {
         start();
         if (pass_.only) return run_part(*pass_.only);
-        for (std::size_t r = 0; r < model_.regions.size() && !pass_.fault; ++r) cells(r);
+        for (std::size_t r = 0; pass_.cells && r < model_.regions.size() && !pass_.fault; ++r) cells(r);
         std::size_t term = 0;
         for (std::size_t f = 0; f < model_.faces.size() && !pass_.fault; ++f) {
             if (!model_.faces[f].terms.empty()) face(model_.faces[f], model_.faces[f].sides, term);

@@ -28,7 +28,8 @@ TEPOR_INLINE Engine::Engine(std::shared_ptr<const Model> model)
     : work(model->kernels->workspace()), model_(std::move(model)) {
     prepare_matrix(*model_, matrix);
     residual.assign(detail::as_size(model_->unknowns), 0.0);
-    step.assign(detail::as_size(model_->free), 0.0);
+    step.assign(detail::as_size(model_->unknowns), 0.0);
+    product.assign(detail::as_size(model_->unknowns), 0.0);
 }
 
 TEPOR_INLINE bool Engine::factor_line() {

@@ -58,8 +58,31 @@ class SteadySolve {
         return std::max(0.1 * limit, forcing * now);
     }
 
+    /// A linear body's new residual is the old one plus the matrix times the step; only what passes the faces is asked anew.
+    void advance_linear(double* T) {
+        const double* step = engine_.step.data();
+        double largest = 0.0;
+        for (Index u = 0; u < model_.free; ++u) {
+            T[u] += step[u];
+            largest = std::max(largest, std::abs(step[u]));
+        }
+        history_.back().step = largest;
+        multiply(engine_.matrix, model_.unknowns, step, engine_.product.data());
+        for (Index u = 0; u < model_.unknowns; ++u) engine_.residual[as_size(u)] += engine_.product[as_size(u)];
+        Pass faces;
+        faces.T = T;
+        for (const RegionModel& region : model_.regions)
+            for (const VolumeTerm& term : region.volume)
+                if (term.kind == VolumeTerm::Kind::side_film) return evaluate(T, false); // its traffic depends on T
+        faces.cells = false;
+        assemble(model_, values_, engine_.work, faces);
+        if (faces.fault) raise(faces.fault);
+        pass_.side_traffic = faces.side_traffic;
+    }
+
     /// Takes the step; in a nonlinear body halves it until the residual falls.
     void advance(double* T, double before, double limit) {
+        if (!model_.nonlinear) return advance_linear(T);
         const double* step = engine_.step.data();
         double largest = 0.0;
         for (Index u = 0; u < model_.free; ++u) largest = std::max(largest, std::abs(step[u]));
@@ -68,14 +91,13 @@ class SteadySolve {
         for (int halving = 0;; ++halving) {
             for (Index u = 0; u < model_.free; ++u) T[u] += (share - taken) * step[u];
             taken = share;
-            const bool last_try = !model_.nonlinear || halving == 40;
+            const bool last_try = halving == 40;
             // the matrix comes along with the first try, which is nearly always taken
-            evaluate(T, model_.nonlinear && halving == 0);
+            evaluate(T, halving == 0);
             const double now = pass_.fault ? HUGE_VAL : residual_sum(model_, engine_.residual.data());
             if (now <= (1.0 - 1e-4 * share) * before || now <= limit || last_try) {
                 if (pass_.fault) raise(pass_.fault);
-                if (last_try && model_.nonlinear && !(now < before))
-                    stalled(T, "no step along Newton's direction lowers the residual");
+                if (last_try && !(now < before)) stalled(T, "no step along Newton's direction lowers the residual");
                 if (halving > 0) evaluate(T, true);
                 break;
             }
