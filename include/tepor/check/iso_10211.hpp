@@ -38,7 +38,7 @@ inline constexpr double iso_10211_tolerance = 0.1;
 ///     y = 0       H  sheet, 1.5 mm, aluminium 230 ------------------------- I   20 degC, 0.11 m2 K/W
 ///                 x = 0, 0.0015 (web), 0.015 (wood, flange)                 x = 0.5
 ///
-/// Faces "cold" (top) and "warm" (bottom); watts per metre of depth.
+/// The face "top" is the cold side, "bottom" the warm one; watts per metre of depth.
 /// @param size  longest cell edge far from the profile [m]
 [[nodiscard]] TEPOR_INLINE Body iso_10211_case_2(double size = 0.02);
 /// Points A to I.

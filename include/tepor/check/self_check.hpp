@@ -21,12 +21,13 @@ struct CheckResult {
 
 /// How this build computes: read with the compiler that made it, and tried when the check ran.
 struct BuildFacts {
-    std::string version;         ///< of the library
-    std::string compiler;        ///< name and version
-    std::string flags;           ///< what the compiler tells of its options
-    bool fast_math = false;      ///< value-changing optimisation was on (it is refused unless TEPOR_ALLOW_FAST_MATH)
-    bool keeps_nan = true;       ///< comparisons with NaN are false, as the checks of input need
-    bool keeps_denormals = true; ///< numbers below 2.2e-308 are not flushed to zero (a program linked with fast-math does)
+    std::string version;    ///< of the library
+    std::string compiler;   ///< name and version
+    std::string flags;      ///< what the compiler tells of its options
+    bool fast_math = false; ///< value-changing optimisation was on (it is refused unless TEPOR_ALLOW_FAST_MATH)
+    bool keeps_nan = true;  ///< comparisons with NaN are false, as the checks of input need
+    bool keeps_denormals =
+        true; ///< numbers below 2.2e-308 are not flushed to zero (a program linked with fast-math does)
     bool rounds_to_nearest = true;
 
     /// Nothing of it endangers results.

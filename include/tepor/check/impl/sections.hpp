@@ -26,8 +26,7 @@ inline std::vector<CheckRow> rectangle_with_hot_side() {
     static constexpr double T[3][2] = {
         {10.8835354414, 14.988284463}, {26.1399043775, 34.6334898111}, {52.9661161122, 63.0580570009}};
     for (int j = 0; j < 3; ++j)
-        for (int i = 0; i < 3; ++i)
-            rows.at(field, Point{0.1 * (i + 1), 0.075 * (j + 1)}, T[j][i == 1 ? 1 : 0], 1e-3);
+        for (int i = 0; i < 3; ++i) rows.at(field, Point{0.1 * (i + 1), 0.075 * (j + 1)}, T[j][i == 1 ? 1 : 0], 1e-3);
     rows.add("heat out of the bottom", 97.708131567, field[heat_out_through("bottom")], 1e-2, "W/m");
     rows.balance(field);
     return rows.take();
@@ -106,7 +105,8 @@ inline Mesh<Quadrilateral<2>> eccentric_ring(double outer_radius, double inner_r
     for (Index j = 0; j < around; ++j)
         for (Index i = 0; i < through; ++i) {
             // vertices in the order that runs counter-clockwise in the plane, side nodes between them, the middle last
-            static constexpr int lattice[9][2] = {{0, 0}, {0, 2}, {2, 2}, {2, 0}, {0, 1}, {1, 2}, {2, 1}, {1, 0}, {1, 1}};
+            static constexpr int lattice[9][2] = {{0, 0}, {0, 2}, {2, 2}, {2, 0}, {0, 1},
+                                                  {1, 2}, {2, 1}, {1, 0}, {1, 1}};
             const Id cell = as_id(j * through + i);
             for (const auto& [a, b] : lattice) mesh.cells.push_back(node(2 * i + a, 2 * j + b));
             if (i == 0) inner.sides.push_back({cell, 0});

@@ -45,8 +45,7 @@ inline std::vector<CheckRow> slab_with_exponential_source() {
                                    {.region = "slab", .thickness = 0.038}}),
                BodyOptions{.extra_degree = 12}};
         b.in("slab", Material{.conductivity = 0.8});
-        b.in("slab",
-             Generation{.per_volume = of_place([](const auto& place) { return 5e4 * exp(-place.x / 0.02); })});
+        b.in("slab", Generation{.per_volume = of_place([](const auto& place) { return 5e4 * exp(-place.x / 0.02); })});
         return b;
     };
     static constexpr double x[6] = {0.0, 0.008, 0.02, 0.038, 0.062, 0.1};
@@ -99,8 +98,7 @@ inline std::vector<CheckRow> slab_with_conductivity_of_temperature() {
     CheckRows rows;
     const auto body = [] {
         Body b{layers<Segment<1>>({{.region = "slab", .thickness = 0.1, .cells = 4}})};
-        b.in("slab",
-             Material{.conductivity = law([](const auto& s) { return 1.5 * (1.0 + 0.004 * s.temperature); })});
+        b.in("slab", Material{.conductivity = law([](const auto& s) { return 1.5 * (1.0 + 0.004 * s.temperature); })});
         b.on("inner", FixedTemperature{300.0}).on("outer", FixedTemperature{50.0});
         return b;
     };

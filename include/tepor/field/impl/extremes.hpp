@@ -2,6 +2,7 @@
 // Hottest and coldest places of the finite element function, inside cells too.
 
 #include <cmath>
+#include <limits>
 #include <tepor/field/functional.hpp>
 
 namespace tepor {
@@ -19,6 +20,11 @@ inline void clamp_to_cell(CellShape shape, double* xi) {
         xi[0] = clamp(xi[0] - over);
         xi[1] = clamp(1.0 - xi[0]);
     }
+}
+
+/// Higher by more than rounding: where a field is flat, its node stays the place that is named.
+inline bool exceeds(double value, double best) noexcept {
+    return value > best + 4.0 * std::numeric_limits<double>::epsilon() * std::abs(best);
 }
 
 /// Climbs inside one cell from its best node: a pattern search whose step is halved until it is lost in rounding.
@@ -63,7 +69,7 @@ inline Extreme climb(const Model& model, const Values& values, const double* T, 
                 for (int d = 0; d < 2; ++d) xi[d] = best_xi[d] + step * way[w][0] * (along[1][d] - along[0][d]);
             clamp_to_cell(model.mesh->shape, xi);
             const double v = value(xi);
-            if (v > best) {
+            if (exceeds(v, best)) {
                 best = v;
                 best_xi[0] = xi[0];
                 best_xi[1] = xi[1];
@@ -128,7 +134,7 @@ TEPOR_INLINE Extreme extreme_in(const Model& model, const Values& values, const 
         int i = 0;
         if (reach(c, high, i) <= direction * best.value) continue;
         const Extreme inside = detail::climb(model, values, T, c, direction, nullptr);
-        if (direction * inside.value > direction * best.value) best = inside;
+        if (detail::exceeds(direction * inside.value, direction * best.value)) best = inside;
     }
     return best;
 }
@@ -144,7 +150,7 @@ TEPOR_INLINE Extreme extreme_on(const Model& model, const Values& values, const 
         kernel.reference_node(kernel.side_node(side.side, 0), ends[0]);
         kernel.reference_node(kernel.side_node(side.side, kernel.dim == 1 ? 0 : 1), ends[1]);
         const Extreme here = detail::climb(model, values, T, side.cell, direction, ends);
-        if (!any || direction * here.value > direction * best.value) best = here;
+        if (!any || detail::exceeds(direction * here.value, direction * best.value)) best = here;
         any = true;
     }
     return best;

@@ -1,0 +1,105 @@
+#include <algorithm>
+#include <doctest/doctest.h>
+#include <string>
+#include <tepor/check/cases.hpp>
+#include <vector>
+
+using namespace tepor;
+
+namespace {
+
+/// Runs the case of an id and checks every row.
+void run(const std::string& id) {
+    for (const CheckCase& c : verified_cases()) {
+        if (c.id != id) continue;
+        CAPTURE(c.title);
+        CAPTURE(c.source);
+        const std::vector<CheckRow> rows = c.run();
+        CHECK(!rows.empty());
+        for (const CheckRow& row : rows) {
+            CAPTURE(row.what);
+            CAPTURE(row.expected);
+            CAPTURE(row.got);
+            CAPTURE(row.tolerance);
+            CHECK(row.passed());
+        }
+        return;
+    }
+    FAIL("there is no case " << id);
+}
+
+} // namespace
+
+TEST_CASE("every verified case has an id of its own, a title, a source and a run") {
+    std::vector<std::string> ids;
+    for (const CheckCase& c : verified_cases()) {
+        CHECK(!c.id.empty());
+        CHECK(!c.title.empty());
+        CHECK(!c.source.empty());
+        CHECK((c.run != nullptr));
+        CHECK(std::find(ids.begin(), ids.end(), c.id) == ids.end());
+        ids.push_back(c.id);
+    }
+    CHECK(ids.size() >= 20);
+}
+
+TEST_CASE("S1D-01: a generating slab is exact at the nodes, order 2 also between them") {
+    run("S1D-01");
+}
+TEST_CASE("S1D-02: nodes stay exact on unequal cells with a source falling exponentially") {
+    run("S1D-02");
+}
+TEST_CASE("S1D-03: resistances in series, a contact among them") {
+    run("S1D-03");
+}
+TEST_CASE("S1D-04: a generating hollow cylinder, its maximum and its place") {
+    run("S1D-04");
+}
+TEST_CASE("S1D-05: a cold sphere of two layers") {
+    run("S1D-05");
+}
+TEST_CASE("S1D-06: insulation about its critical radius, its thickness a parameter") {
+    run("S1D-06");
+}
+TEST_CASE("S1D-07: conductivity linear in temperature is exact at equal nodes") {
+    run("S1D-07");
+}
+TEST_CASE("S1D-08: a generating cylinder whose conductivity falls with temperature") {
+    run("S1D-08");
+}
+TEST_CASE("S1D-09: a straight fin with a convecting tip") {
+    run("S1D-09");
+}
+TEST_CASE("S1D-10: annular fins") {
+    run("S1D-10");
+}
+TEST_CASE("S2D-19: a rectangle with one hot side") {
+    run("S2D-19");
+}
+TEST_CASE("S2D-20: a generating square") {
+    run("S2D-20");
+}
+TEST_CASE("S2D-21: shape factors of concentric squares") {
+    run("S2D-21");
+}
+TEST_CASE("S2D-22: an eccentric annulus on a mesh from arrays") {
+    run("S2D-22");
+}
+TEST_CASE("S2D-23: a re-entrant corner") {
+    run("S2D-23");
+}
+TEST_CASE("S2D-24: spreading resistance of a strip on a slab") {
+    run("S2D-24");
+}
+TEST_CASE("S2D-25: ISO 10211 case 1, 28 points") {
+    run("S2D-25.1");
+}
+TEST_CASE("S2D-25: ISO 10211 case 2, 9 points and the heat flow") {
+    run("S2D-25.2");
+}
+TEST_CASE("S2D-26: NAFEMS T2, a radiating bar") {
+    run("S2D-26.T2");
+}
+TEST_CASE("S2D-26: NAFEMS T4, a plate with films") {
+    run("S2D-26.T4");
+}
