@@ -73,6 +73,8 @@
 #include <tepor/body/gather.hpp>
 #include <tepor/body/model.hpp>
 #include <tepor/body/pattern.hpp>
+#include <tepor/body/residual_slope.hpp>
+#include <tepor/body/side_tangent.hpp>
 #include <tepor/body/split.hpp>
 #include <tepor/body/statements.hpp>
 
@@ -93,6 +95,9 @@
 #include <tepor/field/balance.hpp>
 #include <tepor/field/field.hpp>
 #include <tepor/field/functional.hpp>
+#include <tepor/field/functional_slope.hpp>
 
 #include <tepor/solve/engine.hpp>
 #include <tepor/solve/steady.hpp>
+
+#include <tepor/answers/gradient.hpp>

@@ -128,16 +128,21 @@ class Body {
     };
     template <class Kept>
     [[nodiscard]] Kept& kept() const {
+        return *shared_kept<Kept>();
+    }
+    /// The same for those who may outlive the body.
+    template <class Kept>
+    [[nodiscard]] std::shared_ptr<Kept> shared_kept() const {
         const std::lock_guard<std::mutex> lock(cache_->guard);
-        if (!cache_->store) cache_->store = std::make_unique<Kept>();
-        return static_cast<Kept&>(*cache_->store);
+        if (!cache_->store) cache_->store = std::make_shared<Kept>();
+        return std::static_pointer_cast<Kept>(cache_->store);
     }
 
   private:
     struct Cache {
         std::mutex guard;
         std::shared_ptr<const Model> model;
-        std::unique_ptr<Store> store;
+        std::shared_ptr<Store> store;
     };
     struct Setting {
         Parameter parameter;

@@ -109,6 +109,11 @@ class Coefficient {
     TEPOR_INLINE void slot_derivative(Id slot, const double* slot_values, TimeSpan time, const Points& points,
                                       double* derivative) const;
 
+    /// All derivatives of a law: `derivative[lane * points.count + i]` for the lanes of LawLane. Only for laws.
+    /// @throws Error bad_law  the law stopped
+    TEPOR_INLINE void lane_derivatives(const double* slot_values, TimeSpan time, const Points& points,
+                                       std::vector<double>& derivative) const;
+
     /// Derivative of a law by place and by the fluid's temperature, for moving nodes and parameters behind a film law:
     /// lane as in LawLane. Zero for the other kinds.
     TEPOR_INLINE void lane_derivative(int lane, const double* slot_values, TimeSpan time, const Points& points,

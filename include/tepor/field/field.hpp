@@ -93,6 +93,9 @@ class Field {
     std::vector<double>& reaction() noexcept { return reaction_; }
     std::vector<double>& storage() noexcept { return storage_; }
     std::vector<SolvePass>& passes() noexcept { return passes_; }
+    /// What the solve left with its body (factors), for whoever asks more of this field while the body lives; may be gone.
+    [[nodiscard]] std::shared_ptr<Body::Store> store() const noexcept { return store_.lock(); }
+    void keep(const std::shared_ptr<Body::Store>& store) noexcept { store_ = store; }
 
   private:
     [[nodiscard]] TEPOR_INLINE Id region_id(std::string_view name) const;
@@ -103,6 +106,7 @@ class Field {
     std::vector<double> reaction_;
     std::vector<double> storage_;
     std::vector<SolvePass> passes_;
+    std::weak_ptr<Body::Store> store_;
     double time_ = 0.0;
 };
 

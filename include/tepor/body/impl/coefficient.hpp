@@ -238,23 +238,35 @@ TEPOR_INLINE void Coefficient::slot_derivative(Id slot, const double* slot_value
     }
 }
 
+TEPOR_INLINE void Coefficient::lane_derivatives(const double* slot_values, TimeSpan time, const Points& points,
+                                                std::vector<double>& derivative) const {
+    const Law& law = value_.law();
+    const detail::SlotGather parameters(slots_, slot_values);
+    const auto entries = detail::as_size((law_parameter_lane + static_cast<Index>(slots_.size())) * points.count);
+    const auto call_at = [&](double at, std::vector<double>& out) {
+        out.resize(entries);
+        const LawPoints where{points.count, points.temperature, points.fluid, points.x, points.y,
+                              at,           parameters.data()};
+        if (const int status = law.function().derivatives(where, out.data()); status != 0)
+            throw Error(ErrorCode::bad_law, law.name(),
+                        detail::text(label_, ": the derivatives of ", law.name(), " stopped with status ", status));
+    };
+    call_at(time.to, derivative);
+    if (!(law.uses().time && time.to > time.from && time.theta < 1.0)) return;
+    std::vector<double> early;
+    call_at(time.from, early);
+    for (std::size_t i = 0; i < entries; ++i)
+        derivative[i] = time.theta * derivative[i] + (1.0 - time.theta) * early[i];
+}
+
 TEPOR_INLINE void Coefficient::lane_derivative(int lane, const double* slot_values, TimeSpan time, const Points& points,
                                                double* derivative) const {
     const Index n = points.count;
     for (Index i = 0; i < n; ++i) derivative[i] = 0.0;
     if (value_.kind() != Value::Kind::law) return;
-    const Law& law = value_.law();
-    const detail::SlotGather parameters(slots_, slot_values);
-    const Index lanes = law_parameter_lane + static_cast<Index>(slots_.size());
-    std::vector<double> all(detail::as_size(lanes * n));
-    const auto add = [&](double at, double weight) {
-        const LawPoints where{n, points.temperature, points.fluid, points.x, points.y, at, parameters.data()};
-        if (law.function().derivatives(where, all.data()) != 0) return;
-        for (Index i = 0; i < n; ++i) derivative[i] += weight * all[detail::as_size(lane * n + i)];
-    };
-    const bool over_step = law.uses().time && time.to > time.from && time.theta < 1.0;
-    add(time.to, over_step ? time.theta : 1.0);
-    if (over_step) add(time.from, 1.0 - time.theta);
+    std::vector<double> all;
+    lane_derivatives(slot_values, time, points, all);
+    for (Index i = 0; i < n; ++i) derivative[i] = all[detail::as_size(lane * n + i)];
 }
 
 TEPOR_INLINE double Coefficient::integral_over_temperature(const double* slot_values, TimeSpan time, double low,

@@ -170,6 +170,7 @@ TEPOR_INLINE Field steady(const Body& body, const SteadyOptions& options) {
     detail::check_tables(*model, values, engine->work, T.data());
     Field field(model, std::move(values), std::move(T), engine->residual);
     field.passes() = solve.take_history();
+    field.keep(body.shared_kept<EnginePool>());
     if (!model->nonlinear) engine->key = key;
     pool.give_back(std::move(engine));
     return field;

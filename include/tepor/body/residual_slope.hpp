@@ -1,0 +1,63 @@
+#pragma once
+// The one derivative of the weak form by everything that can be set or moved: dr/dslot and dr/dplace.
+
+#include <tepor/base/config.hpp>
+#include <tepor/body/assemble.hpp>
+#include <tepor/body/model.hpp>
+#include <vector>
+
+namespace tepor {
+
+/// Sums of derivatives by every slot and, when wanted, by the place of every unknown.
+struct SlopeSums {
+    std::vector<double> slots; ///< per slot
+    std::vector<Point> places; ///< per unknown, per metre along x and y; empty: not wanted
+
+    SlopeSums() = default;
+    SlopeSums(const Model& model, bool with_places)
+        : slots(model.parameters.size(), 0.0), places(with_places ? detail::as_size(model.unknowns) : 0) {}
+};
+
+/// What is contracted: factor * sum over unknowns of weights . r at the temperature T.
+struct SlopePass {
+    const double* T = nullptr;       ///< all unknowns, required
+    const double* weights = nullptr; ///< all unknowns, required
+    TimeSpan time{};
+    const Restriction* only = nullptr; ///< null: the whole model
+    double factor = 1.0;
+};
+
+/// Adds factor * d(weights . r)/d(slot, place) at fixed T: conductivities, films, fluids, radiation, fluxes, generation, side
+/// films, contacts, local heat, tables and laws through their parameters, and with places the shape derivative of every
+/// integral (methods: the weak form moved with the nodes; exact for the quadrature used, curved cells and r-weights too).
+/// Local heat moves with its cell. A node on the axis of revolution moves along it only.
+///
+/// Slots that are places (thickness, start of a stack) are not in `slots` until chain_places() is called. Capacity does not
+/// enter r; see solve/capacity.hpp.
+/// Cost  one pass of the residual, whatever the number of slots
+/// @throws Error bad_law, not_supported (cells without fixed shape functions)
+TEPOR_INLINE void contract_slopes(const Model& model, const Values& values, Workspace& work, const SlopePass& pass,
+                                  SlopeSums& sums);
+
+/// Adds the sum over prescribed unknowns u of `by_prescribed[u] * dT_u/d(slot, place)`; reads [free, unknowns).
+TEPOR_INLINE void contract_prescribed(const Model& model, const Values& values, TimeSpan time,
+                                      const double* by_prescribed, SlopeSums& sums);
+
+/// Adds what the places mean for the slots that move them: slots += places . dplaces/dslot. Once, when all is summed.
+TEPOR_INLINE void chain_places(const Model& model, SlopeSums& sums);
+
+/// dr/dslot at fixed T into `column` (all unknowns, set). Place slots included, prescribed temperatures aside.
+TEPOR_INLINE void residual_by_slot(const Model& model, const Values& values, Workspace& work, const double* T,
+                                   TimeSpan time, Id slot, double* column);
+
+/// dT/dslot of the prescribed unknowns into `column[free .. unknowns)` (set); true when any is not zero.
+TEPOR_INLINE bool prescribed_by_slot(const Model& model, const Values& values, TimeSpan time, Id slot, double* column);
+
+/// Derivative of the place of each unknown by a slot; empty when the slot moves nothing.
+[[nodiscard]] TEPOR_INLINE std::vector<Point> places_by_slot(const Model& model, Id slot);
+
+} // namespace tepor
+
+#ifndef TEPOR_COMPILED
+#include <tepor/body/impl/residual_slope.hpp>
+#endif
