@@ -594,6 +594,22 @@ TEPOR_INLINE void Refiner::mend(Id triangle, int fault, bool plain) {
 }
 
 TEPOR_INLINE void Refiner::refine() {
+    // Sizes in the wrong unit are told before the work is done: triangles are about 0.43 size^2 each.
+    double least = 0.0;
+    for (Index t = 0; t < mesh.triangles(); ++t) {
+        const Id region = mesh.label[as_size(t)];
+        if (region < 0) continue;
+        const Id* o = mesh.org.data() + 3 * t;
+        const double size =
+            as_size(region) < targets_.region_size.size() ? targets_.region_size[as_size(region)] : targets_.size;
+        least += 0.5 * cross(mesh.at(o[1]) - mesh.at(o[0]), mesh.at(o[2]) - mesh.at(o[0])) / (0.43 * size * size);
+    }
+    const auto refuse = [&](const std::string& count) {
+        throw Error(ErrorCode::too_large, "size",
+                    text("size: ", count, " triangles, more than ", targets_.most_triangles,
+                         "; use a larger size, or raise Meshing::most_triangles"));
+    };
+    if (least > 1.5 * as_double(targets_.most_triangles)) refuse(text("about ", least));
     size_.assign(mesh.points.size(), 1e300);
     for (std::size_t s = 0; s < pieces_.size(); ++s) {
         const Id h = mesh.segment_edge[s];
@@ -626,10 +642,7 @@ TEPOR_INLINE void Refiner::refine() {
             if (mesh.label[as_size(t)] < 0) continue;
             if (const int fault = verdict(t); fault != 0) mend(t, fault, false);
         }
-        if (mesh.triangles() > targets_.most_triangles)
-            throw Error(ErrorCode::too_large, "size",
-                        text("size: the mesh passes ", targets_.most_triangles,
-                             " triangles; use a larger size, or raise Meshing::most_triangles"));
+        if (mesh.triangles() > targets_.most_triangles) refuse("the mesh has come to");
     }
 }
 

@@ -105,8 +105,13 @@ TEPOR_INLINE std::vector<Id> hand_over(const Refiner& refiner, Picture& picture,
         const Id t = inside[as_size(k)];
         const Id cell = as_id(mesh.region.size());
         mesh.region.push_back(d.label[as_size(t)]);
-        for (Id side = 0; side < 3; ++side) {
-            const Id h = 3 * t + side;
+        // The longest side is side 1, where bisection begins.
+        Id longest = 3 * t;
+        for (Id h = longest + 1; h < 3 * t + 3; ++h)
+            if (distance(d.at(d.from(h)), d.at(d.to(h))) > distance(d.at(d.from(longest)), d.at(d.to(longest))))
+                longest = h;
+        Id h = Delaunay::prev(longest);
+        for (Id side = 0; side < 3; ++side, h = Delaunay::next(h)) {
             Id& n = node[as_size(d.from(h))];
             if (n < 0) {
                 n = as_id(mesh.nodes.size());
