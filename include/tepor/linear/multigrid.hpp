@@ -48,6 +48,7 @@ class Multigrid {
   private:
     TEPOR_INLINE bool factor_coarsest(const SparseMatrix& matrix, const detail::Buffer<float>& scale);
     TEPOR_INLINE void descend(std::size_t depth) noexcept;
+    TEPOR_INLINE void descend_twice(std::size_t depth) noexcept;
 
     MultigridOptions options_;
     Index size_ = 0;

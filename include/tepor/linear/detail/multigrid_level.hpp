@@ -1,5 +1,5 @@
 #pragma once
-// One level of multigrid: the matrix scaled to a unit diagonal in single precision, and the way to the next level.
+// One level of multigrid as its sweeps read it: a stream of entries in single precision.
 
 #include <tepor/linear/detail/buffer.hpp>
 #include <vector>
@@ -15,20 +15,34 @@ struct Prolongation {
     Buffer<float> value;
 };
 
-/// Entries of the strictly lower triangle of D^-1/2 A D^-1/2. Rows come in blocks; entries inside a block lie by rows,
-/// padded to a multiple of `padding` (so that short rows of uneven length do not defeat branch prediction); entries
-/// between blocks are kept apart. Blocks make sweeps independent of each other: two run interleaved, or in threads.
+/// A level with matrix I + L + L^T (scaled to a unit diagonal) and prolongation P, which is not kept itself.
+///
+/// With x solving (I + L) x = r, one forward Gauss-Seidel sweep from zero, the residual is -L^T x, so its restriction is
+/// -(L P)^T x. After adding the correction P e, the backward sweep solves (I + L^T) y = r - L (x + P e) = x - (L P) e. So
+/// L and Q = L P are all that a cycle needs, each read once on the way down and once on the way up, and x is overwritten
+/// in place. Rows come in blocks that are swept independently, two interleaved or in threads; entries between blocks are
+/// kept apart, and Q counts them on both sides.
 struct MultigridLevel {
+    struct Entry {
+        Id column;
+        float value;
+    };
+    struct Apart {
+        Id row, column;
+        float value;
+    };
     Index rows = 0;
-    Index padding = 1;
+    Index columns = 0;        ///< rows of the next level, 0 where there is none
+    Index padding = 1;        ///< entries of L per row are padded to a multiple of this ...
+    Index coarse_padding = 1; ///< ... and those of Q to a multiple of this: even rows suit branch prediction
     std::vector<Index> block; ///< first row of each block, and the end
-    Buffer<Id> start;
-    Buffer<Id> column;
-    Buffer<float> value;
-    std::vector<Id> cross_row, cross_column; ///< between blocks, by rows
-    std::vector<float> cross_value;
-    Prolongation prolongation; ///< scaled on both sides; rows of this level, columns of the next
-    Buffer<float> x, right, residual;
+    Buffer<Id> start;         ///< row i: entries of L from start[2 i], of Q from start[2 i + 1]
+    Buffer<Entry> entry;
+    std::vector<Apart> cross;        ///< entries of L between blocks
+    std::vector<Apart> coarse_cross; ///< entries of Q whose column belongs to another block
+    Buffer<float> cross_product;     ///< work for `cross`
+    Buffer<float> x;                 ///< right-hand side, then solution
+    Buffer<float> right, first;      ///< for a second visit: the right-hand side and the first solution
 };
 
 } // namespace tepor::detail

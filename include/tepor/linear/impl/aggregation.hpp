@@ -196,25 +196,15 @@ inline Prolongation smooth_prolongation(const StrongGraph& graph, Index n, const
         value[0] = rest;
         return count;
     };
-    std::vector<Id> columns;
-    std::vector<float> values;
-    columns.reserve(as_size(3 * n));
-    values.reserve(as_size(3 * n));
+    out.column.reset(start[n] +
+                     n); // room for every neighbour in an aggregate of its own; what stays unused costs nothing
+    out.value.reset(start[n] + n);
     Index used = 0;
     for (Index i = 0; i < n; ++i) {
         out.start[i] = as_id(used);
-        const Index room = start[i + 1] - start[i] + 1;
-        if (static_cast<Index>(columns.size()) < used + room) {
-            columns.resize(as_size(std::max(used + room, used + used / 2)));
-            values.resize(columns.size());
-        }
-        used += row(i, columns.data() + used, values.data() + used);
+        used += row(i, out.column.data() + used, out.value.data() + used);
     }
     out.start[n] = as_id(used);
-    out.column.reset(used);
-    out.value.reset(used);
-    std::copy_n(columns.data(), used, out.column.data());
-    std::copy_n(values.data(), used, out.value.data());
     return out;
 }
 

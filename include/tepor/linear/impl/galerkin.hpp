@@ -6,54 +6,77 @@
 
 namespace tepor::detail {
 
-/// Lower triangle by rows of P^T A P; the diagonal last in each row, other columns in no order.
-///
-/// With A = L + D + L^T and T = (L + D/2) P, the product is S + S^T with S = P^T T: half the work of a full triple
-/// product. An entry of S right of the diagonal waits in a list of the row it is mirrored to, which comes later.
-inline SparseMatrix galerkin(const SparseMatrix& a, Index n, const Prolongation& p) {
-    const Index coarse = p.columns;
+/// (L + D/2) P by rows, A = L + D + L^T. Columns in no order.
+struct HalfProduct {
+    Buffer<Id> start;
+    Buffer<Id> column;
+    Buffer<double> value;
+
+    void grow(Index used, Index room) {
+        if (column.size() >= used + room) return;
+        Buffer<Id> columns(used + used / 2 + room);
+        Buffer<double> values(columns.size());
+        std::copy_n(column.data(), used, columns.data());
+        std::copy_n(value.data(), used, values.data());
+        column = std::move(columns);
+        value = std::move(values);
+    }
+};
+
+inline HalfProduct half_product(const SparseMatrix& a, Index n, const Prolongation& p) {
     const Id* a_start = a.start.data();
     const Id* a_column = a.column.data();
     const double* a_value = a.lower.data();
     const Id* p_start = p.start.data();
     const Id* p_column = p.column.data();
     const float* p_value = p.value.data();
-
-    // T by rows.
-    Buffer<Id> t_start(n + 1);
-    std::vector<Id> t_column;
-    std::vector<double> t_value;
-    t_column.resize(as_size(6 * n + 64));
-    t_value.resize(t_column.size());
-    Buffer<Id> mark(coarse + 1);
-    for (Index c = 0; c < coarse; ++c) mark[c] = -1;
+    HalfProduct t;
+    t.start.reset(n + 1);
+    t.column.reset(5 * n + 64);
+    t.value.reset(5 * n + 64);
+    Buffer<Id> mark(p.columns + 1);
+    for (Index c = 0; c < p.columns; ++c) mark[c] = -1;
     Index used = 0;
     for (Index i = 0; i < n; ++i) {
         const Index begin = used;
-        t_start[i] = as_id(begin);
+        t.start[i] = as_id(begin);
+        Index room = 0;
+        for (Index e = a_start[i]; e < a_start[i + 1]; ++e) room += p_start[a_column[e] + 1] - p_start[a_column[e]];
+        t.grow(used, room);
+        Id* column = t.column.data();
+        double* value = t.value.data();
         for (Index e = a_start[i]; e < a_start[i + 1]; ++e) {
             const Index j = a_column[e];
             const double v = j == i ? 0.5 * a_value[e] : a_value[e];
-            const Index end = p_start[j + 1];
-            if (static_cast<Index>(t_column.size()) < used + end - p_start[j]) {
-                t_column.resize(t_column.size() + t_column.size() / 2 + as_size(end - p_start[j]));
-                t_value.resize(t_column.size());
-            }
-            for (Index k = p_start[j]; k < end; ++k) {
+            for (Index k = p_start[j]; k < p_start[j + 1]; ++k) {
                 const Index c = p_column[k];
                 const double term = v * static_cast<double>(p_value[k]);
                 if (mark[c] < begin) {
                     mark[c] = as_id(used);
-                    t_column[as_size(used)] = as_id(c);
-                    t_value[as_size(used)] = term;
-                    ++used;
+                    column[used] = as_id(c);
+                    value[used++] = term;
                 } else {
-                    t_value[as_size(mark[c])] += term;
+                    value[mark[c]] += term;
                 }
             }
         }
     }
-    t_start[n] = as_id(used);
+    t.start[n] = as_id(used);
+    return t;
+}
+
+/// Lower triangle by rows of P^T A P; the diagonal last in each row, other columns in no order.
+///
+/// With T = (L + D/2) P the product is S + S^T, S = P^T T: half the work of a full triple product. An entry of S right of
+/// the diagonal waits in a list of the row it is mirrored to, which comes later.
+inline SparseMatrix galerkin(const HalfProduct& t, Index n, const Prolongation& p) {
+    const Index coarse = p.columns;
+    const Id* p_start = p.start.data();
+    const Id* p_column = p.column.data();
+    const float* p_value = p.value.data();
+    const Id* t_start = t.start.data();
+    const Id* t_column = t.column.data();
+    const double* t_value = t.value.data();
 
     // P^T by rows.
     Buffer<Id> r_start(coarse + 2), r_row(p_start[n]);
@@ -102,8 +125,8 @@ inline SparseMatrix galerkin(const SparseMatrix& a, Index n, const Prolongation&
             const Index i = r_row[k];
             const double weight = static_cast<double>(r_value[k]);
             for (Index e = t_start[i]; e < t_start[i + 1]; ++e) {
-                const Index c = t_column[as_size(e)];
-                const double term = weight * t_value[as_size(e)];
+                const Index c = t_column[e];
+                const double term = weight * t_value[e];
                 if (seen[c] != row) {
                     seen[c] = as_id(row);
                     sum[c] = term;
