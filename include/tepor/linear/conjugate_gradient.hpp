@@ -2,10 +2,10 @@
 // Preconditioned conjugate gradients for symmetric positive definite systems, in double precision.
 
 #include <cmath>
-#include <concepts>
 #include <tepor/base/numbers.hpp>
 #include <tepor/linear/detail/buffer.hpp>
 #include <tepor/linear/sparse_matrix.hpp>
+#include <type_traits>
 
 namespace tepor {
 
@@ -50,11 +50,36 @@ inline double dot_product(const double* a, const double* b, Index n) noexcept {
     return (s0 + s2) + (s1 + s3);
 }
 
+/// p := z + beta p, y := A p for a symmetric A; returns p.y. One pass: row i needs no p beyond its own.
+inline double direction_product(const SparseMatrix& matrix, Index n, const double* z, double beta, double* p,
+                                double* y) noexcept {
+    const Id* start = matrix.start.data();
+    const Id* column = matrix.column.data();
+    const double* value = matrix.lower.data();
+    double even = 0.0, odd = 0.0;
+    for (Index i = 0; i < n; ++i) {
+        const Index last = start[i + 1] - 1;
+        const double pi = beta == 0.0 ? z[i] : z[i] + beta * p[i];
+        double sum = 0.0;
+        for (Index e = start[i]; e < last; ++e) {
+            const Index j = column[e];
+            sum += value[e] * p[j];
+            y[j] += value[e] * pi;
+        }
+        const double own = value[last] * pi;
+        p[i] = pi;
+        y[i] = sum + own;
+        (i % 2 == 0 ? even : odd) += pi * (2.0 * sum + own);
+    }
+    return even + odd;
+}
+
 } // namespace detail
 
 /// Solves A x = b for the leading n x n block, from the given x.
 ///
-/// @param precondition  called as precondition(r, z): z := B r, B symmetric positive definite, such as Multigrid::cycle
+/// @param precondition  called as precondition(r, z): z := B r, B symmetric positive definite, such as Multigrid::cycle; may
+///                      return r.z, which is then not computed again
 /// @param stop          called as stop(residual, relative) after each iteration with the n residuals b - A x and their
 ///                      norm relative to b; true ends the iteration as converged (in place of limits.tolerance)
 /// Not converged: the iterations ran out, or the matrix or B proved not to be positive definite. x is then the last iterate.
@@ -92,26 +117,27 @@ IterationReport conjugate_gradient(const SparseMatrix& matrix, Index n, const do
     }
     double before = 0.0; // r.z of the iteration before; 0 starts again along z
     while (report.iterations < limits.most) {
-        precondition(static_cast<const double*>(r), z);
-        const double rz = detail::dot_product(r, z, n);
+        double rz = 0.0;
+        if constexpr (std::is_convertible_v<decltype(precondition(static_cast<const double*>(r), z)), double>) {
+            rz = precondition(static_cast<const double*>(r), z);
+        } else {
+            precondition(static_cast<const double*>(r), z);
+            rz = detail::dot_product(r, z, n);
+        }
         if (!(rz > 0.0)) break;
         const double beta = before > 0.0 ? rz / before : 0.0;
         before = rz;
-        if (beta == 0.0) {
-            for (Index i = 0; i < n; ++i) p[i] = z[i];
-        } else {
-            for (Index i = 0; i < n; ++i) p[i] = z[i] + beta * p[i];
-        }
-        multiply(matrix, n, p, ap);
-        const double curvature = detail::dot_product(p, ap, n);
+        const double curvature = detail::direction_product(matrix, n, z, beta, p, ap);
         if (!(curvature > 0.0)) break;
         const double alpha = rz / curvature;
-        double sum = 0.0;
+        double s0 = 0.0, s1 = 0.0;
         for (Index i = 0; i < n; ++i) {
             x[i] += alpha * p[i];
-            r[i] -= alpha * ap[i];
-            sum += r[i] * r[i];
+            const double ri = r[i] - alpha * ap[i];
+            r[i] = ri;
+            (i % 2 == 0 ? s0 : s1) += ri * ri;
         }
+        const double sum = s0 + s1;
         ++report.iterations;
         report.residual = std::sqrt(sum) / scale;
         if (!stop(static_cast<const double*>(r), report.residual)) continue;

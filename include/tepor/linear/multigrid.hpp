@@ -33,8 +33,9 @@ class Multigrid {
     [[nodiscard]] TEPOR_INLINE bool setup(const SparseMatrix& matrix, Index n);
 
     /// z := B r with B close to A^-1, symmetric and positive definite. n values each; z may be r. Allocates nothing.
+    /// @return r.z
     /// Uses work space of this object: one thread at a time.
-    TEPOR_INLINE void cycle(const double* r, double* z) noexcept;
+    TEPOR_INLINE double cycle(const double* r, double* z) noexcept;
 
     [[nodiscard]] Index size() const noexcept { return size_; }
     [[nodiscard]] Index levels() const noexcept {

@@ -39,15 +39,16 @@ class MultigridSolver {
     /// Improves x towards A^-1 b until the tolerance of the limits.
     IterationReport solve(const double* b, double* x) {
         return conjugate_gradient(
-            *matrix_, size_, b, x, [this](const double* r, double* z) { multigrid_.cycle(r, z); }, limits_, work_);
+            *matrix_, size_, b, x, [this](const double* r, double* z) { return multigrid_.cycle(r, z); }, limits_,
+            work_);
     }
 
     /// Improves x towards A^-1 b until stop(residual, relative) says so; see conjugate_gradient().
     template <class Stop>
     IterationReport solve(const double* b, double* x, Stop&& stop) {
         return conjugate_gradient(
-            *matrix_, size_, b, x, [this](const double* r, double* z) { multigrid_.cycle(r, z); }, limits_, work_,
-            stop);
+            *matrix_, size_, b, x, [this](const double* r, double* z) { return multigrid_.cycle(r, z); }, limits_,
+            work_, stop);
     }
 
     [[nodiscard]] const IterationReport& report() const noexcept { return report_; }

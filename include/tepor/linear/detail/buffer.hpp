@@ -36,7 +36,12 @@ class Buffer {
     }
     ~Buffer() { release(); }
 
-    /// Makes room for `size` values; the old ones are lost. Keeps its memory when the size stays.
+    /// Makes room for `size` values at least; the old ones are lost when it must grow.
+    void reserve(Index size) {
+        if (size > size_) reset(size);
+    }
+
+    /// Makes room for `size` values exactly; the old ones are lost. Keeps its memory when the size stays.
     void reset(Index size) {
         if (size == size_) return;
         release();

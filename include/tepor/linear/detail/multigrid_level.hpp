@@ -13,6 +13,8 @@ struct Prolongation {
     Buffer<Id> start;
     Buffer<Id> column;
     Buffer<float> value;
+    Buffer<Id> mark;     ///< work
+    Buffer<float> total; ///< work
 };
 
 /// A level with matrix I + L + L^T (scaled to a unit diagonal) and prolongation P, which is not kept itself.
@@ -33,8 +35,8 @@ struct MultigridLevel {
     };
     Index rows = 0;
     Index columns = 0;        ///< rows of the next level, 0 where there is none
-    Index padding = 1;        ///< entries of L per row are padded to a multiple of this ...
-    Index coarse_padding = 1; ///< ... and those of Q to a multiple of this: even rows suit branch prediction
+    Index padding = 1;        ///< entries of L per row are padded to a multiple of this (even rows suit branch
+                              ///< prediction), those of Q to an even number
     std::vector<Index> block; ///< first row of each block, and the end
     Buffer<Id> start;         ///< row i: entries of L from start[2 i], of Q from start[2 i + 1]
     Buffer<Entry> entry;

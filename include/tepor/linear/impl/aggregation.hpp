@@ -12,22 +12,26 @@ namespace tepor::detail {
 
 /// Strong couplings of every row, both sides; values relative to the diagonal of the row.
 struct StrongGraph {
-    Buffer<Id> start;     ///< n + 1
-    Buffer<Id> neighbour; ///< ascending in each row
-    Buffer<float> ratio;  ///< a_ij / a_ii
-    Buffer<float> lumped; ///< 1 + sum of the weak a_ij / a_ii: the diagonal with the weak couplings lumped to it
+    Buffer<Id> start;       ///< n + 1
+    Buffer<Id> neighbour;   ///< ascending in each row
+    Buffer<float> ratio;    ///< a_ij / a_ii
+    Buffer<double> inverse; ///< 1 / a_ii
+    Buffer<Id> next;        ///< work
+    Buffer<float> lumped;   ///< 1 + sum of the weak a_ij / a_ii: the diagonal with the weak couplings lumped to it
 };
 
 /// a_ij is strong when a_ij^2 >= strength^2 a_ii a_jj.
 inline void find_strong(const SparseMatrix& a, Index n, double strength, StrongGraph& out) {
-    out.start.reset(n + 1);
-    out.lumped.reset(n);
-    Buffer<double> inverse(n);
+    out.start.reserve(n + 1);
+    out.lumped.reserve(n);
+    out.inverse.reserve(n);
+    out.next.reserve(n + 1);
+    double* inverse = out.inverse.data();
+    Id* next = out.next.data();
     const Id* start = a.start.data();
     const Id* column = a.column.data();
     const double* value = a.lower.data();
     for (Index i = 0; i < n; ++i) inverse[i] = 1.0 / value[start[i + 1] - 1];
-    Buffer<Id> next(n + 1);
     for (Index i = 0; i <= n; ++i) next[i] = 0;
     const double least = strength * strength;
     for (Index i = 0; i < n; ++i) {
@@ -51,8 +55,8 @@ inline void find_strong(const SparseMatrix& a, Index n, double strength, StrongG
         next[i] = out.start[i] = sum;
         sum += count;
     }
-    out.neighbour.reset(sum);
-    out.ratio.reset(sum);
+    out.neighbour.reserve(sum);
+    out.ratio.reserve(sum);
     for (Index i = 0; i < n; ++i) {
         const double own = inverse[i];
         for (Index p = start[i]; p < start[i + 1] - 1; ++p) {
@@ -153,59 +157,67 @@ inline Aggregates aggregate(const StrongGraph& graph, Index n, const std::vector
 
 /// Row i of (I - w D^-1 A) T: T the piecewise constant on aggregates, A with its weak couplings lumped, w D^-1 = 4/3 over
 /// the row's Gershgorin bound.
-inline Prolongation smooth_prolongation(const StrongGraph& graph, Index n, const Aggregates& aggregates) {
-    Prolongation out;
+inline void smooth_prolongation(const StrongGraph& graph, Index n, const Aggregates& aggregates, Prolongation& out) {
     out.rows = n;
     out.columns = aggregates.count;
-    out.start.reset(n + 1);
     const Id* start = graph.start.data();
+    const Id* neighbour = graph.neighbour.data();
+    const float* ratio = graph.ratio.data();
     const Id* of = aggregates.of.data();
-    const auto row = [&](Index i, Id* column, float* value) { // returns the length; room for all neighbours plus one
-        Index count = 0;
-        const auto add = [&](Id aggregate, float v) {
-            if (aggregate < 0) return;
-            Index k = 0;
-            while (k < count && column[k] != aggregate) ++k;
-            if (k == count) {
-                column[count] = aggregate;
-                value[count++] = v;
-            } else {
-                value[k] += v;
-            }
-        };
+    out.start.reserve(n + 1);
+    out.column.reserve(start[n] + n + 1); // a neighbour's aggregate each; pages that stay unused cost nothing
+    out.value.reserve(start[n] + n + 1);
+    out.mark.reserve(out.columns + 1);
+    out.total.reserve(out.columns + 1);
+    Id* column = out.column.data();
+    float* value = out.value.data();
+    Id* mark = out.mark.data();
+    float* total = out.total.data();
+    for (Index c = 0; c <= out.columns; ++c) {
+        mark[c] = -1;
+        total[c] = 0.0f;
+    }
+    Id used = 0;
+    for (Index i = 0; i < n; ++i) {
+        const Id begin = used;
+        out.start[i] = begin;
         float diagonal = graph.lumped[i];
         float bound = 0.0f, sum = diagonal;
         for (Index e = start[i]; e < start[i + 1]; ++e) {
-            bound += std::abs(graph.ratio[e]);
-            sum += graph.ratio[e];
+            bound += std::abs(ratio[e]);
+            sum += ratio[e];
         }
         const bool level = std::abs(sum) <= 1e-5f * bound; // the row takes a constant to zero
         if (!(diagonal > 0.1f * bound)) diagonal = 1.0f;   // lumping took too much: a row that is no diffusion row
         bound += diagonal;
         const float factor = (4.0f / 3.0f) / bound;
-        add(of[i], 1.0f - factor * diagonal);
-        for (Index e = start[i]; e < start[i + 1]; ++e) add(of[graph.neighbour[e]], -factor * graph.ratio[e]);
-        if (!level || count == 0) return count;
+        // Without a branch, since whether an aggregate is new is hard to foretell.
+        const auto add = [&](Id aggregate, float v) {
+            column[used] = aggregate;
+            used += mark[aggregate] != i;
+            mark[aggregate] = as_id(i);
+            total[aggregate] += v;
+        };
+        if (of[i] >= 0) add(of[i], 1.0f - factor * diagonal);
+        for (Index e = start[i]; e < start[i + 1]; ++e) {
+            const Id aggregate = of[neighbour[e]];
+            if (aggregate >= 0) add(aggregate, -factor * ratio[e]);
+        }
+        for (Id k = begin; k < used; ++k) {
+            value[k] = total[column[k]];
+            total[column[k]] = 0.0f;
+        }
+        if (!level || used == begin) continue;
         // Such a row shall interpolate constants exactly, so that a body without a temperature level stays singular on
         // every level. On a grid of 2^-22 the sum is free of rounding.
         float rest = 1.0f;
-        for (Index k = 1; k < count; ++k) {
+        for (Id k = begin + 1; k < used; ++k) {
             value[k] = (value[k] + 3.0f) - 3.0f;
             rest -= value[k];
         }
-        value[0] = rest;
-        return count;
-    };
-    out.column.reset(start[n] +
-                     n); // room for every neighbour in an aggregate of its own; what stays unused costs nothing
-    out.value.reset(start[n] + n);
-    Index used = 0;
-    for (Index i = 0; i < n; ++i) {
-        out.start[i] = as_id(used);
-        used += row(i, out.column.data() + used, out.value.data() + used);
+        value[begin] = rest;
     }
-    out.start[n] = as_id(used);
-    return out;
+    out.start[n] = used;
 }
 
 } // namespace tepor::detail

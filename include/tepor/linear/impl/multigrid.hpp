@@ -41,7 +41,8 @@ TEPOR_INLINE bool Multigrid::setup(const SparseMatrix& matrix, Index n) {
     const SparseMatrix* a = &matrix;
     detail::Buffer<float> scale;
     detail::StrongGraph strong;
-    std::vector<std::vector<Id>> roots; // a row of the level above for every row of a level
+    detail::Prolongation p;
+    detail::HalfProduct half;
     double first_entries = 1.0;
     for (Index rows = n;;) {
         const double entries = detail::as_double(a->start[detail::as_size(rows)]);
@@ -68,16 +69,16 @@ TEPOR_INLINE bool Multigrid::setup(const SparseMatrix& matrix, Index n) {
         }
         if (aggregates.count == 0 ||
             aggregates.count * 10 > rows * 9) { // nothing left to coarsen: the sweeps settle it
-            level_.push_back(detail::make_level(*a, rows, block, scale, nullptr, nullptr, block, scale));
+            level_.push_back(detail::LevelMaker(*a, rows, scale, nullptr).make(block, block, half));
             return true;
         }
-        const detail::Prolongation p = detail::smooth_prolongation(strong, rows, aggregates);
-        const detail::HalfProduct half = detail::half_product(*a, rows, p);
-        SparseMatrix next = detail::galerkin(half, rows, p);
+        detail::smooth_prolongation(strong, rows, aggregates, p);
+        level_.push_back(detail::LevelMaker(*a, rows, scale, &p).make(block, aggregates.block, half));
         const Index count = aggregates.count;
+        SparseMatrix next = detail::galerkin(half, count, detail::transpose(p, strong));
         detail::Buffer<float> below(count);
         for (Index c = 0; c < count; ++c) below[c] = static_cast<float>(1.0 / std::sqrt(next.diagonal(c)));
-        level_.push_back(detail::make_level(*a, rows, block, scale, &half, &p, aggregates.block, below));
+        detail::scale_coarse(level_.back(), below);
         if (level_.size() > 2) { // may be visited twice
             level_.back().right.reset(rows);
             level_.back().first.reset(rows);
@@ -169,22 +170,34 @@ TEPOR_INLINE void Multigrid::descend_twice(std::size_t depth) noexcept {
     for (Index i = 0; i < level.rows; ++i) level.x[i] += level.first[i];
 }
 
-TEPOR_INLINE void Multigrid::cycle(const double* r, double* z) noexcept {
+TEPOR_INLINE double Multigrid::cycle(const double* r, double* z) noexcept {
     const Index n = size_;
-    if (n == 0) return;
-    // Single precision has a small range: work on r over its largest value.
-    double largest = 0.0;
-    for (Index i = 0; i < n; ++i) largest = std::max(largest, std::abs(r[i] * static_cast<double>(scale_[i])));
+    if (n == 0) return 0.0;
+    // Single precision has a small range: work on r over its largest value. A sample is near enough.
+    const auto sample = [&](Index step) {
+        double largest = 0.0;
+        for (Index i = 0; i < n; i += step)
+            largest = std::max(largest, std::abs(r[i] * static_cast<double>(scale_[i])));
+        return largest;
+    };
+    double largest = sample(n < 1000 ? 1 : 13);
+    if (!(largest > 0.0)) largest = sample(1);
     if (!(largest > 0.0) || !std::isfinite(largest)) {
         for (Index i = 0; i < n; ++i) z[i] = largest > 0.0 ? r[i] : 0.0;
-        return;
+        return largest;
     }
     const double factor = 1.0 / largest;
-    float* right = level_.empty() ? coarse_right_.data() : level_[0].x.data();
-    for (Index i = 0; i < n; ++i) right[i] = static_cast<float>(r[i] * static_cast<double>(scale_[i]) * factor);
+    float* x = level_.empty() ? coarse_right_.data() : level_[0].x.data();
+    for (Index i = 0; i < n; ++i) x[i] = static_cast<float>(r[i] * static_cast<double>(scale_[i]) * factor);
     descend(0);
-    const float* x = level_.empty() ? coarse_right_.data() : level_[0].x.data();
-    for (Index i = 0; i < n; ++i) z[i] = static_cast<double>(x[i]) * static_cast<double>(scale_[i]) * largest;
+    double even = 0.0, odd = 0.0;
+    for (Index i = 0; i < n; ++i) {
+        const double ri = r[i];
+        const double zi = static_cast<double>(x[i]) * static_cast<double>(scale_[i]) * largest;
+        z[i] = zi;
+        (i % 2 == 0 ? even : odd) += ri * zi;
+    }
+    return even + odd;
 }
 
 } // namespace tepor
