@@ -23,6 +23,12 @@ struct Disc {
 /// intersection, in polar coordinates about the centre. O(cells) with about 50 us per cut cell.
 std::vector<SpreadSource> disc_moments(const MeshData& mesh, const Disc& disc);
 
+namespace detail {
+
+/// Adds sources cell by cell; what a projection loses adds up at worst.
+void merge_spread(std::vector<SpreadSource>& to, const std::vector<SpreadSource>& from);
+
+} // namespace detail
 } // namespace tepor
 
 #ifndef TEPOR_COMPILED

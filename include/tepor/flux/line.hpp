@@ -1,7 +1,8 @@
 #pragma once
 // One dimension (slab, cylinder, sphere): the flux has one free number per piece of the line, and the bound is the error itself.
 
-#include <tepor/flux/equilibrate.hpp>
+#include <tepor/flux/equilibrated.hpp>
+#include <tepor/flux/problem.hpp>
 
 namespace tepor::detail {
 

@@ -27,6 +27,12 @@ inline double side_length(const MeshData& mesh, CellSide side, double& start, do
     return distance(a, b);
 }
 
+inline double triangle_area(const MeshData& mesh, Index c) noexcept {
+    const Id* cell = mesh.cell(c);
+    const Point a = mesh.nodes[as_size(cell[0])];
+    return 0.5 * cross(mesh.nodes[as_size(cell[1])] - a, mesh.nodes[as_size(cell[2])] - a);
+}
+
 /// Integrals of the heat g leaving through a listed side against 1, t, t^2, t^3, times its length; t runs counter-clockwise along
 /// the side of the cell. In r-z the radius is included.
 using SideMoments = std::array<double, 4>;

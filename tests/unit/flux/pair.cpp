@@ -2,6 +2,8 @@
 
 #include "tests/support/flux_case.hpp"
 #include <doctest/doctest.h>
+#include <tepor/flux/flux_load.hpp>
+#include <tepor/flux/weak_form.hpp>
 
 using namespace tepor;
 using test::FluxCase;
@@ -22,6 +24,11 @@ Interval interval(FluxCase& primal, FluxCase& adjoint, const std::vector<double>
     const Equilibrated flux_z = equilibrate(adjoint.problem, z.data());
     const PairBound pair = pair_bound(primal.problem, t.data(), flux_t, adjoint.problem, z.data(), flux_z);
     const double rho = primal.work(z) - primal.energy(t, z);
+    const Summed form = weak_form(primal.problem, t.data(), z.data());
+    CHECK(std::abs(form.value - rho) <= 1e-12 * form.absolute);
+    const std::vector<double> load = flux_load(primal.problem, primal.dofs);
+    CHECK((FluxCase::vector(load) - primal.load).lpNorm<Eigen::Infinity>() <=
+          1e-13 * primal.load.lpNorm<Eigen::Infinity>());
     const double direct = FluxCase::vector(weights).dot(FluxCase::vector(t)) + constant;
     return {direct + rho + pair.correction, pair.half_width};
 }
@@ -141,5 +148,34 @@ TEST_CASE("heat through a contact lies in the interval") {
         const Interval q = interval(primal, adjoint, weights, 0.0);
         CHECK(std::abs(q.value - exact) <= 1e-11);
         CHECK(q.half_width <= 1e-9);
+    }
+}
+
+TEST_CASE("the weak form agrees with an assembly of its own, sinks, contacts and spread sources included") {
+    for (int order = 1; order <= 2; ++order) {
+        CAPTURE(order);
+        FluxCase body(
+            grid_triangles(order, lines(0, 2, 5), lines(0, 1, 3), [](double x, double) { return x < 0.8 ? 0 : 1; }),
+            [](int region) { return region == 0 ? 2.0 : 3.0; });
+        body.contact(0, 1, 5.0);
+        body.problem.sink.assign(body.problem.source.size(), 4.0);
+        body.problem.sink_temperature.assign(body.problem.source.size(), -3.0);
+        body.problem.source[3] = 8.0;
+        body.problem.spread.push_back({7, {0.1, 0.3, 0.2, 0.05, 0.07, 0.01}, 0.0});
+        body.on_boundary([](Point p, FluxSide& side) {
+            side.film = 1.0 + p.x, side.fluid = 6.0, side.flux = p.y;
+            return p.y < 0.6;
+        });
+        body.assemble();
+        std::vector<double> t, z;
+        for (Index i = 0; i < body.dofs; ++i) {
+            t.push_back(100.0 + std::sin(2.0 * static_cast<double>(i)));
+            z.push_back(std::cos(3.0 * static_cast<double>(i)));
+        }
+        const Summed form = weak_form(body.problem, t.data(), z.data());
+        CHECK(std::abs(form.value - (body.work(z) - body.energy(t, z))) <= 1e-13 * form.absolute);
+        const std::vector<double> load = flux_load(body.problem, body.dofs);
+        CHECK((FluxCase::vector(load) - body.load).lpNorm<Eigen::Infinity>() <=
+              1e-13 * body.load.lpNorm<Eigen::Infinity>());
     }
 }

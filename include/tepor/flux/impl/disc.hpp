@@ -144,4 +144,24 @@ TEPOR_INLINE std::vector<SpreadSource> disc_moments(const MeshData& mesh, const 
     return out;
 }
 
+namespace detail {
+
+TEPOR_INLINE void merge_spread(std::vector<SpreadSource>& to, const std::vector<SpreadSource>& from) {
+    to.insert(to.end(), from.begin(), from.end());
+    std::stable_sort(to.begin(), to.end(),
+                     [](const SpreadSource& a, const SpreadSource& b) { return a.cell < b.cell; });
+    std::size_t kept = 0;
+    for (std::size_t i = 1; i < to.size(); ++i) {
+        if (to[i].cell != to[kept].cell) {
+            to[++kept] = to[i];
+            continue;
+        }
+        for (int m = 0; m < 6; ++m) to[kept].moment[m] += to[i].moment[m];
+        const double lost = std::sqrt(to[kept].lost_squared) + std::sqrt(to[i].lost_squared);
+        to[kept].lost_squared = lost * lost;
+    }
+    if (!to.empty()) to.resize(kept + 1);
+}
+
+} // namespace detail
 } // namespace tepor

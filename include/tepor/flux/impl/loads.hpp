@@ -83,12 +83,6 @@ inline const PairTables& pair_tables() {
     return tables;
 }
 
-inline double triangle_area(const MeshData& mesh, Index c) noexcept {
-    const Id* cell = mesh.cell(c);
-    const Point a = mesh.nodes[as_size(cell[0])];
-    return 0.5 * cross(mesh.nodes[as_size(cell[1])] - a, mesh.nodes[as_size(cell[2])] - a);
-}
-
 /// Squared norm over a triangle of area 1 of a P1 field minus its mean, or of a P2 field minus its projection on degree 1.
 inline double lost_squared(int order, const double (&u)[6]) noexcept {
     if (order == 1) {
