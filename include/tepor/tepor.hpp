@@ -33,8 +33,11 @@
 #include <tepor/describe/table.hpp>
 #include <tepor/describe/value.hpp>
 
+#include <tepor/mesh/bisect.hpp>
 #include <tepor/mesh/cell_kind.hpp>
 #include <tepor/mesh/curve.hpp>
+#include <tepor/mesh/delaunay.hpp>
+#include <tepor/mesh/drawing.hpp>
 #include <tepor/mesh/edge_grid.hpp>
 #include <tepor/mesh/from_arrays.hpp>
 #include <tepor/mesh/grading.hpp>
@@ -42,12 +45,20 @@
 #include <tepor/mesh/layers.hpp>
 #include <tepor/mesh/locate.hpp>
 #include <tepor/mesh/mesh.hpp>
+#include <tepor/mesh/of_place.hpp>
+#include <tepor/mesh/plane_graph.hpp>
+#include <tepor/mesh/predicates.hpp>
+#include <tepor/mesh/quality.hpp>
 #include <tepor/mesh/refine.hpp>
+#include <tepor/mesh/section.hpp>
+#include <tepor/mesh/shapes.hpp>
 #include <tepor/mesh/sides.hpp>
 #include <tepor/mesh/space_order.hpp>
 #include <tepor/mesh/stack.hpp>
+#include <tepor/mesh/subdivide.hpp>
 #include <tepor/mesh/tile_axis.hpp>
 #include <tepor/mesh/tiles.hpp>
+#include <tepor/mesh/triangulate.hpp>
 #include <tepor/mesh/verify.hpp>
 
 #include <tepor/assembly/block.hpp>
@@ -84,13 +95,17 @@
 #include <tepor/flux/equilibrate.hpp>
 #include <tepor/flux/equilibrated.hpp>
 #include <tepor/flux/fan.hpp>
+#include <tepor/flux/flux_load.hpp>
 #include <tepor/flux/line.hpp>
+#include <tepor/flux/line_cell.hpp>
 #include <tepor/flux/loads.hpp>
+#include <tepor/flux/model_problem.hpp>
 #include <tepor/flux/neighbours.hpp>
 #include <tepor/flux/problem.hpp>
 #include <tepor/flux/residual.hpp>
 #include <tepor/flux/sweep.hpp>
 #include <tepor/flux/tables2.hpp>
+#include <tepor/flux/weak_form.hpp>
 
 #include <tepor/field/balance.hpp>
 #include <tepor/field/field.hpp>
@@ -100,4 +115,7 @@
 #include <tepor/solve/engine.hpp>
 #include <tepor/solve/steady.hpp>
 
+#include <tepor/answers/bracket.hpp>
 #include <tepor/answers/gradient.hpp>
+#include <tepor/answers/linear_quantity.hpp>
+#include <tepor/answers/straight_bisection.hpp>

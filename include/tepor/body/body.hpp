@@ -119,6 +119,13 @@ class Body {
         return other;
     }
 
+    /// The same on a shared mesh of this body's element type, for verbs that refine.
+    [[nodiscard]] Body on_mesh(std::shared_ptr<const MeshData> mesh) const {
+        Body other(std::move(mesh), kernels_, *kind_, options_);
+        other.adopt(*this);
+        return other;
+    }
+
     /// Room for what verbs keep between calls on this body (factors); shared by copies that were described alike.
     struct Store {
         Store() = default;
