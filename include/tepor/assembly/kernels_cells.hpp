@@ -8,6 +8,34 @@ namespace tepor {
 template <Element E>
 void Kernels<E>::map_segments(CellBlock& block) const {
     const double* TEPOR_RESTRICT x = block.x;
+    if constexpr (constant_gradient) {
+        // one division per cell; the gradients of the first point serve all
+        double* TEPOR_RESTRICT left = block.gradient_x;
+        double* TEPOR_RESTRICT right = block.gradient_x + W;
+        for (int c = 0; c < W; ++c) {
+            right[c] = 1.0 / (x[W + c] - x[c]);
+            left[c] = -right[c];
+        }
+        for (int q = 0; q < points; ++q) {
+            const double* n = shape_.data() + static_cast<Index>(q) * N;
+            const double w = rule_weight_[detail::as_size(q)];
+            double* TEPOR_RESTRICT px = block.point_x + q * W;
+            double* TEPOR_RESTRICT weight = block.weight + q * W;
+            if (power_ == 0)
+                for (int c = 0; c < W; ++c) {
+                    px[c] = n[0] * x[c] + n[1] * x[W + c];
+                    weight[c] = (w * factor_) * (x[W + c] - x[c]);
+                }
+            else
+                for (int c = 0; c < W; ++c) {
+                    px[c] = n[0] * x[c] + n[1] * x[W + c];
+                    weight[c] = w * (x[W + c] - x[c]) * measure(px[c]);
+                }
+            if (q > 0)
+                for (int i = 0; i < 2 * W; ++i) block.gradient_x[q * 2 * W + i] = block.gradient_x[i];
+        }
+        return;
+    }
     for (int q = 0; q < points; ++q) {
         const double* n = shape_.data() + static_cast<Index>(q) * N;
         const double* g = reference_gradient_.data() + static_cast<Index>(q) * N;

@@ -15,13 +15,13 @@ inline int gather_cells(const Model& model, const Point* place, const double* T,
     constexpr int W = block_width;
     const int n = model.kernels->nodes;
     const int count = end - first < W ? end - first : W;
+    const bool plane = model.kernels->dim == 2; // in 1D all y stay zero
     for (int b = 0; b < W; ++b) {
         cells[b] = first + (b < count ? b : count - 1);
         const Id* ids = model.cell(cells[b]);
-        for (int i = 0; i < n; ++i) {
-            block.x[i * W + b] = place[ids[i]].x;
-            block.y[i * W + b] = place[ids[i]].y;
-        }
+        for (int i = 0; i < n; ++i) block.x[i * W + b] = place[ids[i]].x;
+        if (plane)
+            for (int i = 0; i < n; ++i) block.y[i * W + b] = place[ids[i]].y;
         if (T)
             for (int i = 0; i < n; ++i) nodal_T[i * W + b] = T[ids[i]];
     }

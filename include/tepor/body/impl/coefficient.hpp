@@ -178,15 +178,17 @@ TEPOR_INLINE Fault Coefficient::evaluate(const double* slot_values, TimeSpan tim
 }
 
 TEPOR_INLINE Fault Coefficient::check(const Points& points, TimeSpan time, const double* value) const noexcept {
-    // one pass without branches tells whether a closer look is needed
-    double smallest = value[0];
-    double sum = 0.0;
-    for (Index i = 0; i < points.count; ++i) {
-        sum += value[i] - value[i];
-        smallest = value[i] < smallest ? value[i] : smallest;
-    }
-    if (sum == 0.0 && (range_ == Range::any || smallest > 0.0) && range_ != Range::fraction)
-        return {}; // the usual case
+    // one pass without branches or long chains tells whether a closer look is needed
+    unsigned strange = 0;
+    if (range_ == Range::any)
+        for (Index i = 0; i < points.count; ++i) strange |= static_cast<unsigned>(!(value[i] - value[i] == 0.0));
+    else if (range_ == Range::fraction || range_ == Range::celsius_temperature)
+        strange = 1;
+    else
+        for (Index i = 0; i < points.count; ++i)
+            strange |=
+                static_cast<unsigned>(!(value[i] > 0.0)) | static_cast<unsigned>(!(value[i] <= 1.7976931348623157e308));
+    if (strange == 0) return {};
     for (Index i = 0; i < points.count; ++i) {
         if (allows(value[i])) continue;
         Fault fault;
