@@ -25,7 +25,8 @@ enum class Range {
     not_negative,
     fraction,            ///< 0 to 1
     celsius_temperature, ///< at or above absolute zero in degC
-    kelvin_temperature   ///< at or above 0 K
+    kelvin_temperature,  ///< at or above 0 K
+    kelvin_radiating     ///< outside a radiating face, at or above 100 K: less is nearly always degrees Celsius
 };
 
 /// A batch of points: arrays of `count` entries.
@@ -126,7 +127,11 @@ class Coefficient {
     /// The temperature lies within the range of a table that refuses to be read outside it.
     [[nodiscard]] bool covers(double temperature) const noexcept {
         if (value_.kind() != Value::Kind::table || value_.table().outside() == Outside::hold) return true;
-        return temperature >= value_.table().first() && temperature <= value_.table().last();
+        // a temperature held at the table's end may come back from a solve a rounding beyond it
+        const double first = value_.table().first();
+        const double last = value_.table().last();
+        const double slack = 1e-9 * (1.0 + (last > -first ? last : -first));
+        return temperature >= first - slack && temperature <= last + slack;
     }
 
     /// Checks a value against the range.
@@ -138,6 +143,7 @@ class Coefficient {
         case Range::fraction: return v >= 0.0 && v <= 1.0;
         case Range::celsius_temperature: return v >= -zero_celsius && v - v == 0.0;
         case Range::kelvin_temperature: return v >= 0.0 && v - v == 0.0;
+        case Range::kelvin_radiating: return v >= 100.0 && v - v == 0.0;
         }
         return false;
     }

@@ -55,6 +55,8 @@ TEPOR_INLINE const char* rule_of(Range range) noexcept {
     case Range::fraction: return "expected a number from 0 to 1";
     case Range::celsius_temperature: return "expected a temperature at or above absolute zero, -273.15 degC";
     case Range::kelvin_temperature: return "expected a temperature at or above 0 K";
+    case Range::kelvin_radiating:
+        return "expected at least 100 K outside a radiating face; write kelvin(...) in its place if less is meant";
     }
     return "";
 }

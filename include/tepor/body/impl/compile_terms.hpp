@@ -38,7 +38,10 @@ class TermCompiler {
                 film.coefficient.kind() == Value::Kind::law || film.coefficient.kind() == Value::Kind::table;
             term.amount =
                 make(film.coefficient, "film coefficient on", face.name, Range::not_negative, &SlotRole::matrix);
-            term.outside = make(film.fluid, "fluid temperature on", face.name, temperature(),
+            bool radiates = false;
+            for (const auto& radiation : said_.radiations) radiates = radiates || radiation.where == where;
+            if (radiates) refuse_low(film.fluid, "fluid temperature on \"" + face.name + '"', face.name);
+            term.outside = make(film.fluid, "fluid temperature on", face.name, outside(film.fluid, radiates),
                                 by_law ? &SlotRole::matrix : &SlotRole::load);
             no_temperature(term.outside);
             face.terms.push_back(std::move(term));
@@ -48,14 +51,10 @@ class TermCompiler {
             FaceTerm term;
             term.kind = FaceTerm::Kind::radiation;
             term.amount = make(radiation.emissivity, "emissivity on", face.name, Range::fraction, &SlotRole::matrix);
-            term.outside = make(radiation.surroundings, "surroundings of", face.name, temperature(), &SlotRole::matrix);
+            refuse_low(radiation.surroundings, "surroundings of \"" + face.name + '"', face.name);
+            term.outside = make(radiation.surroundings, "surroundings of", face.name,
+                                outside(radiation.surroundings, true), &SlotRole::matrix);
             no_temperature(term.outside);
-            if (model_.scale == TemperatureScale::kelvin) {
-                refuse_low(radiation.surroundings, term.outside.label(), face.name);
-                for (const auto& film : said_.films)
-                    if (film.where == where)
-                        refuse_low(film.what.fluid, "fluid temperature on \"" + face.name + '"', face.name);
-            }
             face.terms.push_back(std::move(term));
         }
         for (const auto& [where, flux, also] : said_.fluxes) {
@@ -155,8 +154,15 @@ class TermCompiler {
                                     "of_place or of_time");
     }
 
-    static void refuse_low(const Value& value, const std::string& label, const std::string& face) {
-        if ((value.is_number() || value.is_parameter()) && value.number() < 100.0 && !value.is_kelvin())
+    /// What the fluid or surroundings may be; on a radiating face of a kelvin body low numbers must be said with kelvin().
+    [[nodiscard]] Range outside(const Value& value, bool radiates) const {
+        const bool watched = radiates && model_.scale == TemperatureScale::kelvin && !value.is_kelvin();
+        return watched ? Range::kelvin_radiating : temperature();
+    }
+
+    void refuse_low(const Value& value, const std::string& label, const std::string& face) const {
+        if (model_.scale == TemperatureScale::kelvin && (value.is_number() || value.is_parameter()) &&
+            value.number() < 100.0 && !value.is_kelvin())
             throw Error(ErrorCode::bad_unit, face,
                         text(label, " = ", value.number(),
                              " K on a radiating face looks like degrees Celsius; write kelvin(", value.number(),

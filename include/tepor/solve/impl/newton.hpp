@@ -78,7 +78,8 @@ inline void require_level(const Model& model, const Values& values) {
         if (level[part]) continue;
         std::string name;
         for (const RegionModel& region : model.regions)
-            if (model.part_of[as_size(model.cell(region.first_cell)[0])] == as_id(part)) name = region.name;
+            if (name.empty() && model.part_of[as_size(model.cell(region.first_cell)[0])] == as_id(part))
+                name = region.name;
         throw Error(
             ErrorCode::no_level, name,
             text("steady: nothing sets the temperature level of the part of the body that holds region \"", name,
