@@ -47,7 +47,7 @@ class Multigrid {
     [[nodiscard]] Index singular_row() const noexcept { return singular_row_; }
 
   private:
-    TEPOR_INLINE bool factor_coarsest(const SparseMatrix& matrix, const detail::Buffer<float>& scale);
+    TEPOR_INLINE Index factor_coarsest(const SparseMatrix& matrix, Index n, const detail::Buffer<float>& scale);
     TEPOR_INLINE void descend(std::size_t depth) noexcept;
     TEPOR_INLINE void descend_twice(std::size_t depth) noexcept;
 

@@ -189,6 +189,53 @@ TEST_CASE("small, empty, diagonal and separate systems are solved") {
     CHECK(solved.backward_error <= 1e-7);
 }
 
+TEST_CASE("a shuffled numbering changes neither the answer nor the number of iterations by much, and stays inside") {
+    const Index cells = 90;
+    const test::Square plain = test::square(cells, true, false, 74), mixed = test::square(cells, true, true, 74);
+    const Index n = mixed.matrix.rows;
+    const Solved straight = solve(plain.matrix, n), shuffled = solve(mixed.matrix, n, 5, 1e-10);
+    CHECK(shuffled.report.converged);
+    CHECK(shuffled.report.iterations <= straight.report.iterations + 6);
+    CHECK(shuffled.backward_error <= 1e-9);
+    test::Random random(75);
+    const std::vector<double> b = test::random_vector(n, random);
+    MultigridSolver solver({.tolerance = 1e-10, .most = 100});
+    solver.analyze(mixed.matrix, n);
+    REQUIRE(solver.factor(mixed.matrix));
+    std::vector<double> x(b.size(), 0.0), product(b.size());
+    bool same = true;
+    const IterationReport report = solver.solve(b.data(), x.data(), [&](const double* residual, double relative) {
+        if (relative > 1e-10) return false;
+        for (std::size_t i = 0; i < b.size(); ++i) product[i] = residual[i]; // of the last call: recomputed from x
+        return true;
+    });
+    CHECK(report.converged);
+    std::vector<double> y(b.size());
+    multiply(mixed.matrix, n, x.data(), y.data());
+    for (std::size_t i = 0; i < b.size(); ++i) same = same && std::abs(b[i] - y[i] - product[i]) <= 1e-12;
+    CHECK(same);
+    std::vector<double> in_place = b;
+    CHECK(solver.solve(in_place.data()));
+    CHECK(test::largest_difference(in_place, x) <= 1e-8 * test::largest(x));
+    // Other values on the same pattern are taken over by factor().
+    SparseMatrix twice = mixed.matrix;
+    for (double& v : twice.lower) v *= 2.0;
+    REQUIRE(solver.factor(twice));
+    std::vector<double> half = b;
+    CHECK(solver.solve(half.data()));
+    for (double& v : half) v *= 2.0;
+    CHECK(test::largest_difference(half, x) <= 1e-8 * test::largest(x));
+    // A scattered matrix straight into Multigrid is slower, not wrong.
+    Multigrid multigrid;
+    REQUIRE(multigrid.setup(mixed.matrix, n));
+    ConjugateGradientWork work;
+    x.assign(b.size(), 0.0);
+    CHECK(conjugate_gradient(
+              mixed.matrix, n, b.data(), x.data(), [&](const double* r, double* z) { return multigrid.cycle(r, z); },
+              {1e-8, 60}, work)
+              .converged);
+}
+
 TEST_CASE("two set-ups give the same bits, and a cycle leaves nothing behind for the next") {
     const test::Square square = test::square(80, true, true, 71);
     const Index n = square.matrix.rows;
@@ -205,6 +252,26 @@ TEST_CASE("two set-ups give the same bits, and a cycle leaves nothing behind for
     multigrid.cycle(poison.data(), second.data());
     multigrid.cycle(r.data(), second.data());
     CHECK(first == second);
+}
+
+TEST_CASE("of two separate bodies the one without a level is named") {
+    const test::Square warm = test::square(35, true, false, 76, 10.0),
+                       floating = test::square(25, true, false, 77, 0.0);
+    SparseMatrix both = warm.matrix;
+    const Id rows = detail::as_id(both.rows), entries = detail::as_id(both.column.size());
+    for (Index i = 0; i < floating.matrix.rows; ++i) {
+        both.start.push_back(entries + floating.matrix.start[detail::as_size(i) + 1]);
+    }
+    for (const Id j : floating.matrix.column) both.column.push_back(rows + j);
+    both.lower.insert(both.lower.end(), floating.matrix.lower.begin(), floating.matrix.lower.end());
+    both.rows += floating.matrix.rows;
+    verify(both, both.rows);
+    Multigrid multigrid;
+    CHECK_FALSE(multigrid.setup(both, both.rows));
+    CHECK(multigrid.singular_row() >= rows);
+    CHECK(multigrid.singular_row() < both.rows);
+    CHECK(multigrid.setup(both, rows));
+    CHECK(multigrid.singular_row() == -1);
 }
 
 TEST_CASE("a system without a level or with a bad diagonal is refused and a row named") {

@@ -78,6 +78,7 @@ struct Aggregates {
     Buffer<Id> of;
     Index count = 0;
     std::vector<Index> block; ///< aggregates by block, as the rows are
+    std::vector<Id> first;    ///< the first row of each
 };
 
 /// Aggregates never cross a block of rows. They are numbered by the position of their first row, so they inherit the
@@ -147,7 +148,10 @@ inline Aggregates aggregate(const StrongGraph& graph, Index n, const std::vector
                 continue;
             }
             Id& number = rank[of[i]];
-            if (number == none) number = as_id(out.count++);
+            if (number == none) {
+                number = as_id(out.count++);
+                out.first.push_back(as_id(i));
+            }
             of[i] = number;
         }
         out.block.push_back(out.count);

@@ -11,11 +11,22 @@
 namespace tepor {
 namespace detail {
 
-/// Rows in blocks fixed by their number alone. Few rows: one block, since entries between blocks weaken the sweeps.
-inline std::vector<Index> blocks_of(Index rows) {
+/// Rows in blocks fixed by their number alone. Few rows, or neighbours in other blocks for more than one row in twenty: one
+/// block, since entries between blocks weaken the sweeps.
+inline std::vector<Index> blocks_of(const SparseMatrix& a, Index rows) {
     const Index count = rows < 4000 ? 1 : rows < 100000 ? 2 : 8;
     std::vector<Index> block;
     for (Index b = 0; b <= count; ++b) block.push_back(rows * b / count);
+    Index astride = 0;
+    for (std::size_t b = 1; b + 1 < block.size(); ++b) {
+        for (Index i = block[b]; i < block[b + 1]; ++i) {
+            bool any = false;
+            for (Index e = a.start[as_size(i)]; e < a.start[as_size(i) + 1]; ++e)
+                any = any || a.column[as_size(e)] < block[b];
+            astride += any;
+        }
+    }
+    if (astride * 20 > rows) return {0, rows};
     return block;
 }
 
@@ -36,13 +47,18 @@ TEPOR_INLINE bool Multigrid::setup(const SparseMatrix& matrix, Index n) {
     level_.clear();
     complexity_ = 0.0;
     if (n == 0) return true;
-    std::vector<Index> block = detail::blocks_of(n);
+    std::vector<Index> block = detail::blocks_of(matrix, n);
     SparseMatrix coarse;
     const SparseMatrix* a = &matrix;
     detail::Buffer<float> scale;
     detail::StrongGraph strong;
     detail::Prolongation p;
     detail::HalfProduct half;
+    std::vector<std::vector<Id>> first; // a row of the level above for every row of a level
+    const auto name = [&](Index row) {  // in the numbering of the first level
+        for (auto above = first.rbegin(); above != first.rend(); ++above) row = (*above)[detail::as_size(row)];
+        singular_row_ = row;
+    };
     double first_entries = 1.0;
     for (Index rows = n;;) {
         const double entries = detail::as_double(a->start[detail::as_size(rows)]);
@@ -52,13 +68,17 @@ TEPOR_INLINE bool Multigrid::setup(const SparseMatrix& matrix, Index n) {
         for (Index i = 0; i < rows; ++i) {
             const double diagonal = a->diagonal(i);
             if (!(diagonal > 0.0) || !std::isfinite(diagonal)) {
-                singular_row_ = level_.empty() ? i : 0;
+                name(i);
                 return false;
             }
             scale[i] = static_cast<float>(1.0 / std::sqrt(diagonal));
         }
         if (level_.empty()) scale_ = scale;
-        if (rows <= options_.coarsest) return factor_coarsest(*a, scale);
+        if (rows <= options_.coarsest) {
+            const Index bad = factor_coarsest(*a, rows, scale);
+            if (bad >= 0) name(bad);
+            return bad < 0;
+        }
         double strength = rows < 1000 ? options_.low_strength : options_.strength;
         detail::Aggregates aggregates;
         while (true) {
@@ -86,14 +106,15 @@ TEPOR_INLINE bool Multigrid::setup(const SparseMatrix& matrix, Index n) {
         coarse = std::move(next);
         a = &coarse;
         block = std::move(aggregates.block);
+        first.push_back(std::move(aggregates.first));
         rows = count;
         while (block.size() > 2 && rows / static_cast<Index>(block.size() - 1) < 2000)
             block = detail::merged_blocks(block);
     }
 }
 
-TEPOR_INLINE bool Multigrid::factor_coarsest(const SparseMatrix& matrix, const detail::Buffer<float>& scale) {
-    const Index n = matrix.rows < size_ || !level_.empty() ? matrix.rows : size_;
+TEPOR_INLINE Index Multigrid::factor_coarsest(const SparseMatrix& matrix, Index n, const detail::Buffer<float>& scale) {
+    Index bad = -1;
     coarse_size_ = n;
     coarse_.assign(detail::as_size(n * n), 0.0);
     coarse_x_.resize(detail::as_size(n));
@@ -114,12 +135,12 @@ TEPOR_INLINE bool Multigrid::factor_coarsest(const SparseMatrix& matrix, const d
         double pivot = row[i];
         for (Index k = 0; k < i; ++k) pivot -= row[k] * row[k];
         if (!(pivot > floor)) {
-            if (singular_row_ < 0) singular_row_ = level_.empty() ? i : 0;
+            if (bad < 0) bad = i;
             pivot = 1.0;
         }
         row[i] = 1.0 / std::sqrt(pivot);
     }
-    return singular_row_ < 0;
+    return bad;
 }
 
 TEPOR_INLINE void Multigrid::descend(std::size_t depth) noexcept {
