@@ -118,4 +118,6 @@
 #include <tepor/answers/bracket.hpp>
 #include <tepor/answers/gradient.hpp>
 #include <tepor/answers/linear_quantity.hpp>
+#include <tepor/answers/size_for.hpp>
 #include <tepor/answers/straight_bisection.hpp>
+#include <tepor/answers/target.hpp>
