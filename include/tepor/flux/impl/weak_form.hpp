@@ -41,7 +41,9 @@ inline double conduction_product(const FluxProblem& problem, Index c, const doub
         return 0.5 * radius * k / j * product(u[1], u[2], v[1], v[2]);
     }
     double sum = 0.0; // gradients are linear: the middles of the sides integrate their product exactly
-    for (const auto& [x, y] : {std::pair{0.5, 0.0}, std::pair{0.5, 0.5}, std::pair{0.0, 0.5}}) {
+    for (const auto& middle : {std::pair{0.5, 0.0}, std::pair{0.5, 0.5}, std::pair{0.0, 0.5}}) {
+        const double x = middle.first;
+        const double y = middle.second;
         const double l = 1.0 - x - y;
         const auto gx = [&](const double* w) {
             return (4 * x - 1) * w[1] + 4 * (l - x) * w[3] + 4 * y * w[4] - 4 * y * w[5];

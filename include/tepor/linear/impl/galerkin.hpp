@@ -27,18 +27,18 @@ struct HalfProduct {
 };
 
 /// P by columns, in memory that is free once P is made.
-struct Restriction {
+struct RestrictionRows {
     Id* start = nullptr;
     Id* row = nullptr;
     float* value = nullptr;
 };
 
-inline Restriction transpose(const Prolongation& p, StrongGraph& free) {
+inline RestrictionRows transpose(const Prolongation& p, StrongGraph& free) {
     const Index coarse = p.columns, n = p.rows;
     free.next.reserve(coarse + 2);
     free.neighbour.reserve(p.start[n]);
     free.ratio.reserve(p.start[n]);
-    const Restriction out{free.next.data(), free.neighbour.data(), free.ratio.data()};
+    const RestrictionRows out{free.next.data(), free.neighbour.data(), free.ratio.data()};
     const Id* start = p.start.data();
     const Id* column = p.column.data();
     const float* value = p.value.data();
@@ -60,7 +60,7 @@ inline Restriction transpose(const Prolongation& p, StrongGraph& free) {
 ///
 /// With T = (L + D/2) P the product is S + S^T, S = P^T T: half the work of a full triple product. An entry of S right of
 /// the diagonal waits in a list of the row it is mirrored to, which comes later.
-inline SparseMatrix galerkin(const HalfProduct& t, Index coarse, const Restriction& r) {
+inline SparseMatrix galerkin(const HalfProduct& t, Index coarse, const RestrictionRows& r) {
     const Id* t_start = t.start.data();
     const Id* t_column = t.column.data();
     const double* t_value = t.value.data();
