@@ -119,5 +119,4 @@
 #include <tepor/answers/gradient.hpp>
 #include <tepor/answers/linear_quantity.hpp>
 #include <tepor/answers/size_for.hpp>
-#include <tepor/answers/straight_bisection.hpp>
 #include <tepor/answers/target.hpp>

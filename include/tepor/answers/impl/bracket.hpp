@@ -9,7 +9,6 @@
 #include <numeric>
 #include <tepor/answers/bracket.hpp>
 #include <tepor/answers/linear_quantity.hpp>
-#include <tepor/answers/straight_bisection.hpp>
 #include <tepor/base/error.hpp>
 #include <tepor/base/text.hpp>
 #include <tepor/flux/conductance.hpp>
@@ -17,6 +16,7 @@
 #include <tepor/flux/flux_load.hpp>
 #include <tepor/flux/model_problem.hpp>
 #include <tepor/flux/weak_form.hpp>
+#include <tepor/mesh/bisect.hpp>
 #include <tepor/mesh/refine.hpp>
 #include <tepor/solve/engine.hpp>
 #include <tepor/solve/steady.hpp>
@@ -191,21 +191,47 @@ inline LevelAnswer answer_linear(BracketLevel& level, const Quantity& quantity) 
 }
 
 /// The cells of largest share that together carry half of the whole (W. Doerfler, SIAM J. Numer. Anal. 33 (1996) 1106).
-inline std::vector<char> bulk(const std::vector<double>& share) {
-    std::vector<Id> order(share.size());
-    std::iota(order.begin(), order.end(), 0);
-    std::sort(order.begin(), order.end(), [&](Id a, Id b) {
+inline std::vector<Index> bulk(const std::vector<double>& share) {
+    std::vector<Index> order(share.size());
+    std::iota(order.begin(), order.end(), Index{0});
+    std::sort(order.begin(), order.end(), [&](Index a, Index b) {
         return share[as_size(a)] != share[as_size(b)] ? share[as_size(a)] > share[as_size(b)] : a < b;
     });
     const double half = 0.5 * std::accumulate(share.begin(), share.end(), 0.0);
-    std::vector<char> marked(share.size(), 0);
     double sum = 0.0;
-    for (const Id c : order) {
-        if (sum >= half) break;
-        marked[as_size(c)] = 1;
-        sum += share[as_size(c)];
+    std::size_t count = 0;
+    while (count < order.size() && sum < half) sum += share[as_size(order[count++])];
+    order.resize(count);
+    return order;
+}
+
+/// A copy with straight sides, ready to be bisected.
+inline std::shared_ptr<MeshData> straightened(const MeshData& mesh, const CellKind& kind) {
+    auto out = std::make_shared<MeshData>(mesh);
+    for (const CurvedSide& curved : out->curved) {
+        const Id* cell = out->cell(curved.side.cell);
+        const Id s = curved.side.side;
+        if (out->order == 2)
+            out->nodes[as_size(cell[3 + s])] = 0.5 * (out->nodes[as_size(cell[s])] + out->nodes[as_size(cell[s == 2 ? 0 : s + 1])]);
     }
-    return marked;
+    out->curved.clear();
+    longest_side_first(*out, kind);
+    return out;
+}
+
+/// The next mesh: in 2D the cells that carry half of the width are bisected, in 1D all are.
+inline std::shared_ptr<const MeshData> finer(const MeshData& mesh, const CellKind& kind, const std::vector<double>& share) {
+    auto fine = std::make_shared<MeshData>();
+    fine->dim = mesh.dim, fine->order = mesh.order, fine->nodes_per_cell = mesh.nodes_per_cell;
+    fine->sides_per_cell = mesh.sides_per_cell, fine->shape = mesh.shape, fine->frame = mesh.frame;
+    if (mesh.dim == 1) {
+        refine_uniformly(mesh, kind, *fine);
+    } else {
+        Lineage lineage;
+        Index skipped = 0;
+        bisect(mesh, kind, bulk(share), *fine, lineage, skipped);
+    }
+    return fine;
 }
 
 inline void validate(const BracketOptions& options) {
@@ -229,12 +255,10 @@ TEPOR_INLINE Bracket bracket(const Body& body, const Quantity& quantity, const B
     const auto since = [](Clock::time_point then) {
         return std::chrono::duration<double>(Clock::now() - then).count();
     };
-    const bool plane = body.mesh().dim == 2;
     std::shared_ptr<const MeshData> mesh = body.shared_mesh();
     Bracket out;
     if (!mesh->curved.empty()) out.remark = "of the polygon: curved sides are replaced by their chords";
-    if (plane && mesh->shape == CellShape::triangle && mesh->order <= 2)
-        mesh = std::make_shared<const MeshData>(prepared_for_bisection(*mesh));
+    if (mesh->shape == CellShape::triangle && mesh->order <= 2) mesh = straightened(*mesh, *body.model()->kind);
     out.lower = -std::numeric_limits<double>::infinity();
     out.upper = std::numeric_limits<double>::infinity();
     for (;;) {
@@ -258,15 +282,7 @@ TEPOR_INLINE Bracket bracket(const Body& body, const Quantity& quantity, const B
         out.reached = out.width() <= std::max(options.relative_width * std::abs(out.value), options.absolute_width);
         if (out.reached || answer.share.empty()) break;
         if (since(started) + 1.5 * out.passes.back().seconds > options.max_seconds) break;
-        if (plane) {
-            mesh = std::make_shared<const MeshData>(bisected(*mesh, bulk(answer.share)));
-        } else {
-            auto fine = std::make_shared<MeshData>();
-            fine->dim = mesh->dim, fine->order = mesh->order, fine->nodes_per_cell = mesh->nodes_per_cell;
-            fine->sides_per_cell = mesh->sides_per_cell, fine->shape = mesh->shape, fine->frame = mesh->frame;
-            refine_uniformly(*mesh, *level.model().kind, *fine);
-            mesh = std::move(fine);
-        }
+        mesh = finer(*mesh, *level.model().kind, answer.share);
         // cells to unknowns as in the last pass
         if (as_double(mesh->cell_count()) * as_double(out.unknowns) >
             as_double(options.max_unknowns) * as_double(out.cells))
