@@ -6,7 +6,6 @@
 #include <cmath>
 #include <limits>
 #include <memory>
-#include <numeric>
 #include <tepor/answers/bracket.hpp>
 #include <tepor/answers/linear_quantity.hpp>
 #include <tepor/base/error.hpp>
@@ -190,19 +189,34 @@ inline LevelAnswer answer_linear(BracketLevel& level, const Quantity& quantity) 
     return out;
 }
 
-/// The cells of largest share that together carry half of the whole (W. Doerfler, SIAM J. Numer. Anal. 33 (1996) 1106).
-inline std::vector<Index> bulk(const std::vector<double>& share) {
-    std::vector<Index> order(share.size());
-    std::iota(order.begin(), order.end(), Index{0});
-    std::sort(order.begin(), order.end(), [&](Index a, Index b) {
+/// Cells that may still be halved: down to 1e-12 of the body, where coordinates run out of digits. Refining on at a strong
+/// singularity beyond that would leave all other cells as they are.
+inline std::vector<Index> refinable(const MeshData& mesh) {
+    Point low = mesh.nodes.front(), high = low;
+    for (const Point& p : mesh.nodes) {
+        low = {std::min(low.x, p.x), std::min(low.y, p.y)};
+        high = {std::max(high.x, p.x), std::max(high.y, p.y)};
+    }
+    const double least = 1.001e-12 * distance(low, high);
+    std::vector<Index> cells;
+    for (Index c = 0; c < mesh.cell_count(); ++c) {
+        const Id* cell = mesh.cell(c);
+        if (distance(mesh.nodes[as_size(cell[1])], mesh.nodes[as_size(cell[2])]) > least) cells.push_back(c);
+    }
+    return cells;
+}
+
+/// Of these cells, those of largest share that carry half of their sum (W. Doerfler, SIAM J. Numer. Anal. 33 (1996) 1106).
+inline std::vector<Index> bulk(std::vector<Index> cells, const std::vector<double>& share) {
+    std::sort(cells.begin(), cells.end(), [&](Index a, Index b) {
         return share[as_size(a)] != share[as_size(b)] ? share[as_size(a)] > share[as_size(b)] : a < b;
     });
-    const double half = 0.5 * std::accumulate(share.begin(), share.end(), 0.0);
-    double sum = 0.0;
+    double half = 0.0, sum = 0.0;
+    for (const Index c : cells) half += 0.5 * share[as_size(c)];
     std::size_t count = 0;
-    while (count < order.size() && sum < half) sum += share[as_size(order[count++])];
-    order.resize(count);
-    return order;
+    while (count < cells.size() && sum < half) sum += share[as_size(cells[count++])];
+    cells.resize(count);
+    return cells;
 }
 
 /// A copy with straight sides, ready to be bisected.
@@ -212,7 +226,8 @@ inline std::shared_ptr<MeshData> straightened(const MeshData& mesh, const CellKi
         const Id* cell = out->cell(curved.side.cell);
         const Id s = curved.side.side;
         if (out->order == 2)
-            out->nodes[as_size(cell[3 + s])] = 0.5 * (out->nodes[as_size(cell[s])] + out->nodes[as_size(cell[s == 2 ? 0 : s + 1])]);
+            out->nodes[as_size(cell[3 + s])] =
+                0.5 * (out->nodes[as_size(cell[s])] + out->nodes[as_size(cell[s == 2 ? 0 : s + 1])]);
     }
     out->curved.clear();
     longest_side_first(*out, kind);
@@ -220,7 +235,8 @@ inline std::shared_ptr<MeshData> straightened(const MeshData& mesh, const CellKi
 }
 
 /// The next mesh: in 2D the cells that carry half of the width are bisected, in 1D all are.
-inline std::shared_ptr<const MeshData> finer(const MeshData& mesh, const CellKind& kind, const std::vector<double>& share) {
+inline std::shared_ptr<const MeshData> finer(const MeshData& mesh, const CellKind& kind,
+                                             const std::vector<double>& share) {
     auto fine = std::make_shared<MeshData>();
     fine->dim = mesh.dim, fine->order = mesh.order, fine->nodes_per_cell = mesh.nodes_per_cell;
     fine->sides_per_cell = mesh.sides_per_cell, fine->shape = mesh.shape, fine->frame = mesh.frame;
@@ -229,7 +245,7 @@ inline std::shared_ptr<const MeshData> finer(const MeshData& mesh, const CellKin
     } else {
         Lineage lineage;
         Index skipped = 0;
-        bisect(mesh, kind, bulk(share), *fine, lineage, skipped);
+        bisect(mesh, kind, bulk(refinable(mesh), share), *fine, lineage, skipped);
     }
     return fine;
 }
@@ -282,7 +298,10 @@ TEPOR_INLINE Bracket bracket(const Body& body, const Quantity& quantity, const B
         out.reached = out.width() <= std::max(options.relative_width * std::abs(out.value), options.absolute_width);
         if (out.reached || answer.share.empty()) break;
         if (since(started) + 1.5 * out.passes.back().seconds > options.max_seconds) break;
+        const Index before = mesh->cell_count();
         mesh = finer(*mesh, *level.model().kind, answer.share);
+        if (mesh->cell_count() == before)
+            break; // every cell is as small as coordinates allow, or nothing is left to gain
         // cells to unknowns as in the last pass
         if (as_double(mesh->cell_count()) * as_double(out.unknowns) >
             as_double(options.max_unknowns) * as_double(out.cells))
