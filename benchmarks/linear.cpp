@@ -121,14 +121,14 @@ class Table {
         mesh_ = std::move(mesh);
         unknowns_ = unknowns;
         product_ = product;
-        std::printf("\n%s, %ld unknowns; one product %.3f ms\n", mesh_.c_str(), static_cast<long>(unknowns),
+        std::printf("\n%s, %ld unknowns; one product %.5f ms\n", mesh_.c_str(), static_cast<long>(unknowns),
                     product * 1e3);
     }
     void row(const char* what, double time, const std::string& note = "") {
-        std::printf("  %-34s %10.3f ms %8.1f products  %s\n", what, time * 1e3, time / product_, note.c_str());
+        std::printf("  %-34s %12.5f ms %8.1f products  %s\n", what, time * 1e3, time / product_, note.c_str());
         std::fflush(stdout);
         if (!csv_) return;
-        std::fprintf(csv_, "%s,%ld,%s,%.4f,%.2f,%s\n", mesh_.c_str(), static_cast<long>(unknowns_), what, time * 1e3,
+        std::fprintf(csv_, "%s,%ld,%s,%.6f,%.2f,%s\n", mesh_.c_str(), static_cast<long>(unknowns_), what, time * 1e3,
                      time / product_, note.c_str());
     }
 

@@ -73,6 +73,7 @@
 #include <tepor/linear/concept.hpp>
 #include <tepor/linear/conjugate_gradient.hpp>
 #include <tepor/linear/krylov.hpp>
+#include <tepor/linear/low_rank.hpp>
 #include <tepor/linear/multigrid.hpp>
 #include <tepor/linear/multigrid_solver.hpp>
 #include <tepor/linear/sparse_matrix.hpp>

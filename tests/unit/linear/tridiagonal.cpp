@@ -55,6 +55,45 @@ TEST_CASE("the two-ended sweeps agree with dense elimination at every small size
     }
 }
 
+TEST_CASE("long chains are solved as accurately as short ones") {
+    test::Random random(23);
+    for (const Index n : {1000, 1001, 5000}) {
+        CAPTURE(n);
+        const Chain chain = random_chain(n, random);
+        const std::vector<double> b = test::random_vector(n, random);
+        Tridiagonal solver;
+        REQUIRE(solver.factor(n, chain.diagonal.data(), chain.off.data()));
+        std::vector<double> x = b;
+        solver.solve(x.data());
+        CHECK(test::backward_error(chain.matrix, x, b) <= 1e-15);
+    }
+}
+
+TEST_CASE("a chain assembled on the way reads every row once and needs no stored matrix") {
+    for (const Index n : {1, 2, 3, 10, 11}) {
+        CAPTURE(n);
+        std::vector<int> calls(detail::as_size(n), 0);
+        std::vector<double> x(detail::as_size(n)), work(detail::as_size(n));
+        const Index bad = solve_chain(
+            n,
+            [&](Index i) { // conduction between a film at each end, load 1 in every row
+                ++calls[detail::as_size(i)];
+                const bool end = i == 0 || i == n - 1;
+                return ChainRow{.diagonal = end && n > 1 ? 1.5 : 2.0, .next = -1.0, .load = 1.0};
+            },
+            x.data(), work.data());
+        CHECK(bad == -1);
+        CHECK(calls == std::vector<int>(detail::as_size(n), 1));
+        for (Index i = 0; i < n; ++i) {
+            const bool end = i == 0 || i == n - 1;
+            double sum = (end && n > 1 ? 1.5 : 2.0) * x[detail::as_size(i)] - 1.0;
+            if (i > 0) sum -= x[detail::as_size(i) - 1];
+            if (i + 1 < n) sum -= x[detail::as_size(i) + 1];
+            CHECK(std::abs(sum) <= 1e-12);
+        }
+    }
+}
+
 TEST_CASE("a leading block of a longer chain is solved as if it were the whole") {
     test::Random random(22);
     const Chain chain = random_chain(12, random);

@@ -7,6 +7,57 @@
 #include <tepor/linear/tridiagonal.hpp>
 
 namespace tepor {
+namespace detail {
+
+TEPOR_INLINE double chain_floor(Index n) noexcept {
+    return pivot_floor(n);
+}
+
+/// Half of a short chain, from its end towards the middle and back, two rows at a time. Row k lies at Step * k from `b`.
+template <Index Step>
+struct HalfChain {
+    double* b;
+    const double* ratio;
+    const double* product;
+    const double* inverse;
+    double y0 = 0.0, y1 = 0.0; // the last two rows done
+    double given = 0.0;        // what the row before held when its turn came
+
+    void first() noexcept {
+        y1 = given = b[0];
+        b[0] = y1 * inverse[0];
+    }
+    void second() noexcept {
+        const double next = b[Step];
+        y0 = y1;
+        y1 = next - ratio[0] * given;
+        given = next;
+        b[Step] = y1 * inverse[Step];
+    }
+    void in(Index k) noexcept {
+        const double next = b[Step * k];
+        const double y = (next - ratio[Step * (k - 1)] * given) + product[Step * (k - 2)] * y0;
+        given = next;
+        y0 = y1;
+        y1 = y;
+        b[Step * k] = y * inverse[Step * k];
+    }
+    /// Backwards: y0 and y1 are now the solution in rows k + 2 and k + 1, `given` what row k + 1 held.
+    void turn(Index k, double middle) noexcept {
+        y0 = middle;
+        given = b[Step * k];
+        y1 = b[Step * k] -= ratio[Step * k] * middle;
+    }
+    void out(Index k) noexcept {
+        const double held = b[Step * k];
+        const double y = (held - ratio[Step * k] * given) + product[Step * k] * y0;
+        given = held;
+        y0 = y1;
+        y1 = b[Step * k] = y;
+    }
+};
+
+} // namespace detail
 
 TEPOR_INLINE bool Tridiagonal::factor(Index n, const double* diagonal, const double* off) {
     size_ = n;
@@ -14,6 +65,7 @@ TEPOR_INLINE bool Tridiagonal::factor(Index n, const double* diagonal, const dou
     singular_row_ = -1;
     ratio_.resize(detail::as_size(n));
     inverse_.resize(detail::as_size(n));
+    product_.resize(n <= short_ ? detail::as_size(n) : 0);
     if (n == 0) return true;
     const double floor = detail::pivot_floor(n);
     double* ratio = ratio_.data();
@@ -42,6 +94,12 @@ TEPOR_INLINE bool Tridiagonal::factor(Index n, const double* diagonal, const dou
     }
     pivot(m, left - from_right);
     ratio[m] = 0.0;
+    if (n <= short_) {
+        double* product = product_.data();
+        product[m] = 0.0;
+        for (Index i = 0; i < m; ++i) product[i] = ratio[i] * ratio[i + 1];
+        for (Index j = m + 1; j < n; ++j) product[j] = ratio[j] * ratio[j - 1];
+    }
     return singular_row_ < 0;
 }
 
@@ -63,6 +121,7 @@ TEPOR_INLINE bool Tridiagonal::factor(const SparseMatrix& matrix, Index n) {
 
 TEPOR_INLINE void Tridiagonal::solve(double* b) const noexcept {
     const Index n = size_;
+    if (n >= 8 && n <= short_) return solve_short(b);
     if (n == 0) return;
     const Index m = middle_;
     const double* ratio = ratio_.data();
@@ -97,56 +156,43 @@ TEPOR_INLINE void Tridiagonal::solve(double* b) const noexcept {
     if (both < m) b[0] -= ratio[0] * up;
 }
 
+TEPOR_INLINE void Tridiagonal::solve_short(double* b) const noexcept {
+    const Index last = size_ - 1;
+    const Index m = middle_;
+    const Index both = last - m;
+    const double* ratio = ratio_.data();
+    const double* product = product_.data();
+    const double* inverse = inverse_.data();
+    detail::HalfChain<1> left{b, ratio, product, inverse};
+    detail::HalfChain<-1> right{b + last, ratio + last, product + last, inverse + last};
+    left.first();
+    right.first();
+    left.second();
+    right.second();
+    for (Index k = 2; k < both; ++k) {
+        left.in(k);
+        right.in(k);
+    }
+    if (both < m) left.in(both); // n even: the left chain has one row more
+    const double middle = (b[m] - ratio[m - 1] * left.y1 - ratio[m + 1] * right.y1) * inverse[m];
+    b[m] = middle;
+    left.turn(m - 1, middle);
+    right.turn(both - 1, middle);
+    for (Index k = both - 2; k >= 0; --k) {
+        left.out(k + (m - both));
+        right.out(k);
+    }
+    if (both < m) left.out(0);
+}
+
 TEPOR_INLINE Index solve_tridiagonal(Index n, const double* diagonal, const double* off, double* x,
                                      double* work) noexcept {
-    if (n <= 0) return -1;
-    const double floor = detail::pivot_floor(n);
-    double* ratio = work;
-    Index bad = -1;
-    const Index m = n / 2;
-    const Index both = n - 1 - m;
-    double left = diagonal[0];
-    double right = diagonal[n - 1];
-    double pivot_from_right = 0.0;
-    double load_from_right = 0.0;
-    double load_left = x[0];
-    double load_right = x[n - 1];
-    for (Index i = 0; i < both; ++i) {
-        const Index j = n - 1 - i;
-        if (!(left > floor * diagonal[i]) && bad < 0) bad = i;
-        if (!(right > floor * diagonal[j]) && bad < 0) bad = j;
-        const double inverse_left = 1.0 / left;
-        const double inverse_right = 1.0 / right;
-        ratio[i] = off[i] * inverse_left;
-        ratio[j] = off[j - 1] * inverse_right;
-        left = diagonal[i + 1] - ratio[i] * off[i];
-        pivot_from_right = ratio[j] * off[j - 1];
-        right = diagonal[j - 1] - pivot_from_right;
-        x[i] = load_left * inverse_left;
-        x[j] = load_right * inverse_right;
-        load_left = x[i + 1] - off[i] * x[i];
-        load_from_right = off[j - 1] * x[j];
-        load_right = x[j - 1] - load_from_right;
-    }
-    if (both < m) {
-        if (!(left > floor * diagonal[both]) && bad < 0) bad = both;
-        const double inverse_left = 1.0 / left;
-        ratio[both] = off[both] * inverse_left;
-        left = diagonal[m] - ratio[both] * off[both];
-        x[both] = load_left * inverse_left;
-        load_left = x[m] - off[both] * x[both];
-    }
-    const double pivot = left - pivot_from_right;
-    if (!(pivot > floor * diagonal[m]) && bad < 0) bad = m;
-    double up = (load_left - load_from_right) / pivot;
-    x[m] = up;
-    double down = up;
-    for (Index i = 0; i < both; ++i) {
-        down = x[m + 1 + i] -= ratio[m + 1 + i] * down;
-        up = x[m - 1 - i] -= ratio[m - 1 - i] * up;
-    }
-    if (both < m) x[0] -= ratio[0] * up;
-    return bad;
+    return solve_chain(
+        n,
+        [=](Index i) {
+            return ChainRow{diagonal[i], i + 1 < n ? off[i] : 0.0, x[i]};
+        },
+        x, work);
 }
 
 } // namespace tepor
