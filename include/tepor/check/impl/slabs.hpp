@@ -129,13 +129,13 @@ inline std::vector<CheckRow> straight_fin() {
     fin.on("inner", FixedTemperature{100.0});
     fin.on("outer", Film{.coefficient = 100.0, .fluid = 20.0});
     const Field field = steady(fin);
-    rows.at(field, 0.0125, 87.5731821604, 1e-5);
-    rows.at(field, 0.025, 79.0875893547, 1e-5);
-    rows.at(field, 0.0375, 74.0482969734, 1e-5);
-    rows.at(field, 0.05, 72.1613868577, 1e-5);
+    rows.at(field, 0.0125, 87.5731821604, 1e-6);
+    rows.at(field, 0.025, 79.0875893547, 1e-6);
+    rows.at(field, 0.0375, 74.0482969734, 1e-6);
+    rows.at(field, 0.05, 72.1613868577, 1e-6);
     const double heat = field[heat_in_through("inner")];
-    rows.add("heat at the base", 631.497759515, heat, 1e-4, "W");
-    rows.add("efficiency", 0.764155081697, heat / (100.0 * (2.006 * 0.05 + 0.003) * 80.0), 1e-7, "");
+    rows.add("heat at the base", 631.497759515, heat, 1e-5, "W");
+    rows.add("efficiency", 0.764155081697, heat / (100.0 * (2.006 * 0.05 + 0.003) * 80.0), 1e-8, "");
     rows.balance(field);
     return rows.take();
 }
