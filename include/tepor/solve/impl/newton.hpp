@@ -135,13 +135,14 @@ inline void check_tables(const Model& model, const Values& values, Workspace& wo
         }
 }
 
-/// `mesh: the matrix is singular near ...` for a lost pivot.
-[[noreturn]] inline void raise_singular(const Model& model, Id unknown) {
+/// The matrix has lost a pivot near an unknown; `history` is what an iteration did until then.
+[[noreturn]] inline void raise_singular(const Model& model, Id unknown, const std::string& history = {}) {
     const Point p = unknown >= 0 ? model.places[as_size(unknown)] : Point{};
-    throw Error(
-        ErrorCode::singular, "",
-        text("steady: the system has no unique solution near (", p.x, ", ", p.y,
-             "); a source that grows with temperature may outrun what carries the heat away, or a value is extreme"));
+    throw Error(ErrorCode::singular, "",
+                text("steady: the system has no unique solution near (", p.x, ", ", p.y,
+                     "); a source that grows with temperature may outrun what carries the heat away, or a value is "
+                     "extreme",
+                     history));
 }
 
 } // namespace tepor::detail

@@ -28,7 +28,8 @@ class SteadySolve {
             // a linear body is solved at least once, so that its answer does not depend on where it started
             if (now <= limit && (pass > 0 || model_.nonlinear)) break;
             if (model_.nonlinear ? pass >= options_.most_passes : pass >= 4) stalled(T, "the passes ran out");
-            if (!factored && !engine_.factor(Purpose::one_solve)) raise_singular(model_, engine_.singular_unknown());
+            if (!factored && !engine_.factor(Purpose::one_solve))
+                raise_singular(model_, engine_.singular_unknown(), model_.nonlinear ? told() : std::string());
             factored = !model_.nonlinear;
             for (Index u = 0; u < model_.free; ++u) engine_.step[as_size(u)] = -engine_.residual[as_size(u)];
             if (!engine_.solve(engine_.step.data(), linear_limit(now, limit))) stalled(T, "the linear solve stalled");
@@ -113,14 +114,19 @@ class SteadySolve {
             if (!(std::abs(engine_.residual[as_size(u)]) <= std::abs(engine_.residual[as_size(worst)])))
                 worst = as_id(u);
         const Point p = model_.free > 0 ? model_.places_of(values_)[worst] : Point{};
-        std::string message =
-            text("steady: not converged, ", why, " after ", history_.size(), " passes; worst at (", p.x, ", ", p.y,
-                 "), temperature ", model_.free > 0 ? T[worst] : 0.0, "; residual [W] by pass:");
-        for (const SolvePass& pass : history_) message += text(" ", pass.residual);
-        message += text(
+        throw Error(ErrorCode::not_converged, "",
+                    text("steady: not converged, ", why, "; worst at (", p.x, ", ", p.y, "), temperature ",
+                         model_.free > 0 ? T[worst] : 0.0, told()));
+    }
+
+    /// The history in words, and what to try.
+    [[nodiscard]] std::string told() const {
+        std::string words = text("; ", history_.size(), " passes, residual [W] by pass:");
+        for (const SolvePass& pass : history_) words += text(" ", pass.residual);
+        words += text(
             " (limit ", history_.empty() ? 0.0 : history_.back().limit,
             "); check values and units, start nearer with SteadyOptions::start, or look for a source that runs away");
-        throw Error(ErrorCode::not_converged, "", message);
+        return words;
     }
 
     Engine& engine_;
