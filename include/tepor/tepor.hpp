@@ -17,6 +17,7 @@
 #include <tepor/quadrature/triangle_rules.hpp>
 
 #include <tepor/element/concept.hpp>
+#include <tepor/element/exact_segment.hpp>
 #include <tepor/element/lagrange.hpp>
 #include <tepor/element/map.hpp>
 #include <tepor/element/quadrilateral.hpp>
@@ -63,6 +64,8 @@
 
 #include <tepor/assembly/block.hpp>
 #include <tepor/assembly/cell_kernels.hpp>
+#include <tepor/assembly/cell_law.hpp>
+#include <tepor/assembly/exact_kernels.hpp>
 #include <tepor/assembly/kernels.hpp>
 #include <tepor/assembly/kernels_cells.hpp>
 #include <tepor/assembly/kernels_sides.hpp>

@@ -48,10 +48,18 @@ struct CellBlock {
     const double* source = nullptr;                         ///< heat taken up per volume, s(T) [W/m3]; null for none
     const double* source_slope = nullptr;                   ///< ds/dT; null when zero
 
+    // for exact cell laws: what they can take up in their functions
+    double sink = 0.0; ///< c >= 0 of a loss c T that is part of s but not of `source` [W/(m3 K)]
+    const double* k_mean =
+        nullptr; ///< per cell: mean of k over temperature between its nodes; null unless k depends on it
+    const double* k_end[2] = {nullptr, nullptr}; ///< per cell: k at the temperatures of its two nodes
+
     // results of CellKernels::form
-    double* residual = nullptr; ///< nodes: integral of k grad T . grad N_i + s N_i
-    double* matrix = nullptr;   ///< packed lower triangle, entry (i, j <= i) at i (i + 1) / 2 + j
-    double* slope = nullptr;    ///< nodes x nodes, row i: integral of k' N_j grad T . grad N_i
+    int unresolved = -1; ///< exact cell laws: a cell whose coefficients the points cannot follow, -1 for none
+    bool unresolved_source = false; ///< it is the source, not the conductivity
+    double* residual = nullptr;     ///< nodes: integral of k grad T . grad N_i + s N_i
+    double* matrix = nullptr;       ///< packed lower triangle, entry (i, j <= i) at i (i + 1) / 2 + j
+    double* slope = nullptr;        ///< nodes x nodes, row i: integral of k' N_j grad T . grad N_i
 };
 
 /// A block of sides; the same layout.

@@ -36,6 +36,16 @@ class CellKernels {
     /// Element residual, matrix and slope from the coefficients; what is not wanted is left alone.
     virtual void form(CellBlock& block, Wanted wanted) const = 0;
 
+    /// Integral of amount N_i N_j into block.matrix, with `amount` given at the quadrature points: the capacity matrix from
+    /// density times specific heat. `lumped` moves each row onto its diagonal (sensible for order 1). Needs open(); exact
+    /// cell laws need the conductivities too.
+    virtual void form_capacity(CellBlock& block, const double* amount, bool lumped) const = 0;
+
+    /// The temperature at the quadrature points as the cell itself has it, into block.point_T. With `shape` (points x
+    /// nodes) the weight of each node's temperature in it. What open() has put there is that already for every Element; an
+    /// exact cell law needs the coefficients, and with k_mean it gives the integral of k from the first node's temperature.
+    virtual void profile(CellBlock& block, double* shape) const = 0;
+
     /// As open and form, for sides. `lumped` puts the quadrature points on the nodes.
     virtual void open_side(SideBlock& block, bool lumped) const = 0;
     virtual void form_side(SideBlock& block, Wanted wanted, bool lumped) const = 0;

@@ -84,6 +84,8 @@ class Kernels final : public CellKernels {
 
     void open(CellBlock& block) const override;
     void form(CellBlock& block, Wanted wanted) const override;
+    void form_capacity(CellBlock& block, const double* amount, bool lumped) const override;
+    void profile(CellBlock& block, double* shape) const override;
     void open_side(SideBlock& block, bool lumped) const override;
     void form_side(SideBlock& block, Wanted wanted, bool lumped) const override;
 
@@ -155,5 +157,6 @@ class Kernels final : public CellKernels {
 
 } // namespace tepor
 
+#include <tepor/assembly/exact_kernels.hpp>
 #include <tepor/assembly/kernels_cells.hpp>
 #include <tepor/assembly/kernels_sides.hpp>

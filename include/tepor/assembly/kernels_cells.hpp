@@ -122,14 +122,7 @@ void Kernels<E>::open(CellBlock& block) const {
     } else {
         map_plane(block);
     }
-    if (!block.T) return;
-    for (int q = 0; q < points; ++q) {
-        const double* n = shape_.data() + static_cast<Index>(q) * N;
-        double* TEPOR_RESTRICT T = block.point_T + q * W;
-        for (int c = 0; c < W; ++c) T[c] = 0.0;
-        for (int i = 0; i < N; ++i)
-            for (int c = 0; c < W; ++c) T[c] += n[i] * block.T[i * W + c];
-    }
+    profile(block, nullptr);
 }
 
 template <Element E>
@@ -291,6 +284,41 @@ void Kernels<E>::add_source(CellBlock& block, Wanted wanted) const {
                 double* TEPOR_RESTRICT m = block.matrix + pair * W;
                 for (int c = 0; c < W; ++c) m[c] += s[c] * nn;
             }
+    }
+}
+
+template <Element E>
+void Kernels<E>::form_capacity(CellBlock& block, const double* amount, bool lumped) const {
+    for (int i = 0; i < N * (N + 1) / 2 * W; ++i) block.matrix[i] = 0.0;
+    for (int q = 0; q < points; ++q) {
+        const double* n = shape_.data() + static_cast<Index>(q) * N;
+        const double* TEPOR_RESTRICT weight = block.weight + q * W;
+        double s[W];
+        for (int c = 0; c < W; ++c) s[c] = weight[c] * amount[q * W + c];
+        int pair = 0;
+        for (int i = 0; i < N; ++i)
+            for (int j = 0; j <= i; ++j, ++pair) {
+                if (lumped && j != i) continue;
+                const double nn = lumped ? n[i] : n[i] * n[j]; // the functions of a row sum to 1
+                double* TEPOR_RESTRICT m = block.matrix + pair * W;
+                for (int c = 0; c < W; ++c) m[c] += s[c] * nn;
+            }
+    }
+}
+
+template <Element E>
+void Kernels<E>::profile(CellBlock& block, double* shape) const {
+    if (shape)
+        for (int q = 0; q < points; ++q)
+            for (int i = 0; i < N; ++i)
+                for (int c = 0; c < W; ++c) shape[(q * N + i) * W + c] = shape_[detail::as_size(q * N + i)];
+    if (!block.T) return;
+    for (int q = 0; q < points; ++q) {
+        const double* n = shape_.data() + static_cast<Index>(q) * N;
+        double* TEPOR_RESTRICT T = block.point_T + q * W;
+        for (int c = 0; c < W; ++c) T[c] = 0.0;
+        for (int i = 0; i < N; ++i)
+            for (int c = 0; c < W; ++c) T[c] += n[i] * block.T[i * W + c];
     }
 }
 

@@ -43,8 +43,10 @@ struct Pass {
 
     double* residual =
         nullptr; ///< all unknowns, set (not added to); null: not wanted. Heat into the body that T would need [W]
-    SparseMatrix* matrix = nullptr; ///< lower (and upper when the model has a slope) set; null: not wanted
-    Accounts* accounts = nullptr;   ///< null: not wanted
+    SparseMatrix* matrix = nullptr;  ///< lower (and upper when the model has a slope) set; null: not wanted
+    Accounts* accounts = nullptr;    ///< null: not wanted
+    double* content = nullptr;       ///< per region: integral of T over its volume [K m3], set; null: not wanted
+    double* content_slope = nullptr; ///< all unknowns: derivative of the sum of `content` by T, added to; may be null
 
     double side_traffic = 0.0;   ///< sum of |flow| over the cell sides of faces, prescribed ones excepted
     double source_traffic = 0.0; ///< sum of |source| over cells
@@ -56,6 +58,11 @@ struct Pass {
 /// Cost O(cells points nodes^2) with the matrix, O(cells points nodes) without; allocates nothing but the contents of
 /// `accounts` (and laws with more than 16 parameters).
 TEPOR_INLINE void assemble(const Model& model, const Values& values, Workspace& work, Pass& pass);
+
+/// Evaluates the cells whose nodes (x, T) stand in work.cells as if they lay in `region`; `cells` names the one each of them is
+/// part of, for messages. Results stay in work.cells.
+TEPOR_INLINE Fault form_cells(const Model& model, const Values& values, Workspace& work, TimeSpan time, Id region,
+                              const Id* cells, Wanted wanted);
 
 /// Gives a matrix the model's pattern, values zero; `upper` only when the model has an unsymmetric derivative.
 TEPOR_INLINE void prepare_matrix(const Model& model, SparseMatrix& matrix);

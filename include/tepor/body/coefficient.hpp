@@ -42,7 +42,14 @@ class Coefficient;
 
 /// Why an evaluation cannot be used; kept as plain data because marching neither throws nor allocates.
 struct Fault {
-    enum class Kind { none, not_finite, out_of_range, law_stopped };
+    enum class Kind {
+        none,
+        not_finite,
+        out_of_range,
+        law_stopped,
+        unresolved,           ///< the points of an exact cell cannot follow it
+        place_and_temperature ///< a conductivity of both, which the exact cell does not take
+    };
     Kind kind = Kind::none;
     const Coefficient* coefficient = nullptr;
     Index point = -1; ///< position in the batch

@@ -27,6 +27,13 @@ struct SparseRow {
     }
 };
 
+/// A place in a mesh seen by the model: the cell in its numbering and reference coordinates.
+struct ModelPlace {
+    Id cell = -1;
+    double xi[2] = {0.0, 0.0};
+    explicit operator bool() const noexcept { return cell >= 0; }
+};
+
 /// A compiled Quantity, J(T) = constant + weights . T + reactions . r + heat terms. Reading is a few dot products; the
 /// same parts are the load of an adjoint.
 struct Functional {
@@ -50,6 +57,18 @@ struct Functional {
     };
     std::vector<EdgeFlux> edges;
 
+    /// Exact cells only: temperatures between nodes, and the mean of a region, which are no fixed weights on T.
+    struct Inner {
+        ModelPlace place;
+        double factor = 0.0;
+    };
+    std::vector<Inner> inner;
+    struct Content {
+        Id region = 0;
+        double factor = 0.0; ///< 1 / volume
+    };
+    std::vector<Content> contents;
+
     /// Where the flow has no finite value: two prescribed temperatures differ at this corner.
     std::optional<Point> unbounded;
 
@@ -61,15 +80,9 @@ struct Functional {
 
     /// Nothing but weights on T and a constant.
     [[nodiscard]] bool plain() const noexcept {
-        return reaction.unknown.empty() && heats.empty() && edges.empty() && !extreme;
+        return reaction.unknown.empty() && heats.empty() && edges.empty() && inner.empty() && contents.empty() &&
+               !extreme;
     }
-};
-
-/// A place in a mesh seen by the model: the cell in its numbering and reference coordinates.
-struct ModelPlace {
-    Id cell = -1;
-    double xi[2] = {0.0, 0.0};
-    explicit operator bool() const noexcept { return cell >= 0; }
 };
 
 /// Compiles a quantity.

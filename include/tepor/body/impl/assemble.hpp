@@ -38,6 +38,12 @@ class Assembler {
         for (std::size_t l = 0; l < model_.locals.size() && !pass_.fault; ++l) local(l);
     }
 
+    bool run_block(Id region, const Id* cells, Wanted wanted) {
+        pass_.fault = {};
+        const RegionPass pass = prepare(as_size(region), wanted);
+        return !pass_.fault && form_block(pass, cells);
+    }
+
     void run_part(const Restriction& only) {
         for (const Id r : only.regions)
             if (!pass_.fault) cells(as_size(r));
@@ -62,6 +68,8 @@ class Assembler {
         pass_.side_traffic = pass_.source_traffic = 0.0;
         pass_.weighted = 0.0;
         pass_.fault = {};
+        if (pass_.content)
+            for (std::size_t r = 0; r < model_.regions.size(); ++r) pass_.content[r] = 0.0;
         if (!pass_.accounts) return;
         Accounts& a = *pass_.accounts;
         std::size_t terms = 0;
@@ -92,53 +100,110 @@ class Assembler {
         return false;
     }
 
-    void cells(std::size_t r) {
+    /// What the coefficients of a region ask of a pass.
+    struct RegionPass {
+        std::size_t region = 0;
+        bool sources = false;
+        bool k_slope = false;
+        bool own_mean = false; ///< conductivity of temperature in an exact cell
+        Wanted wanted;
+    };
+
+    RegionPass prepare(std::size_t r, Wanted wanted) {
         const RegionModel& region = model_.regions[r];
         CellBlock& block = work_.cells;
-        double* const nodal_T = work_.nodal_T;
-        block.T = pass_.T ? nodal_T : nullptr;
-        block.conductivities = region.conductivities;
+        RegionPass pass;
+        pass.region = r;
         bool k_uniform = true;
-        bool k_slope = false;
         for (int m = 0; m < region.conductivities; ++m) {
             k_uniform = k_uniform && region.k[m].uniform();
-            k_slope = k_slope || region.k[m].depends_on_temperature();
+            pass.k_slope = pass.k_slope || region.k[m].depends_on_temperature();
         }
-        const bool sources = !region.volume.empty();
-        Wanted wanted;
-        wanted.residual = wants_residual();
-        wanted.matrix = wants_matrix();
-        wanted.slope = wanted.matrix && k_slope && pass_.T;
+        pass.sources = !region.volume.empty();
+        pass.own_mean = kernel_.exact && pass.k_slope && block.T;
+        wanted.slope = wanted.matrix && pass.k_slope && block.T;
+        pass.wanted = wanted;
+        block.conductivities = region.conductivities;
         block.k_uniform = k_uniform;
         for (int m = 0; m < 3; ++m) {
             block.k[m] = m < region.conductivities ? work_.coefficient[m] : nullptr;
             block.k_slope[m] = wanted.slope && m < region.conductivities ? work_.coefficient[3 + m] : nullptr;
         }
+        block.k_mean = pass.own_mean ? work_.coefficient[1] : nullptr;
+        block.k_end[0] = pass.own_mean ? work_.coefficient[2] : nullptr;
+        block.k_end[1] = pass.own_mean ? work_.coefficient[4] : nullptr;
+        block.sink = 0.0;
         if (k_uniform)
             for (int m = 0; m < region.conductivities; ++m)
                 if (const Fault fault =
                         region.k[m].evaluate(slots_, pass_.time, {1, nullptr, nullptr, &place_->x, &place_->y},
                                              work_.coefficient[m], nullptr)) {
                     pass_.fault = fault;
-                    return;
+                    return pass;
                 }
-        block.source = sources ? work_.coefficient[6] : nullptr;
-        block.source_slope = sources ? work_.coefficient[7] : nullptr;
+        bool by_temperature = false;
+        for (const VolumeTerm& term : region.volume) {
+            if (linear_sink(region, term)) {
+                block.sink += sink_of(term);
+                continue;
+            }
+            by_temperature =
+                by_temperature || term.kind == VolumeTerm::Kind::side_film || term.amount.depends_on_temperature();
+        }
+        block.source = pass.sources ? work_.coefficient[6] : nullptr;
+        block.source_slope = by_temperature ? work_.coefficient[7] : nullptr;
+        return pass;
+    }
+
+    void cells(std::size_t r) {
+        const RegionModel& region = model_.regions[r];
+        CellBlock& block = work_.cells;
+        block.T = pass_.T ? work_.nodal_T : nullptr;
+        Wanted wanted;
+        wanted.residual = wants_residual();
+        wanted.matrix = wants_matrix();
+        const RegionPass pass = prepare(r, wanted);
+        if (pass_.fault) return;
         Id ids[W];
         for (Id c = region.first_cell; c < region.last_cell; c += W) {
-            block.count = gather_cells(model_, place_, pass_.T, nodal_T, c, region.last_cell, block, ids);
-            kernel_.open(block);
-            const Points at{static_cast<Index>(kernel_.points) * W, pass_.T ? block.point_T : nullptr, nullptr,
-                            block.point_x, block.point_y};
-            if (!k_uniform)
-                for (int m = 0; m < region.conductivities; ++m)
-                    if (!evaluate(region.k[m], at, work_.coefficient[m],
-                                  wanted.slope ? work_.coefficient[3 + m] : nullptr, ids, block.count))
-                        return;
-            if (sources && !volume_terms(r, at, ids)) return;
-            kernel_.form(block, wanted);
-            scatter(block, c, wanted);
+            block.count = gather_cells(model_, place_, pass_.T, work_.nodal_T, c, region.last_cell, block, ids);
+            if (!form_block(pass, ids)) return;
+            scatter(block, c, pass.wanted);
+            if (pass_.content && !add_content(pass, c, ids)) return;
         }
+    }
+
+    /// Coefficients and element arrays of the block, whose nodes are in place.
+    bool form_block(const RegionPass& pass, const Id* ids) {
+        const RegionModel& region = model_.regions[pass.region];
+        CellBlock& block = work_.cells;
+        kernel_.open(block);
+        const Points at{static_cast<Index>(kernel_.points) * W, block.T ? block.point_T : nullptr, nullptr,
+                        block.point_x, block.point_y};
+        if (pass.own_mean) {
+            if (!mean_conductivity(region.k[0], ids)) return false;
+        } else if (!block.k_uniform) {
+            for (int m = 0; m < region.conductivities; ++m)
+                if (!evaluate(region.k[m], at, work_.coefficient[m],
+                              pass.wanted.slope ? work_.coefficient[3 + m] : nullptr, ids, block.count))
+                    return false;
+        }
+        Accounts* const a = pass_.accounts;
+        const std::size_t r = pass.region;
+        const double before = a ? a->generated[r] - a->side_loss[r] : 0.0;
+        if (pass.sources && !volume_terms(r, at, ids)) return false;
+        Wanted wanted = pass.wanted;
+        const bool sink_account = a && block.sink > 0.0;
+        wanted.residual = wanted.residual || sink_account;
+        kernel_.form(block, wanted);
+        if (kernel_.exact && block.unresolved >= 0) return unresolved(region, ids);
+        if (sink_account) {
+            // all the cells give off, and what they generate, less what other side films take
+            double loss = a->generated[r] - a->side_loss[r] - before;
+            for (int c = 0; c < block.count; ++c) loss += block.residual[c] + block.residual[W + c];
+            a->side_loss[r] += loss;
+        }
+        return true;
     }
 
     /// Heat taken up per volume, all terms of the region, at the points of the block.
@@ -154,6 +219,12 @@ class Assembler {
         const Index n = at.count;
         for (Index i = 0; i < n; ++i) source[i] = slope[i] = 0.0;
         for (const VolumeTerm& term : region.volume) {
+            if (linear_sink(region, term)) {
+                if (!evaluate(term.fluid, at, fluid, nullptr, ids, block.count)) return false;
+                const double sink = sink_of(term);
+                for (Index i = 0; i < n; ++i) source[i] -= sink * fluid[i];
+                continue;
+            }
             if (term.kind == VolumeTerm::Kind::side_film) {
                 if (!evaluate(term.fluid, at, fluid, nullptr, ids, block.count)) return false;
                 if (!evaluate(term.extent, at, extent, nullptr, ids, block.count)) return false;
@@ -182,6 +253,9 @@ class Assembler {
         for (int c = 0; c < block.count; ++c) {
             double sum = 0.0;
             for (int q = 0; q < kernel_.points; ++q) sum += block.weight[q * W + c] * source[q * W + c];
+            if (block.sink > 0.0 && at.temperature)
+                for (int q = 0; q < kernel_.points; ++q)
+                    sum += block.weight[q * W + c] * block.sink * at.temperature[q * W + c];
             pass_.source_traffic += std::abs(sum);
         }
         return true;
@@ -254,210 +328,25 @@ class Assembler {
         }
     }
 
-    void face(const FaceModel& face, const SideList& sides, std::size_t first_term) {
-        SideBlock& block = work_.sides;
-        block.T = pass_.T ? work_.side_nodal_T : nullptr;
-        double* TEPOR_RESTRICT flux = work_.side_coefficient[0];
-        double* TEPOR_RESTRICT slope = work_.side_coefficient[1];
-        block.flux = flux;
-        block.flux_slope = slope;
-        Wanted wanted;
-        wanted.residual = wants_residual();
-        wanted.matrix = wants_matrix();
-        Id ids[W];
-        const Index n = static_cast<Index>(kernel_.side_points) * W;
-        for (Index s = 0; s < sides.count(); s += W) {
-            block.count = gather_sides(model_, place_, pass_.T, work_.side_nodal_T, sides, s, block, ids);
-            kernel_.open_side(block, model_.lumped_faces);
-            for (Index i = 0; i < n; ++i) flux[i] = slope[i] = 0.0;
-            for (std::size_t t = 0; t < face.terms.size(); ++t)
-                if (!face_term(face.terms[t], n, ids, pass_.accounts ? &pass_.accounts->face[first_term + t] : nullptr))
-                    return;
-            for (int c = 0; c < block.count; ++c) {
-                double sum = 0.0;
-                for (int q = 0; q < kernel_.side_points; ++q) sum += block.weight[q * W + c] * flux[q * W + c];
-                pass_.side_traffic += std::abs(sum);
-            }
-            kernel_.form_side(block, wanted, model_.lumped_faces);
-            scatter_sides(sides, s, block.count, 1.0);
-        }
-    }
+    // sides and places: assemble_sides.hpp
+    void face(const FaceModel& face, const SideList& sides, std::size_t first_term);
+    bool face_term(const FaceTerm& term, Index n, const Id* ids, double* sum);
+    void scatter_sides(const SideList& sides, Index first, int count, double sign);
+    void weigh_side(const Id* row, const Id* column, int b, double sign);
+    void add_side_matrix(Id cell, const Id* ids, int b);
+    void add_both(Id at, double value);
+    void contact(std::size_t k);
+    void cross_terms(const ContactModel& contact, Index first, int count);
+    void local(std::size_t l);
 
-    bool face_term(const FaceTerm& term, Index n, const Id* ids, double* sum) {
-        const SideBlock& block = work_.sides;
-        double* TEPOR_RESTRICT flux = work_.side_coefficient[0];
-        double* TEPOR_RESTRICT slope = work_.side_coefficient[1];
-        double* TEPOR_RESTRICT amount = work_.side_coefficient[2];
-        double* TEPOR_RESTRICT by_T = work_.side_coefficient[3];
-        double* TEPOR_RESTRICT outside = work_.side_coefficient[4];
-        Points at{n, pass_.T ? block.point_T : nullptr, nullptr, block.point_x, block.point_y};
-        if (term.kind != FaceTerm::Kind::flux) {
-            if (!evaluate(term.outside, at, outside, nullptr, ids, block.count)) return false;
-            at.fluid = outside;
-        }
-        if (!evaluate(term.amount, at, amount, by_T, ids, block.count)) return false;
-        const double offset = model_.absolute_offset();
-        for (Index i = 0; i < n; ++i) {
-            const double T = at.temperature ? at.temperature[i] : 0.0;
-            double q = term.sign * amount[i];
-            double dq = term.sign * by_T[i];
-            if (term.kind == FaceTerm::Kind::film) {
-                q = amount[i] * (T - outside[i]);
-                dq = amount[i] + by_T[i] * (T - outside[i]);
-            } else if (term.kind == FaceTerm::Kind::radiation) {
-                // |t| keeps the law rising for iterates below absolute zero
-                const double t = T + offset;
-                const double t_outside = outside[i] + offset;
-                const double exchange =
-                    stefan_boltzmann * (t * std::abs(t * t * t) - t_outside * t_outside * t_outside * t_outside);
-                q = amount[i] * exchange;
-                dq = amount[i] * 4.0 * stefan_boltzmann * std::abs(t * t * t) + by_T[i] * exchange;
-            }
-            amount[i] = q;
-            flux[i] += q;
-            slope[i] += dq;
-        }
-        if (!sum) return true;
-        for (int q = 0; q < kernel_.side_points; ++q)
-            for (int c = 0; c < block.count; ++c) *sum += block.weight[q * W + c] * amount[q * W + c];
-        return true;
-    }
-
-    /// Side results into the system; `sign` turns a heat that leaves into one that enters.
-    void scatter_sides(const SideList& sides, Index first, int count, double sign) {
-        const SideBlock& block = work_.sides;
-        const int m = kernel_.side_nodes;
-        for (int b = 0; b < count; ++b) {
-            const Id* ids = sides.unknowns.data() + (first + b) * m;
-            if (pass_.residual)
-                for (int i = 0; i < m; ++i) pass_.residual[ids[i]] += sign * block.residual[i * W + b];
-            if (pass_.weights) weigh_side(ids, ids, b, sign);
-            if (pass_.matrix) add_side_matrix(sides.side[as_size(first + b)].cell, ids, b);
-        }
-    }
-
-    /// Rows of the unknowns `row`, columns of `column`; the residual counts once, with its own columns.
-    void weigh_side(const Id* row, const Id* column, int b, double sign) {
-        const SideBlock& block = work_.sides;
-        const int m = kernel_.side_nodes;
-        for (int i = 0; i < m; ++i) {
-            const double w = pass_.weights[row[i]];
-            if (w == 0.0) continue;
-            if (row == column) pass_.weighted += sign * w * block.residual[i * W + b];
-            if (!pass_.transposed) continue;
-            const double column_sign = row == column ? 1.0 : -1.0;
-            for (int j = 0; j < m; ++j) {
-                const int pair = i > j ? i * (i + 1) / 2 + j : j * (j + 1) / 2 + i;
-                pass_.transposed[column[j]] += column_sign * w * block.matrix[pair * W + b];
-            }
-        }
-    }
-
-    /// The side matrix of place b among the unknowns `ids` of a cell.
-    void add_side_matrix(Id cell, const Id* ids, int b) {
-        const int m = kernel_.side_nodes;
-        const int n = kernel_.nodes;
-        const Id* of_cell = model_.cell(cell);
-        const Id* map = model_.scatter.data() + static_cast<Index>(cell) * (n * (n + 1) / 2);
-        int local[max_side_nodes];
-        for (int i = 0; i < m; ++i)
-            for (int a = 0; a < n; ++a)
-                if (of_cell[a] == ids[i]) local[i] = a;
-        int p = 0;
-        for (int i = 0; i < m; ++i)
-            for (int j = 0; j <= i; ++j, ++p) {
-                const int high = local[i] > local[j] ? local[i] : local[j];
-                const int low = local[i] > local[j] ? local[j] : local[i];
-                add_both(map[high * (high + 1) / 2 + low], work_.sides.matrix[p * W + b]);
-            }
-    }
-
-    /// A symmetric contribution.
-    void add_both(Id at, double value) {
-        pass_.matrix->lower[as_size(at)] += value;
-        if (!pass_.matrix->upper.empty()) pass_.matrix->upper[as_size(at)] += value;
-    }
-
-    void contact(std::size_t k) {
-        const ContactModel& contact = model_.contacts[k];
-        SideBlock& block = work_.sides;
-        block.T = work_.side_nodal_T; // the jump, node by node
-        double* TEPOR_RESTRICT flux = work_.side_coefficient[0];
-        double* TEPOR_RESTRICT slope = work_.side_coefficient[1];
-        block.flux = flux;
-        block.flux_slope = slope;
-        const int m = kernel_.side_nodes;
-        Wanted wanted;
-        wanted.residual = wants_residual() || pass_.accounts != nullptr;
-        wanted.matrix = wants_matrix();
-        Id ids[W];
-        const Index n = static_cast<Index>(kernel_.side_points) * W;
-        for (Index s = 0; s < contact.first.count(); s += W) {
-            block.count = gather_sides(model_, place_, nullptr, work_.side_nodal_T, contact.first, s, block, ids);
-            for (int b = 0; b < W; ++b) {
-                const Index at = (s + (b < block.count ? b : block.count - 1)) * m;
-                for (int i = 0; i < m; ++i)
-                    block.T[i * W + b] = pass_.T ? pass_.T[contact.first.unknowns[as_size(at + i)]] -
-                                                       pass_.T[contact.second.unknowns[as_size(at + i)]]
-                                                 : 0.0;
-            }
-            kernel_.open_side(block, model_.lumped_faces);
-            const Points at{n, nullptr, nullptr, block.point_x, block.point_y};
-            if (!evaluate(contact.amount, at, slope, nullptr, ids, block.count)) return;
-            for (Index i = 0; i < n; ++i) {
-                if (contact.resistance) slope[i] = 1.0 / slope[i];
-                flux[i] = slope[i] * block.point_T[i];
-            }
-            kernel_.form_side(block, wanted, model_.lumped_faces);
-            if (pass_.accounts)
-                for (int i = 0; i < m; ++i)
-                    for (int b = 0; b < block.count; ++b) pass_.accounts->contact[k] += block.residual[i * W + b];
-            scatter_sides(contact.first, s, block.count, 1.0);
-            scatter_sides(contact.second, s, block.count, -1.0);
-            if (pass_.weights)
-                for (int b = 0; b < block.count; ++b) {
-                    const Id* first = contact.first.unknowns.data() + (s + b) * m;
-                    const Id* second = contact.second.unknowns.data() + (s + b) * m;
-                    weigh_side(first, second, b, 1.0);
-                    weigh_side(second, first, b, 1.0);
-                }
-            if (pass_.matrix) cross_terms(contact, s, block.count);
-        }
-    }
-
-    void cross_terms(const ContactModel& contact, Index first, int count) {
-        const int m = kernel_.side_nodes;
-        for (int b = 0; b < count; ++b)
-            for (int i = 0; i < m; ++i)
-                for (int j = 0; j < m; ++j) {
-                    const int pair = i > j ? i * (i + 1) / 2 + j : j * (j + 1) / 2 + i;
-                    const Index side = first + b;
-                    // where the joint is closed both are one unknown, and its diagonal takes the entry and its mirror
-                    const bool closed =
-                        contact.first.unknowns[as_size(side * m + i)] == contact.second.unknowns[as_size(side * m + j)];
-                    add_both(contact.cross[as_size((side * m + i) * m + j)],
-                             (closed ? -2.0 : -1.0) * work_.sides.matrix[pair * W + b]);
-                }
-    }
-
-    void local(std::size_t l) {
-        const LocalModel& heat = model_.locals[l];
-        double total = 0.0;
-        const Points at{1, nullptr, nullptr, &heat.place.x, &heat.place.y};
-        Fault fault = heat.total.evaluate(slots_, pass_.time, at, &total, nullptr);
-        if (fault) {
-            pass_.fault = fault;
-            return;
-        }
-        if (pass_.residual)
-            for (std::size_t i = 0; i < heat.unknowns.size(); ++i)
-                pass_.residual[heat.unknowns[i]] -= total * heat.share[i];
-        if (pass_.weights)
-            for (std::size_t i = 0; i < heat.unknowns.size(); ++i)
-                pass_.weighted -= pass_.weights[heat.unknowns[i]] * total * heat.share[i];
-        if (pass_.accounts) pass_.accounts->local[l] = total;
-        pass_.source_traffic += std::abs(total);
-    }
+    // exact cells: assemble_exact.hpp
+    [[nodiscard]] bool linear_sink(const RegionModel& region, const VolumeTerm& term) const;
+    [[nodiscard]] double sink_of(const VolumeTerm& term) const;
+    bool mean_conductivity(const Coefficient& k, const Id* ids);
+    bool refuse(Fault::Kind kind, const Coefficient& which, int c, const Id* ids);
+    bool unresolved(const RegionModel& region, const Id* ids);
+    bool add_content(const RegionPass& pass, Id first, const Id* ids);
+    double temperature_of(const Coefficient& k, double T, double rise, double* k_there);
 
     const Model& model_;
     const CellKernels& kernel_;
@@ -466,6 +355,7 @@ class Assembler {
     const Point* place_;
     Workspace& work_;
     Pass& pass_;
+    std::vector<double> shape_;
 };
 
 } // namespace detail
@@ -474,4 +364,15 @@ TEPOR_INLINE void assemble(const Model& model, const Values& values, Workspace& 
     detail::Assembler(model, values, work, pass).run();
 }
 
+TEPOR_INLINE Fault form_cells(const Model& model, const Values& values, Workspace& work, TimeSpan time, Id region,
+                              const Id* cells, Wanted wanted) {
+    Pass pass;
+    pass.time = time;
+    (void)detail::Assembler(model, values, work, pass).run_block(region, cells, wanted);
+    return pass.fault;
+}
+
 } // namespace tepor
+
+#include <tepor/body/impl/assemble_exact.hpp>
+#include <tepor/body/impl/assemble_sides.hpp>

@@ -67,6 +67,17 @@ TEPOR_INLINE void raise(const Fault& fault) {
     if (fault.cell >= 0) where += detail::text(" in cell ", fault.cell);
     if (fault.coefficient->depends_on_temperature()) where += detail::text(", temperature ", fault.temperature);
     if (fault.time != 0.0) where += detail::text(", time ", fault.time, " s");
+    if (fault.kind == Fault::Kind::unresolved)
+        throw Error(ErrorCode::not_supported, label,
+                    detail::text(label, " bends too sharply for the points of the exact cell", where,
+                                 "; end a layer where it bends or jumps, give the layer more cells, raise "
+                                 "BodyOptions::extra_degree, or use Segment<2>"),
+                    fault.cell);
+    if (fault.kind == Fault::Kind::place_and_temperature)
+        throw Error(ErrorCode::not_supported, label,
+                    detail::text(label, " depends on place and on temperature", where,
+                                 "; an ExactSegment takes one of the two, use Segment<2> for both"),
+                    fault.cell);
     const bool own = fault.coefficient->value().kind() == Value::Kind::law;
     const std::string name = own ? fault.coefficient->value().law().name() : label;
     if (fault.kind == Fault::Kind::law_stopped)

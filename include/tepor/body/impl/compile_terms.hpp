@@ -375,6 +375,14 @@ inline void TermCompiler::locals() {
         const Id cell = model_.model_cell[as_size(where.cell)];
         term.region = model_.region_of_cell[as_size(cell)];
         for (int i = 0; i < kernel.nodes; ++i) {
+            if (kernel.exact) {
+                double& share = shape[as_size(i)];
+                if (share > 1e-9 && share < 1.0 - 1e-9)
+                    throw Error(ErrorCode::not_supported, place,
+                                text("local heat at ", place,
+                                     " lies inside an ExactSegment; end a layer there, or use Segment<2>"));
+                share = share < 0.5 ? 0.0 : 1.0;
+            }
             if (shape[as_size(i)] == 0.0) continue;
             term.unknowns.push_back(model_.cell(cell)[i]);
             term.share.push_back(shape[as_size(i)]);

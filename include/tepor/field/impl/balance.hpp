@@ -58,12 +58,15 @@ inline double largest_conductance(const Model& model, const Values& values, Work
             double* k = work.coefficient[0];
             for (int m = 0; m < (region.conductivities > 1 ? 2 : 1); ++m) {
                 if (const Fault fault = region.k[m].evaluate(values.slots.data(), {}, at, k, nullptr)) raise(fault);
-                for (int i = 0; i < kernel.nodes; ++i)
-                    for (int b = 0; b < block.count; ++b) {
-                        const double gx = block.gradient_x[i * block_width + b];
-                        const double gy = kernel.dim == 2 ? block.gradient_y[i * block_width + b] : 0.0;
-                        largest = std::max(largest, k[b] * std::sqrt(gx * gx + gy * gy));
-                    }
+                const int last = kernel.points - 1; // around a solid centre the slope vanishes at the first point
+                for (int q = 0; q <= last; q += std::max(last, 1))
+                    for (int i = 0; i < kernel.nodes; ++i)
+                        for (int b = 0; b < block.count; ++b) {
+                            const int entry = (q * kernel.nodes + i) * block_width + b;
+                            const double gx = block.gradient_x[entry];
+                            const double gy = kernel.dim == 2 ? block.gradient_y[entry] : 0.0;
+                            largest = std::max(largest, k[q * block_width + b] * std::sqrt(gx * gx + gy * gy));
+                        }
             }
         }
     return largest;

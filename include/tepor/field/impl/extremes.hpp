@@ -3,7 +3,9 @@
 
 #include <cmath>
 #include <limits>
+#include <tepor/body/gather.hpp>
 #include <tepor/field/functional.hpp>
+#include <tepor/field/impl/inner_place.hpp>
 
 namespace tepor {
 
@@ -36,7 +38,15 @@ inline Extreme climb(const Model& model, const Values& values, const double* T, 
     double shape[max_cell_nodes];
     double gradient[2 * max_cell_nodes];
     const Id* ids = model.cell(cell);
+    Workspace work;
+    if (kernel.exact) work = kernel.workspace();
     const auto value = [&](const double* xi) {
+        if (kernel.exact) {
+            ModelPlace at;
+            at.cell = cell;
+            at.xi[0] = xi[0];
+            return direction * inner_place(model, values, work, T, at, {}).temperature;
+        }
         kernel.shape(xi, shape, gradient);
         double sum = 0.0;
         for (int i = 0; i < n; ++i) sum += shape[i] * T[ids[i]];
@@ -92,6 +102,32 @@ inline double overshoot(int order) noexcept {
     return order == 1 ? 0.0 : 1.0;
 }
 
+/// Exact cells: the extreme lies at a node, or inside a cell through both of whose ends heat leaves (enters, for the coldest);
+/// where the source varies in a cell every course is possible.
+inline void climb_exact(const Model& model, const Values& values, const double* T, Id region, double direction,
+                        Extreme& best) {
+    Workspace work = model.kernels->workspace();
+    CellBlock& block = work.cells;
+    block.T = work.nodal_T;
+    Wanted wanted;
+    wanted.residual = true;
+    Id ids[block_width];
+    const RegionModel& in = model.regions[as_size(region)];
+    for (Id c = in.first_cell; c < in.last_cell; c += block_width) {
+        block.count = gather_cells(model, model.places_of(values), T, work.nodal_T, c, in.last_cell, block, ids);
+        if (const Fault fault = form_cells(model, values, work, {}, region, ids, wanted)) raise(fault);
+        for (int b = 0; b < block.count; ++b) {
+            bool possible = direction * block.residual[b] < 0.0 && direction * block.residual[block_width + b] < 0.0;
+            if (block.source)
+                for (int q = 1; q < model.kernels->points; ++q)
+                    possible = possible || block.source[q * block_width + b] != block.source[b];
+            if (!possible) continue;
+            const Extreme inside = climb(model, values, T, c + b, direction, nullptr);
+            if (exceeds(direction * inside.value, direction * best.value)) best = inside;
+        }
+    }
+}
+
 } // namespace detail
 
 TEPOR_INLINE Extreme extreme_in(const Model& model, const Values& values, const double* T, Id region,
@@ -127,6 +163,12 @@ TEPOR_INLINE Extreme extreme_in(const Model& model, const Values& values, const 
             best.value = T[model.cell(c)[i]];
             best.place = model.places_of(values)[model.cell(c)[i]];
         }
+    }
+    if (model.kernels->exact) {
+        for (std::size_t r = 0; r < model.regions.size(); ++r)
+            if (region < 0 || detail::as_id(r) == region)
+                detail::climb_exact(model, values, T, detail::as_id(r), direction, best);
+        return best;
     }
     if (model.kernels->order == 1) return best;
     for (Id c = first; c < last; ++c) {

@@ -3,6 +3,7 @@
 
 #include <tepor/base/text.hpp>
 #include <tepor/field/field.hpp>
+#include <tepor/field/impl/inner_place.hpp>
 
 namespace tepor {
 
@@ -24,6 +25,10 @@ TEPOR_INLINE Id Field::region_id(std::string_view name) const {
 
 TEPOR_INLINE double Field::at(Point place, std::string_view region) const {
     const ModelPlace found = locate(*model_, values_, place, region_id(region));
+    if (model_->kernels->exact) {
+        Workspace work = model_->kernels->workspace();
+        return detail::inner_place(*model_, values_, work, temperature_.data(), found, {time_, time_, 1.0}).temperature;
+    }
     double shape[detail::max_cell_nodes];
     (void)shapes_at(*model_, values_, found, shape, nullptr, nullptr);
     double sum = 0.0;
@@ -34,6 +39,14 @@ TEPOR_INLINE double Field::at(Point place, std::string_view region) const {
 
 TEPOR_INLINE Point Field::heat_flux(Point place, std::string_view region) const {
     const ModelPlace found = locate(*model_, values_, place, region_id(region));
+    if (model_->kernels->exact) {
+        Workspace work = model_->kernels->workspace();
+        const double flow =
+            detail::inner_place(*model_, values_, work, temperature_.data(), found, {time_, time_, 1.0}).flow;
+        double area = mesh().frame.factor(1);
+        for (int power = 0; power < mesh().frame.power(); ++power) area *= place.x;
+        return {area > 0.0 ? flow / area : 0.0, 0.0};
+    }
     double shape[detail::max_cell_nodes];
     double gx[detail::max_cell_nodes];
     double gy[detail::max_cell_nodes];

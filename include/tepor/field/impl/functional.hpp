@@ -8,6 +8,7 @@
 #include <tepor/body/split.hpp>
 #include <tepor/field/functional.hpp>
 #include <tepor/field/impl/edge_flux.hpp>
+#include <tepor/field/impl/inner_place.hpp>
 
 namespace tepor {
 
@@ -74,6 +75,10 @@ class QuantityCompiler {
     void at() {
         const Id in = quantity_.first().empty() ? -1 : region(quantity_.first());
         const ModelPlace place = locate(model_, values_, quantity_.place(), in);
+        if (model_.kernels->exact) {
+            out_.inner.push_back({place, 1.0});
+            return;
+        }
         double shape[max_cell_nodes];
         (void)shapes_at(model_, values_, place, shape, nullptr, nullptr);
         for (int i = 0; i < model_.kernels->nodes; ++i)
@@ -107,13 +112,34 @@ class QuantityCompiler {
         return total;
     }
 
+    [[nodiscard]] double volume_of(const RegionModel& r) const {
+        const CellKernels& kernel = *model_.kernels;
+        Workspace work = kernel.workspace();
+        work.cells.T = nullptr;
+        Id ids[block_width];
+        double total = 0.0;
+        for (Id c = r.first_cell; c < r.last_cell; c += block_width) {
+            work.cells.count =
+                gather_cells(model_, model_.places_of(values_), nullptr, nullptr, c, r.last_cell, work.cells, ids);
+            kernel.open(work.cells);
+            for (int q = 0; q < kernel.points; ++q)
+                for (int b = 0; b < work.cells.count; ++b) total += work.cells.weight[q * block_width + b];
+        }
+        return total;
+    }
+
     void keep_row(const std::vector<double>& row, double scale) {
         for (std::size_t u = 0; u < row.size(); ++u)
             if (row[u] != 0.0) out_.temperature.add(as_id(u), scale * row[u]);
     }
 
     void mean_in() {
-        const RegionModel& r = model_.regions[as_size(region(quantity_.first()))];
+        const Id id = region(quantity_.first());
+        const RegionModel& r = model_.regions[as_size(id)];
+        if (model_.kernels->exact) {
+            out_.contents.push_back({id, 1.0 / volume_of(r)});
+            return;
+        }
         std::vector<double> row(as_size(model_.unknowns), 0.0);
         const double total = integrate_cells(
             r.first_cell, r.last_cell, [](Point) { return 1.0; }, row);
@@ -385,6 +411,25 @@ inline double weigh(const Functional::Heat& heat, const Model& model, const Valu
     return pass.weighted;
 }
 
+/// Integral of T over a region as exact cells have it; with `row`, factor times its derivative is added there.
+inline double content_of(const Functional::Content& content, const Model& model, const Values& values, Workspace& work,
+                         const double* T, TimeSpan time, double* row) {
+    Restriction part;
+    part.regions.push_back(content.region);
+    std::vector<double> sums(model.regions.size());
+    std::vector<double> slope(row ? as_size(model.unknowns) : 0, 0.0);
+    Pass pass;
+    pass.T = T;
+    pass.time = time;
+    pass.only = &part;
+    pass.content = sums.data();
+    pass.content_slope = row ? slope.data() : nullptr;
+    assemble(model, values, work, pass);
+    if (pass.fault) raise(pass.fault);
+    for (std::size_t u = 0; u < slope.size(); ++u) row[u] += content.factor * slope[u];
+    return content.factor * sums[as_size(content.region)];
+}
+
 } // namespace detail
 
 TEPOR_INLINE Functional compile(const Model& model, const Values& values, const Quantity& quantity) {
@@ -410,6 +455,10 @@ TEPOR_INLINE double evaluate(const Functional& functional, const Model& model, c
         value += detail::weigh(heat, model, values, work, T, time, nullptr);
     for (const Functional::EdgeFlux& edge : functional.edges)
         value += edge.factor * detail::edge_flux(model, values, edge, T, time, nullptr);
+    for (const Functional::Inner& inner : functional.inner)
+        value += inner.factor * detail::inner_place(model, values, work, T, inner.place, time).temperature;
+    for (const Functional::Content& content : functional.contents)
+        value += detail::content_of(content, model, values, work, T, time, nullptr);
     return value;
 }
 
@@ -420,6 +469,10 @@ TEPOR_INLINE void temperature_slope(const Functional& functional, const Model& m
                                                 : extreme_in(model, values, T, functional.region, functional.direction);
         double shape[detail::max_cell_nodes];
         (void)shapes_at(model, values, at.at, shape, nullptr, nullptr);
+        if (model.kernels->exact) {
+            const detail::InnerPlace there = detail::inner_place(model, values, work, T, at.at, time);
+            for (int i = 0; i < 2; ++i) shape[i] = there.slope[i];
+        }
         for (int i = 0; i < model.kernels->nodes; ++i) row[model.cell(at.at.cell)[i]] += shape[i];
         return;
     }
@@ -428,6 +481,12 @@ TEPOR_INLINE void temperature_slope(const Functional& functional, const Model& m
     for (const Functional::Heat& heat : functional.heats) (void)detail::weigh(heat, model, values, work, T, time, row);
     for (const Functional::EdgeFlux& edge : functional.edges)
         (void)detail::edge_flux(model, values, edge, T, time, row);
+    for (const Functional::Inner& inner : functional.inner) {
+        const detail::InnerPlace there = detail::inner_place(model, values, work, T, inner.place, time);
+        for (int i = 0; i < 2; ++i) row[model.cell(inner.place.cell)[i]] += inner.factor * there.slope[i];
+    }
+    for (const Functional::Content& content : functional.contents)
+        (void)detail::content_of(content, model, values, work, T, time, row);
 }
 
 } // namespace tepor

@@ -108,6 +108,15 @@ inline void check_tables(const Model& model, const Values& values, Workspace& wo
         for (const Coefficient& k : region.k) add(k);
         for (const VolumeTerm& term : region.volume) add(term.amount);
         if (tables.empty()) continue;
+        if (kernel.exact) { // between the nodes it may be hotter or colder than at them
+            const auto r = static_cast<Id>(&region - model.regions.data());
+            for (const double direction : {1.0, -1.0}) {
+                const Extreme e = extreme_in(model, values, T, r, direction);
+                for (const Coefficient* table : tables)
+                    if (!table->covers(e.value)) refuse(*table, e.value, e.place, model.user_cell[as_size(e.at.cell)]);
+            }
+            continue;
+        }
         CellBlock& block = work.cells;
         block.T = work.nodal_T;
         for (Id c = region.first_cell; c < region.last_cell; c += block_width) {

@@ -1,0 +1,402 @@
+#pragma once
+// The resistance cell: its functions, loads and matrix.
+
+#include <algorithm>
+#include <cmath>
+#include <tepor/assembly/exact_kernels.hpp>
+#include <tepor/quadrature/gauss.hpp>
+
+namespace tepor {
+
+namespace detail {
+
+/// Legendre polynomials 0 .. n on [0,1] at x. DLMF 18.9.1.
+inline void legendre_values(int n, double x, double* p) noexcept {
+    const double t = 2.0 * x - 1.0;
+    p[0] = 1.0;
+    if (n > 0) p[1] = t;
+    for (int i = 1; i < n; ++i) p[i + 1] = ((2.0 * i + 1.0) * t * p[i] - i * p[i - 1]) / (i + 1.0);
+}
+
+/// sinh(a s) / sinh(a) for s in [0,1], for any a > 0.
+inline double sinh_ratio(double a, double s) noexcept {
+    return std::exp(-a * (1.0 - s)) * (std::expm1(-2.0 * a * s) / std::expm1(-2.0 * a));
+}
+
+} // namespace detail
+
+TEPOR_INLINE Kernels<ExactSegment>::Kernels(Frame frame, int extra_degree)
+    : power_(frame.power()), factor_(frame.factor(1)) {
+    dim = order = 1;
+    nodes = sides = 2;
+    side_nodes = side_points = 1;
+    exact = true;
+    points = std::min(24 + std::max(extra_degree, 0) / 2, most_points);
+    const Rule<1> rule = gauss_legendre(points);
+    const auto m = detail::as_size(points);
+    for (Index q = 0; q < rule.size(); ++q) {
+        place_.push_back(rule.point(q)[0]);
+        weight_.push_back(rule.weight(q));
+    }
+    // Lagrange functions of the points as Legendre sums: l_p = sum_n (2 n + 1) w_p P_n(x_p) P_n
+    std::vector<double> at_points(m * (m + 1));
+    for (std::size_t p = 0; p < m; ++p) detail::legendre_values(points, place_[p], &at_points[p * (m + 1)]);
+    running_.resize(m * m);
+    for (std::size_t q = 0; q < m; ++q) {
+        const double* here = &at_points[q * (m + 1)];
+        for (std::size_t p = 0; p < m; ++p) {
+            const double* there = &at_points[p * (m + 1)];
+            double sum = place_[q];
+            for (std::size_t n = 1; n < m; ++n) sum += 0.5 * (here[n + 1] - here[n - 1]) * there[n]; // DLMF 18.17.1
+            running_[q * m + p] = weight_[p] * sum;
+        }
+    }
+    for (std::size_t t = 0; t < 2; ++t)
+        for (std::size_t p = 0; p < m; ++p) {
+            const std::size_t n = m - 1 - t;
+            tail_[t].push_back((2.0 * detail::as_double(n) + 1.0) * weight_[p] * at_points[p * (m + 1) + n]);
+        }
+    if (power_ == 0) return;
+    moment_.assign(m * m, 0.0);
+    std::vector<double> legendre(m + 1);
+    for (std::size_t q = 0; q < m; ++q)
+        for (std::size_t j = 0; j < m; ++j) {
+            const double t = place_[j];
+            detail::legendre_values(points, place_[q] * t, legendre.data());
+            const double w = weight_[j] * (power_ == 1 ? t : t * t);
+            for (std::size_t p = 0; p < m; ++p) {
+                double lagrange = 0.0;
+                for (std::size_t n = 0; n < m; ++n)
+                    lagrange += (2.0 * detail::as_double(n) + 1.0) * at_points[p * (m + 1) + n] * legendre[n];
+                moment_[q * m + p] += w * weight_[p] * lagrange;
+            }
+        }
+}
+
+/// Integrals from the left end to every point.
+TEPOR_INLINE void Kernels<ExactSegment>::running(const double* density, double* integral) const noexcept {
+    for (int q = 0; q < points; ++q) {
+        const double* row = running_.data() + static_cast<Index>(q) * points;
+        double sum = 0.0;
+        for (int p = 0; p < points; ++p) sum += row[p] * density[p];
+        integral[q] = sum;
+    }
+}
+
+TEPOR_INLINE bool Kernels<ExactSegment>::resolved(const double* values) const noexcept {
+    double largest = 0.0;
+    double tail[2] = {0.0, 0.0};
+    for (int p = 0; p < points; ++p) {
+        largest = std::max(largest, std::abs(values[p]));
+        for (int t = 0; t < 2; ++t) tail[t] += tail_[t][detail::as_size(p)] * values[p];
+    }
+    return std::max(std::abs(tail[0]), std::abs(tail[1])) <= 3e-7 * largest;
+}
+
+TEPOR_INLINE void Kernels<ExactSegment>::open(CellBlock& block) const {
+    for (int c = 0; c < W; ++c) {
+        const double a = block.x[c];
+        const double b = block.x[W + c];
+        const double rise = block.T ? block.T[W + c] - block.T[c] : 0.0;
+        const bool radial = power_ > 0 && a > 0.0;
+        const double h = radial ? std::log1p((b - a) / a) : b - a;
+        for (int q = 0; q < points; ++q) {
+            const int at = q * W + c;
+            const double xi = place_[detail::as_size(q)];
+            const double r = radial ? a * std::exp(h * xi) : a + h * xi;
+            const double jacobian = radial ? h * r : h;
+            // share of the second node for k = 1, and its slope in xi
+            double share = xi;
+            double slope = 1.0;
+            if (radial && power_ == 2) {
+                share = std::expm1(-h * xi) / std::expm1(-h);
+                slope = -h * std::exp(-h * xi) / std::expm1(-h);
+            } else if (power_ > 0 && !radial) {
+                share = xi * xi;
+                slope = 2.0 * xi;
+            }
+            block.point_x[at] = r;
+            block.point_y[at] = 0.0;
+            block.weight[at] = weight_[detail::as_size(q)] * jacobian * measure(r);
+            block.gradient_x[2 * q * W + c] = -slope / jacobian;
+            block.gradient_x[(2 * q + 1) * W + c] = slope / jacobian;
+            if (block.T) block.point_T[at] = block.T[c] + share * rise;
+        }
+    }
+}
+
+/// The fin with a constant loss c T: functions sinh(m (b - x)) / sinh(m L) and sinh(m (x - a)) / sinh(m L), m^2 = c / k.
+TEPOR_INLINE void Kernels<ExactSegment>::shape_fin(const CellBlock& block, int c, Cell& cell) const noexcept {
+    const double length = block.x[W + c] - block.x[c];
+    const double k = cell.k[0];
+    const double m = std::sqrt(block.sink / k);
+    const double a = m * length;
+    cell.fin = true;
+    cell.decay = a;
+    cell.conductance = factor_ * k * m / std::sinh(a);
+    cell.loss = factor_ * k * m * std::tanh(0.5 * a);
+    cell.sink_weight = factor_ * std::tanh(0.5 * a) / m;
+    for (int q = 0; q < points; ++q) {
+        cell.phi[0][q] = detail::sinh_ratio(a, 1.0 - place_[detail::as_size(q)]);
+        cell.phi[1][q] = detail::sinh_ratio(a, place_[detail::as_size(q)]);
+    }
+}
+
+/// The cell around a solid centre. Its hat is the course of T for k given and a source of 1, P(r) / P(0) with
+/// P(r) = integral from r to b of s / ((n + 1) k), and its energy is the conductance; any hat would give the same nodal values.
+TEPOR_INLINE void Kernels<ExactSegment>::shape_centre(CellBlock& block, int c, Cell& cell) const {
+    const double b = block.x[W + c];
+    const double n = power_;
+    cell.centre = true;
+    double density[most_points];
+    double to_here[most_points];
+    double total = 0.0;
+    double energy = 0.0;
+    for (int q = 0; q < points; ++q) {
+        const double r = block.point_x[q * W + c];
+        density[q] = b * r / ((n + 1.0) * cell.k[q]);
+        total += weight_[detail::as_size(q)] * density[q];
+        energy += block.weight[q * W + c] * r * r / ((n + 1.0) * (n + 1.0) * cell.k[q]);
+    }
+    running(density, to_here);
+    for (int q = 0; q < points; ++q) {
+        cell.phi[0][q] = (total - to_here[q]) / total;
+        cell.phi[1][q] = to_here[q] / total;
+    }
+    cell.conductance = energy / (total * total);
+    for (int q = 0; q < points; ++q) density[q] = 1.0 / cell.k[q];
+    if (!resolved(density)) block.unresolved = c;
+}
+
+TEPOR_INLINE void Kernels<ExactSegment>::shape_cell(CellBlock& block, int c, Cell& cell) const {
+    const double a = block.x[c];
+    const double b = block.x[W + c];
+    const bool uniform = block.k_uniform || block.k_mean;
+    for (int q = 0; q < points; ++q) {
+        const int at = q * W + c;
+        cell.measure[q] = measure(block.point_x[at]);
+        cell.jacobian[q] = block.weight[at] / (weight_[detail::as_size(q)] * cell.measure[q]);
+        cell.k[q] = block.k_mean ? 1.0 : (block.k_uniform ? block.k[0][0] : block.k[0][at]);
+    }
+    if (block.sink > 0.0) return shape_fin(block, c, cell);
+    if (power_ > 0 && !(a > 0.0)) return shape_centre(block, c, cell);
+    if (uniform) {
+        const double k = cell.k[0];
+        const double h = power_ > 0 ? std::log1p((b - a) / a) : 0.0;
+        cell.conductance = factor_ * k * (power_ == 0 ? 1.0 / (b - a) : (power_ == 1 ? 1.0 / h : a * (b / (b - a))));
+        for (int q = 0; q < points; ++q) {
+            const double xi = place_[detail::as_size(q)];
+            cell.phi[1][q] = power_ == 2 ? std::expm1(-h * xi) / std::expm1(-h) : xi;
+            cell.phi[0][q] = 1.0 - cell.phi[1][q];
+        }
+        return;
+    }
+    double density[most_points];
+    double to_here[most_points];
+    double total = 0.0;
+    for (int q = 0; q < points; ++q) {
+        density[q] = cell.jacobian[q] / (cell.k[q] * cell.measure[q]);
+        total += weight_[detail::as_size(q)] * density[q];
+    }
+    if (!resolved(density)) block.unresolved = c;
+    running(density, to_here);
+    cell.conductance = 1.0 / total;
+    for (int q = 0; q < points; ++q) {
+        cell.phi[0][q] = (total - to_here[q]) / total;
+        cell.phi[1][q] = to_here[q] / total;
+    }
+}
+
+/// The source at the points, and whether they follow it; one that depends on temperature is integrated as it comes.
+TEPOR_INLINE void Kernels<ExactSegment>::source_of(CellBlock& block, int c, double* source) const {
+    double density[most_points];
+    for (int q = 0; q < points; ++q) {
+        source[q] = block.source[q * W + c];
+        density[q] = source[q] * block.weight[q * W + c] / weight_[detail::as_size(q)];
+    }
+    if (!block.source_slope && block.unresolved < 0 && !resolved(density)) {
+        block.unresolved = c;
+        block.unresolved_source = true;
+    }
+}
+
+/// T(b) - T at the points and, last, at the centre, that the source makes: integral from r to b of F / (k w) with F / w = r times
+/// the moment of the source, which loses no digits at small r.
+TEPOR_INLINE void Kernels<ExactSegment>::centre_rise(const Cell& cell, const double* source,
+                                                     double* rise) const noexcept {
+    double density[most_points];
+    double total = 0.0;
+    for (int q = 0; q < points; ++q) {
+        const double* row = moment_.data() + static_cast<Index>(q) * points;
+        double sum = 0.0;
+        for (int p = 0; p < points; ++p) sum += row[p] * source[p];
+        const double r = cell.jacobian[q] * place_[detail::as_size(q)]; // the jacobian is b
+        density[q] = cell.jacobian[q] * r * sum / cell.k[q];
+        total += weight_[detail::as_size(q)] * density[q];
+    }
+    running(density, rise);
+    for (int q = 0; q < points; ++q) rise[q] = total - rise[q];
+    rise[points] = total;
+}
+
+TEPOR_INLINE void Kernels<ExactSegment>::loads(const CellBlock& block, int c, const Cell& cell, const double* source,
+                                               double* load) const noexcept {
+    load[0] = load[1] = 0.0;
+    if (cell.centre && !block.source_slope) {
+        double rise[most_points + 1];
+        centre_rise(cell, source, rise);
+        double total = 0.0;
+        for (int q = 0; q < points; ++q) total += block.weight[q * W + c] * source[q];
+        load[0] = cell.conductance * rise[points];
+        load[1] = total - load[0];
+        return;
+    }
+    // a steep fin does not see its points: what is constant in the source is integrated in closed form
+    const double constant = cell.fin ? source[0] : 0.0;
+    for (int q = 0; q < points; ++q)
+        for (int i = 0; i < 2; ++i) load[i] += block.weight[q * W + c] * (source[q] - constant) * cell.phi[i][q];
+    for (int i = 0; i < 2; ++i) load[i] += constant * cell.sink_weight;
+}
+
+TEPOR_INLINE void Kernels<ExactSegment>::form(CellBlock& block, Wanted wanted) const {
+    block.unresolved = -1;
+    block.unresolved_source = false;
+    for (int c = 0; c < block.count; ++c) {
+        Cell cell;
+        shape_cell(block, c, cell);
+        double source[most_points];
+        double load[2] = {0.0, 0.0};
+        if (block.source) {
+            source_of(block, c, source);
+            if (cell.fin && cell.decay > 20.0 && block.unresolved < 0)
+                for (int q = 1; q < points; ++q)
+                    if (source[q] != source[0] && !resolved(cell.phi[1])) {
+                        block.unresolved = c;
+                        block.unresolved_source = true;
+                        break;
+                    }
+            if (wanted.residual) loads(block, c, cell, source, load);
+        }
+        const double g = cell.conductance * (block.k_mean ? block.k_mean[c] : 1.0);
+        if (wanted.residual) {
+            const double flow = g * (block.T[c] - block.T[W + c]);
+            block.residual[c] = flow + cell.loss * block.T[c] + load[0];
+            block.residual[W + c] = -flow + cell.loss * block.T[W + c] + load[1];
+        }
+        if (wanted.matrix) {
+            double m[3] = {g + cell.loss, -g, g + cell.loss};
+            if (block.source && block.source_slope)
+                for (int q = 0; q < points; ++q) {
+                    const double s = block.weight[q * W + c] * block.source_slope[q * W + c];
+                    m[0] += s * cell.phi[0][q] * cell.phi[0][q];
+                    m[1] += s * cell.phi[1][q] * cell.phi[0][q];
+                    m[2] += s * cell.phi[1][q] * cell.phi[1][q];
+                }
+            for (int pair = 0; pair < 3; ++pair) block.matrix[pair * W + c] = m[pair];
+        }
+        if (wanted.slope)
+            for (int j = 0; j < 2; ++j) {
+                // d(k_mean (T0 - T1)) / dT_j is +- k at T_j; the symmetric part has k_mean there
+                const double by = block.k_mean ? cell.conductance * (block.k_end[j][c] - block.k_mean[c]) : 0.0;
+                block.slope[j * W + c] = j == 0 ? by : -by;
+                block.slope[(2 + j) * W + c] = j == 0 ? -by : by;
+            }
+    }
+}
+
+TEPOR_INLINE void Kernels<ExactSegment>::form_capacity(CellBlock& block, const double* amount, bool lumped) const {
+    const double sink = block.sink;
+    block.sink = 0.0; // functions that sum to 1, so that no heat is lost between them
+    block.unresolved = -1;
+    for (int c = 0; c < block.count; ++c) {
+        Cell cell;
+        shape_cell(block, c, cell);
+        double m[3] = {0.0, 0.0, 0.0};
+        for (int q = 0; q < points; ++q) {
+            const double s = block.weight[q * W + c] * amount[q * W + c];
+            const double own[2] = {lumped ? 1.0 : cell.phi[0][q], lumped ? 1.0 : cell.phi[1][q]};
+            m[0] += s * cell.phi[0][q] * own[0];
+            m[1] += lumped ? 0.0 : s * cell.phi[0][q] * cell.phi[1][q];
+            m[2] += s * cell.phi[1][q] * own[1];
+        }
+        for (int pair = 0; pair < 3; ++pair) block.matrix[pair * W + c] = m[pair];
+    }
+    block.sink = sink;
+}
+
+TEPOR_INLINE void Kernels<ExactSegment>::profile(CellBlock& block, double* shape) const {
+    block.unresolved = -1;
+    for (int c = 0; c < block.count; ++c) {
+        Cell cell;
+        shape_cell(block, c, cell);
+        if (shape)
+            for (int q = 0; q < points; ++q)
+                for (int i = 0; i < 2; ++i) shape[(q * 2 + i) * W + c] = cell.phi[i][q];
+        if (!block.T) continue;
+        const double first = block.k_mean ? 0.0 : block.T[c];
+        const double second = block.k_mean ? block.k_mean[c] * (block.T[W + c] - block.T[c]) : block.T[W + c];
+        double T[most_points];
+        for (int q = 0; q < points; ++q) T[q] = cell.phi[0][q] * first + cell.phi[1][q] * second;
+        if (block.source) {
+            double source[most_points];
+            source_of(block, c, source);
+            if (cell.centre && !block.source_slope) {
+                // the centre node has its own share of the source already: take the course from the outer node
+                double rise[most_points + 1];
+                centre_rise(cell, source, rise);
+                for (int q = 0; q < points; ++q)
+                    T[q] = second - rise[q] + cell.phi[0][q] * (first - second + rise[points]);
+            } else if (!cell.centre) {
+                // T = - integral of s w G, with G(x, r) = phi_1(min) phi_0(max) times a constant
+                const double constant = cell.fin ? source[0] : 0.0;
+                const double scale =
+                    cell.fin ? std::sinh(cell.decay) * std::tanh(0.5 * cell.decay) / cell.loss : 1.0 / cell.conductance;
+                double density[most_points];
+                double before[most_points];
+                double after[most_points];
+                double total = 0.0;
+                bool any = false;
+                for (int q = 0; q < points; ++q) {
+                    const double s = (source[q] - constant) * cell.jacobian[q] * cell.measure[q];
+                    any = any || s != 0.0;
+                    density[q] = s * cell.phi[1][q];
+                    after[q] = s * cell.phi[0][q];
+                    total += weight_[detail::as_size(q)] * after[q];
+                }
+                if (any) {
+                    running(density, before);
+                    for (int q = 0; q < points; ++q) density[q] = after[q];
+                    running(density, after);
+                    for (int q = 0; q < points; ++q)
+                        T[q] -= scale * (cell.phi[0][q] * before[q] + cell.phi[1][q] * (total - after[q]));
+                }
+                if (cell.fin)
+                    for (int q = 0; q < points; ++q) {
+                        // 1 - phi_0 - phi_1 without cancellation
+                        const double left = cell.decay * place_[detail::as_size(q)];
+                        const double apart = std::expm1(-left) * std::expm1(left - cell.decay);
+                        T[q] -= constant / block.sink * apart / (1.0 + std::exp(-cell.decay));
+                    }
+            }
+        }
+        for (int q = 0; q < points; ++q) block.point_T[q * W + c] = T[q];
+    }
+}
+
+TEPOR_INLINE void Kernels<ExactSegment>::open_side(SideBlock& block, bool /*lumped*/) const {
+    for (int c = 0; c < W; ++c) {
+        block.point_x[c] = block.x[c];
+        block.point_y[c] = 0.0;
+        block.weight[c] = measure(block.x[c]);
+        if (block.T) block.point_T[c] = block.T[c];
+    }
+}
+
+TEPOR_INLINE void Kernels<ExactSegment>::form_side(SideBlock& block, Wanted wanted, bool /*lumped*/) const {
+    for (int c = 0; c < W; ++c) {
+        if (wanted.residual) block.residual[c] = block.weight[c] * block.flux[c];
+        if (wanted.matrix) block.matrix[c] = block.flux_slope ? block.weight[c] * block.flux_slope[c] : 0.0;
+    }
+}
+
+} // namespace tepor
