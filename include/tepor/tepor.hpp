@@ -112,6 +112,7 @@
 #include <tepor/flux/weak_form.hpp>
 
 #include <tepor/field/balance.hpp>
+#include <tepor/field/error_bound.hpp>
 #include <tepor/field/field.hpp>
 #include <tepor/field/functional.hpp>
 #include <tepor/field/functional_slope.hpp>

@@ -8,6 +8,7 @@
 #include <tepor/body/body.hpp>
 #include <tepor/describe/quantity.hpp>
 #include <tepor/field/balance.hpp>
+#include <tepor/field/error_bound.hpp>
 #include <tepor/field/functional.hpp>
 #include <vector>
 
@@ -63,6 +64,11 @@ class Field {
 
     /// Heat balance, every face and region listed.
     [[nodiscard]] TEPOR_INLINE Balance balance() const;
+
+    /// Guaranteed bound of the error of this field in the energy norm, in total and per cell (linear steady bodies on triangles of
+    /// order 1 and 2 and segments).
+    /// @throws Error not_certifiable, naming the term for which there is none
+    [[nodiscard]] TEPOR_INLINE ErrorBound error_bound() const;
 
     /// Temperatures at the mesh's nodes in the user's numbering (at a contact the first region's).
     [[nodiscard]] TEPOR_INLINE std::vector<double> node_temperatures() const;
@@ -122,5 +128,6 @@ class Field {
 
 #ifndef TEPOR_COMPILED
 #include <tepor/field/impl/balance.hpp>
+#include <tepor/field/impl/error_bound.hpp>
 #include <tepor/field/impl/field.hpp>
 #endif

@@ -21,6 +21,9 @@ struct Summed {
 /// and 2, r-z of order 1, segments. O(cells).
 Summed weak_form(const FluxProblem& problem, const double* temperature, const double* z);
 
+/// Integral of k |grad T|^2 over the cells, per unit depth, radian or steradian.
+double conduction_energy(const FluxProblem& problem, const double* temperature);
+
 } // namespace tepor
 
 #ifndef TEPOR_COMPILED

@@ -48,6 +48,7 @@ class ProblemReader {
             refuse("mesh", "because its triangles are of order 3 (orders 1 and 2 have one)");
         if (mesh_.dim == 2 && mesh_.frame.power() > 0 && mesh_.order > 1)
             refuse("mesh", "because in r-z only triangles of order 1 have one");
+        if (model_.kernels->exact) refuse("mesh", "because exact segments have no error at the nodes to bound");
         if (model_.kernels->nodes != mesh_.nodes_per_cell) refuse("mesh", "because of its own element type");
     }
 

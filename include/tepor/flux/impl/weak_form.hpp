@@ -128,4 +128,22 @@ TEPOR_INLINE Summed weak_form(const FluxProblem& problem, const double* temperat
     return sum;
 }
 
+TEPOR_INLINE double conduction_energy(const FluxProblem& problem, const double* temperature) {
+    using namespace detail;
+    double sum = 0.0;
+    for (Index c = 0; c < problem.mesh->cell_count(); ++c) {
+        if (problem.mesh->dim == 2) {
+            sum += conduction_product(problem, c, temperature, temperature);
+            continue;
+        }
+        const LineCell cell(problem, temperature, c);
+        cell.points([&](double w, double x, double rn) {
+            double value = 0.0, slope = 0.0;
+            cell.temperature(x, value, slope);
+            sum += w * rn * cell.k * slope * slope;
+        });
+    }
+    return sum;
+}
+
 } // namespace tepor
