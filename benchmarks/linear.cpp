@@ -244,6 +244,8 @@ void run(Table& table, const char* name, const test::Square& square) {
         table.row("Cholesky, plan", plan);
         table.row("Cholesky, factor", factor);
         table.row("Cholesky, one solve", solve);
+        std::vector<double> many(4 * b.size(), 1.0);
+        table.row("Cholesky, four solves at once", least([&] { solver.solve(many.data(), Index{4}); }));
         table.row("Cholesky, all", plan + factor + solve, std::to_string(solver.factor_entries()) + " values");
     }
 #if defined(TEPOR_HAVE_CHOLMOD)

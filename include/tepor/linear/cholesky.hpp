@@ -31,10 +31,9 @@ class SparseCholesky {
     /// b := A^-1 b, in place, n values. Allocates nothing. Uses work space of this object: one thread at a time.
     void solve(double* b) const noexcept { solve(b, work_.data()); }
 
-    /// The same for `count` right-hand sides, n apart.
-    void solve(double* b, Index count) const noexcept {
-        for (Index k = 0; k < count; ++k) solve(b + k * size_, work_.data());
-    }
+    /// The same for `count` right-hand sides, n apart. They go through the factor four at a time, which costs little more
+    /// than one; the bits differ by rounding from those of one at a time.
+    TEPOR_INLINE void solve(double* b, Index count) const noexcept;
 
     /// The same with the caller's work space of work_size() values: safe from several threads.
     TEPOR_INLINE void solve(double* b, double* work) const noexcept;
@@ -47,13 +46,15 @@ class SparseCholesky {
     [[nodiscard]] Index factor_entries() const noexcept { return tree_.panel_size; }
 
   private:
+    TEPOR_INLINE void solve_four(double* b) const noexcept;
+
     Index size_ = 0;
     Index singular_row_ = -1;
     detail::SupernodeTree tree_;
     detail::FrontKernels kernels_;
     detail::Buffer<double> panel_;
-    detail::Buffer<double> stack_[2]; // updates waiting for their parents, by parity of depth
-    mutable std::vector<double> work_;
+    detail::Buffer<double> stack_[2];     // updates waiting for their parents, by parity of depth
+    mutable detail::Buffer<double> work_; // for four right-hand sides
 };
 
 } // namespace tepor

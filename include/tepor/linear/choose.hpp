@@ -16,14 +16,15 @@ enum class SolverKind : int {
 /// The kind expected to be fastest for `solves` right-hand sides with one matrix.
 ///
 /// @param dim  1 or 2: in 1D banded elimination is best at every size
-/// One solve pays for multigrid from about 20,000 unknowns; many solves share one factor, which stays the better up to
-/// about 200,000, where its solves become as dear as multigrid's and its memory several times as large.
+/// Measured on general meshes of linear triangles (benchmarks/linear.cpp), all times in units of one multigrid solve of the
+/// same size: building a factor 2.0, solving with it 0.16, building multigrid 0.8. So one solve pays for multigrid from
+/// about 20,000 unknowns, and from the third on a factor is ahead. Its memory grows faster than the mesh: 45 MB at 1e5
+/// unknowns, 0.3 GB at 5e5; beyond that multigrid is chosen whatever the number of solves.
 constexpr SolverKind choose_solver(Index unknowns, int dim, Index solves) noexcept {
     if (dim == 1) return SolverKind::banded;
     if (unknowns < 20000) return SolverKind::cholesky;
-    if (unknowns > 200000) return SolverKind::multigrid;
-    // Between: a factor costs about as much as 3 (at 2e4) to 6 (at 2e5) multigrid solves.
-    return solves >= 6 ? SolverKind::cholesky : SolverKind::multigrid;
+    const Index worthwhile = unknowns <= 200000 ? 3 : 20;
+    return solves >= worthwhile && unknowns <= 500000 ? SolverKind::cholesky : SolverKind::multigrid;
 }
 
 } // namespace tepor

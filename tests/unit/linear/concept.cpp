@@ -48,5 +48,7 @@ TEST_CASE("bodies in 1D get banded elimination, one large solve multigrid, many 
     CHECK(choose_solver(2000, 2, 1) == SolverKind::cholesky);
     CHECK(choose_solver(100000, 2, 1) == SolverKind::multigrid);
     CHECK(choose_solver(100000, 2, 1000) == SolverKind::cholesky);
+    CHECK(choose_solver(300000, 2, 4) == SolverKind::multigrid);
+    CHECK(choose_solver(300000, 2, 1000) == SolverKind::cholesky);
     CHECK(choose_solver(1000000, 2, 1000) == SolverKind::multigrid);
 }

@@ -277,6 +277,89 @@ TEPOR_FRONT_TARGET inline void backward_front(const double* panel, Index pivots,
     }
 }
 
+/// forward_front() for four right-hand sides side by side: row i of x and sum are their four values.
+TEPOR_FRONT_TARGET inline void forward_front_four(const double* panel, Index pivots, Index pad, Index top, Index stride,
+                                                  double* x, double* sum) noexcept {
+    const Index rows = stride - top;
+    for (Index i = 0; i < 4 * rows; ++i) sum[i] = 0.0;
+    const Index odd = pivots % 4;
+    for (Index j = 0; j < odd; ++j) {
+        const double* column = panel + j * stride + pad;
+        const Four xj = TEPOR_LOAD(x + 4 * j) * column[j];
+        TEPOR_STORE(x + 4 * j) = xj;
+        for (Index i = j + 1; i < pivots; ++i) TEPOR_STORE(x + 4 * i) -= xj * column[i];
+        const double* low = panel + j * stride + top;
+        for (Index i = 0; i < rows; ++i) TEPOR_STORE(sum + 4 * i) += xj * low[i];
+    }
+    for (Index j = odd; j < pivots; j += 4) {
+        const double* c0 = panel + j * stride + pad;
+        const double* c1 = c0 + stride;
+        const double* c2 = c1 + stride;
+        const double* c3 = c2 + stride;
+        const Four x0 = TEPOR_LOAD(x + 4 * j) * c0[j];
+        const Four x1 = (TEPOR_LOAD(x + 4 * j + 4) - x0 * c0[j + 1]) * c1[j + 1];
+        const Four x2 = (TEPOR_LOAD(x + 4 * j + 8) - x0 * c0[j + 2] - x1 * c1[j + 2]) * c2[j + 2];
+        const Four x3 = (TEPOR_LOAD(x + 4 * j + 12) - x0 * c0[j + 3] - x1 * c1[j + 3] - x2 * c2[j + 3]) * c3[j + 3];
+        TEPOR_STORE(x + 4 * j) = x0;
+        TEPOR_STORE(x + 4 * j + 4) = x1;
+        TEPOR_STORE(x + 4 * j + 8) = x2;
+        TEPOR_STORE(x + 4 * j + 12) = x3;
+        for (Index i = j + 4; i < pivots; ++i) {
+            TEPOR_STORE(x + 4 * i) -= x0 * c0[i] + x1 * c1[i] + x2 * c2[i] + x3 * c3[i];
+        }
+        const Index shift = top - pad;
+        for (Index i = 0; i < rows; ++i) {
+            const Index k = i + shift;
+            TEPOR_STORE(sum + 4 * i) += x0 * c0[k] + x1 * c1[k] + x2 * c2[k] + x3 * c3[k];
+        }
+    }
+}
+
+/// backward_front() for four right-hand sides side by side.
+TEPOR_FRONT_TARGET inline void backward_front_four(const double* panel, Index pivots, Index pad, Index top,
+                                                   Index stride, double* x, const double* y) noexcept {
+    const Index rows = stride - top;
+    const Index shift = top - pad;
+    const Index odd = pivots % 4;
+    for (Index j = pivots - 4; j >= odd; j -= 4) {
+        const double* c0 = panel + j * stride + pad;
+        const double* c1 = c0 + stride;
+        const double* c2 = c1 + stride;
+        const double* c3 = c2 + stride;
+        Four s0 = TEPOR_LOAD(x + 4 * j), s1 = TEPOR_LOAD(x + 4 * j + 4), s2 = TEPOR_LOAD(x + 4 * j + 8),
+             s3 = TEPOR_LOAD(x + 4 * j + 12);
+        for (Index i = j + 4; i < pivots; ++i) {
+            const Four v = TEPOR_LOAD(x + 4 * i);
+            s0 -= v * c0[i];
+            s1 -= v * c1[i];
+            s2 -= v * c2[i];
+            s3 -= v * c3[i];
+        }
+        for (Index i = 0; i < rows; ++i) {
+            const Four v = TEPOR_LOAD(y + 4 * i);
+            s0 -= v * c0[shift + i];
+            s1 -= v * c1[shift + i];
+            s2 -= v * c2[shift + i];
+            s3 -= v * c3[shift + i];
+        }
+        s3 = s3 * c3[j + 3];
+        s2 = (s2 - s3 * c2[j + 3]) * c2[j + 2];
+        s1 = (s1 - s3 * c1[j + 3] - s2 * c1[j + 2]) * c1[j + 1];
+        s0 = (s0 - s3 * c0[j + 3] - s2 * c0[j + 2] - s1 * c0[j + 1]) * c0[j];
+        TEPOR_STORE(x + 4 * j) = s0;
+        TEPOR_STORE(x + 4 * j + 4) = s1;
+        TEPOR_STORE(x + 4 * j + 8) = s2;
+        TEPOR_STORE(x + 4 * j + 12) = s3;
+    }
+    for (Index j = odd - 1; j >= 0; --j) {
+        const double* column = panel + j * stride + pad;
+        Four s = TEPOR_LOAD(x + 4 * j);
+        for (Index i = j + 1; i < pivots; ++i) s -= TEPOR_LOAD(x + 4 * i) * column[i];
+        for (Index i = 0; i < rows; ++i) s -= TEPOR_LOAD(y + 4 * i) * column[shift + i];
+        TEPOR_STORE(x + 4 * j) = s * column[j];
+    }
+}
+
 #undef TEPOR_LOAD
 #undef TEPOR_STORE
 

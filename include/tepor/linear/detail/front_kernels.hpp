@@ -14,6 +14,8 @@ struct FrontKernels {
                     double* sum) noexcept = nullptr;
     void (*backward)(const double* panel, Index pivots, Index pad, Index top, Index stride, double* x,
                      const double* y) noexcept = nullptr;
+    decltype(forward) forward_four = nullptr;
+    decltype(backward) backward_four = nullptr;
 };
 
 } // namespace tepor::detail

@@ -19,7 +19,7 @@ TEPOR_INLINE void SparseCholesky::analyze(const SparseMatrix& pattern, Index n, 
     tree_ = detail::supernode_tree(pattern, graph, detail::elimination_tree(graph, order));
     panel_.reset(tree_.panel_size);
     for (int side = 0; side < 2; ++side) stack_[side].reset(tree_.stack_size[side]);
-    work_.resize(detail::as_size(work_size()));
+    work_.reset(4 * work_size());
 }
 
 TEPOR_INLINE bool SparseCholesky::factor(const SparseMatrix& matrix) {
@@ -87,6 +87,44 @@ TEPOR_INLINE void SparseCholesky::solve(double* b, double* work) const noexcept 
         kernels_.backward(panel, node->pivots, node->pad(), node->top(), node->stride(), x + node->first, part);
     }
     for (Index k = 0; k < size_; ++k) b[order[k]] = x[k];
+}
+
+TEPOR_INLINE void SparseCholesky::solve(double* b, Index count) const noexcept {
+    Index k = 0;
+    for (; k + 4 <= count; k += 4) solve_four(b + k * size_);
+    for (; k < count; ++k) solve(b + k * size_, work_.data());
+}
+
+TEPOR_INLINE void SparseCholesky::solve_four(double* b) const noexcept {
+    double* x = work_.data(); // by position, four values each
+    double* part = x + 4 * size_;
+    const Id* order = tree_.order.data();
+    for (Index k = 0; k < size_; ++k) {
+        for (Index c = 0; c < 4; ++c) x[4 * k + c] = b[c * size_ + order[k]];
+    }
+    for (const detail::Supernode& node : tree_.node) {
+        const double* panel = panel_.data() + node.panel;
+        kernels_.forward_four(panel, node.pivots, node.pad(), node.top(), node.stride(), x + 4 * node.first, part);
+        const Id* row = tree_.row.data() + node.rows;
+        for (Index i = 0; i < node.below; ++i) {
+            double* to = x + 4 * static_cast<Index>(row[i]);
+            for (Index c = 0; c < 4; ++c) to[c] -= part[4 * i + c];
+        }
+    }
+    for (auto node = tree_.node.rbegin(); node != tree_.node.rend(); ++node) {
+        const double* panel = panel_.data() + node->panel;
+        const Id* row = tree_.row.data() + node->rows;
+        for (Index i = 0; i < node->below; ++i) {
+            const double* from = x + 4 * static_cast<Index>(row[i]);
+            for (Index c = 0; c < 4; ++c) part[4 * i + c] = from[c];
+        }
+        std::fill(part + 4 * node->below, part + 4 * node->update_stride(), 0.0);
+        kernels_.backward_four(panel, node->pivots, node->pad(), node->top(), node->stride(), x + 4 * node->first,
+                               part);
+    }
+    for (Index k = 0; k < size_; ++k) {
+        for (Index c = 0; c < 4; ++c) b[c * size_ + order[k]] = x[4 * k + c];
+    }
 }
 
 } // namespace tepor

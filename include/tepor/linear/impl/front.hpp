@@ -59,10 +59,12 @@ namespace tepor::detail {
 /// The best kernels the processor can run. Bits of a result are the same on every run of one machine; between machines
 /// with and without fused multiply-add they differ by rounding.
 inline FrontKernels front_kernels() noexcept {
-    FrontKernels kernels{&plain::eliminate_front, &plain::forward_front, &plain::backward_front};
+    FrontKernels kernels{&plain::eliminate_front, &plain::forward_front, &plain::backward_front,
+                         &plain::forward_front_four, &plain::backward_front_four};
 #if defined(__GNUC__) && defined(__x86_64__)
     if (__builtin_cpu_supports("avx2") && __builtin_cpu_supports("fma")) {
-        kernels = {&wide::eliminate_front, &wide::forward_front, &wide::backward_front};
+        kernels = {&wide::eliminate_front, &wide::forward_front, &wide::backward_front, &wide::forward_front_four,
+                   &wide::backward_front_four};
     }
 #endif
     return kernels;

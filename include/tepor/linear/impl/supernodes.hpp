@@ -14,7 +14,7 @@ namespace supernodes {
 /// Time of one front in arbitrary units: the call, moving the update twice, the elimination. Fitted to measurements.
 inline double cost(Index pivots, Index below) noexcept {
     const double k = as_double((pivots + 3) / 4 * 4), r = as_double((below + 3) / 4 * 4);
-    return 600.0 + 12.0 * (k + r) + 1.3 * r * r + 2.0 * k * (k + r) + 0.20 * k * (k * k / 3.0 + k * r + r * r);
+    return 300.0 + 12.0 * (k + r) + 1.3 * r * r + 4.0 * k * (k + r) + 0.20 * k * (k * k / 3.0 + k * r + r * r);
 }
 
 /// Groups of columns: group[position] = representative, merged upwards while that lowers the cost.
