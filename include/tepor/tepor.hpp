@@ -121,6 +121,7 @@
 #include <tepor/solve/steady.hpp>
 
 #include <tepor/answers/bracket.hpp>
+#include <tepor/answers/estimate.hpp>
 #include <tepor/answers/fit.hpp>
 #include <tepor/answers/gradient.hpp>
 #include <tepor/answers/linear_quantity.hpp>
