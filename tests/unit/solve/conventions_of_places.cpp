@@ -62,6 +62,16 @@ TEST_CASE_TEMPLATE("differing temperatures at a shared node: it takes the mean, 
     CHECK(balance.balanced());
 }
 
+TEST_CASE("temperatures that meet at a corner but for rounding are one temperature there") {
+    Body body = plate<Quadrilateral<2>>(0.2, 0.1, 0.02);
+    body.on("left", FixedTemperature{100.0});
+    body.on("bottom",
+            FixedTemperature{of_place([](const Point& p) { return 100.0 / 3.0 * (3.0 - 6.0 * p.x) + 1e-11; })});
+    const Field field = steady(body);
+    CHECK(std::isfinite(field[heat_out_through("left")]));
+    CHECK(!face_of(field.balance(), "bottom").unbounded);
+}
+
 TEST_CASE("two temperatures on one cell side are refused") {
     Tiles drawing;
     drawing.add("plate", {0.0, 0.0}, {0.2, 0.1}).face("part", {0.0, 0.1}, {0.1, 0.1});
