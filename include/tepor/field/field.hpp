@@ -55,6 +55,9 @@ class Field {
     }
     [[nodiscard]] TEPOR_INLINE Point heat_flux(Point place, std::string_view region = {}) const;
 
+    /// Heat flux vector in the middle of a cell of the mesh [W/m2], user's numbering.
+    [[nodiscard]] TEPOR_INLINE Point cell_heat_flux(Index cell) const;
+
     /// Hottest and coldest place of the whole body.
     [[nodiscard]] TEPOR_INLINE Spotted hottest() const;
     [[nodiscard]] TEPOR_INLINE Spotted coldest() const;
@@ -104,6 +107,7 @@ class Field {
     void keep(const std::shared_ptr<Body::Store>& store) noexcept { store_ = store; }
 
   private:
+    [[nodiscard]] TEPOR_INLINE Point flux_at(const ModelPlace& found) const;
     [[nodiscard]] TEPOR_INLINE Id region_id(std::string_view name) const;
 
     std::shared_ptr<const Model> model_;

@@ -38,13 +38,27 @@ TEPOR_INLINE double Field::at(Point place, std::string_view region) const {
 }
 
 TEPOR_INLINE Point Field::heat_flux(Point place, std::string_view region) const {
-    const ModelPlace found = locate(*model_, values_, place, region_id(region));
+    return flux_at(locate(*model_, values_, place, region_id(region)));
+}
+
+TEPOR_INLINE Point Field::cell_heat_flux(Index cell) const {
+    ModelPlace middle;
+    middle.cell = model_->model_cell[detail::as_size(cell)];
+    const bool triangle = mesh().shape == CellShape::triangle;
+    middle.xi[0] = triangle ? 1.0 / 3.0 : 0.5;
+    middle.xi[1] = mesh().dim == 1 ? 0.0 : middle.xi[0];
+    return flux_at(middle);
+}
+
+TEPOR_INLINE Point Field::flux_at(const ModelPlace& found) const {
     if (model_->kernels->exact) {
         Workspace work = model_->kernels->workspace();
         const double flow =
             detail::inner_place(*model_, values_, work, temperature_.data(), found, {time_, time_, 1.0}).flow;
+        double shape[detail::max_cell_nodes];
+        const double r = shapes_at(*model_, values_, found, shape, nullptr, nullptr).x;
         double area = mesh().frame.factor(1);
-        for (int power = 0; power < mesh().frame.power(); ++power) area *= place.x;
+        for (int power = 0; power < mesh().frame.power(); ++power) area *= r;
         return {area > 0.0 ? flow / area : 0.0, 0.0};
     }
     double shape[detail::max_cell_nodes];
