@@ -85,6 +85,7 @@
 #include <tepor/body/assemble.hpp>
 #include <tepor/body/body.hpp>
 #include <tepor/body/coefficient.hpp>
+#include <tepor/body/enthalpy.hpp>
 #include <tepor/body/gather.hpp>
 #include <tepor/body/model.hpp>
 #include <tepor/body/pattern.hpp>
@@ -117,8 +118,16 @@
 #include <tepor/field/functional.hpp>
 #include <tepor/field/functional_slope.hpp>
 
+#include <tepor/solve/adaptive.hpp>
+#include <tepor/solve/capacity.hpp>
 #include <tepor/solve/engine.hpp>
+#include <tepor/solve/initial.hpp>
+#include <tepor/solve/loads.hpp>
+#include <tepor/solve/march.hpp>
+#include <tepor/solve/march_handles.hpp>
 #include <tepor/solve/steady.hpp>
+#include <tepor/solve/step.hpp>
+#include <tepor/solve/theta.hpp>
 
 #include <tepor/answers/bracket.hpp>
 #include <tepor/answers/estimate.hpp>

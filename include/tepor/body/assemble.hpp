@@ -41,6 +41,11 @@ struct Pass {
     double weighted = 0.0;
     double* transposed = nullptr; ///< all unknowns, added to; may be null
 
+    /// For load vectors of inputs (linear bodies, T = 0): of the loads (sources, fluxes, outside temperatures, local heat) only
+    /// the listed ones count, and with `unit_loads` they count as 1 whatever their value. Null: all loads as they are.
+    const std::vector<const Coefficient*>* loads = nullptr;
+    bool unit_loads = false;
+
     double* residual =
         nullptr; ///< all unknowns, set (not added to); null: not wanted. Heat into the body that T would need [W]
     SparseMatrix* matrix = nullptr;  ///< lower (and upper when the model has a slope) set; null: not wanted

@@ -11,11 +11,13 @@
 namespace tepor {
 
 /// The instant (from == to) or the step a coefficient is evaluated for. Over a step schedules give their exact mean, and
-/// functions of time (1 - theta) of their value at its start and theta of that at its end.
+/// functions of time (1 - theta) of their value at its start and theta of that at its end. At an instant a schedule that jumps
+/// there gives the value after its jump, or before it where `before` says so.
 struct TimeSpan {
     double from = 0.0;
     double to = 0.0;
     double theta = 1.0;
+    bool before = false;
 };
 
 /// What a coefficient may be.

@@ -176,8 +176,12 @@ class Model {
     /// Refuses a value its uses do not allow. @throws Error bad_value
     TEPOR_INLINE void check_slot(Index slot, double value) const;
 
-    /// Prescribed temperatures into T[free .. unknowns).
-    TEPOR_INLINE void prescribe(const Values& values, TimeSpan time, double* T) const;
+    /// Prescribed temperatures into T[free .. unknowns). @throws Error bad_value, bad_law
+    void prescribe(const Values& values, TimeSpan time, double* T) const {
+        if (const Fault fault = try_prescribe(values, time, T)) raise(fault);
+    }
+    /// The same, with what cannot be used as plain data.
+    [[nodiscard]] TEPOR_INLINE Fault try_prescribe(const Values& values, TimeSpan time, double* T) const;
 
     [[nodiscard]] const Id* cell(Index c) const noexcept { return cell_unknowns.data() + c * kernels->nodes; }
 

@@ -56,6 +56,15 @@ class Schedule {
         return e[i].value + s * (e[i + 1].value - e[i].value);
     }
 
+    /// Value just before time t: differs from at(t) where t is a jump.
+    [[nodiscard]] double before(double t) const noexcept {
+        const auto& e = data_->entries;
+        if (!(t > e.front().time)) return e.front().value;
+        const std::size_t i = last_not_after(t);
+        if (data_->between == Between::steps && e[i].time == t) return e[i - 1].value;
+        return at(t);
+    }
+
     /// Mean over [from, to], exact; the value at `from` when the two are equal.
     [[nodiscard]] double mean(double from, double to) const noexcept {
         if (!(to > from)) return at(from);

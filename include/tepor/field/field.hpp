@@ -120,6 +120,20 @@ class Field {
     double time_ = 0.0;
 };
 
+/// Heat over a field or a span of time, from which a Balance is made; watts, or joules all through.
+struct HeatSums {
+    Accounts accounts;
+    const double* reaction = nullptr; ///< all unknowns: heat into the body at prescribed ones
+    const double* stored = nullptr;   ///< per region; null when nothing is stored
+    double side_traffic = 0.0;
+    double source_traffic = 0.0;
+    double duration = 1.0; ///< what turns the rounding floor from watts into the unit of the sums
+};
+
+/// The balance of the sums; flows through faces that overlap others or have corners between prescribed temperatures are taken at T.
+[[nodiscard]] TEPOR_INLINE Balance balance_of(const Model& model, const Values& values, Workspace& work,
+                                              const HeatSums& sums, const double* T, TimeSpan span);
+
 /// What the frame's size is in words: "1 m2 of wall", "a depth of 0.4 m", "a length of 2 m", "the whole sphere" ...
 [[nodiscard]] TEPOR_INLINE std::string size_in_words(const MeshData& mesh);
 

@@ -4,6 +4,7 @@
 #include <optional>
 #include <tepor/base/config.hpp>
 #include <tepor/body/assemble.hpp>
+#include <tepor/body/enthalpy.hpp>
 #include <tepor/body/model.hpp>
 #include <tepor/describe/quantity.hpp>
 #include <utility>
@@ -78,10 +79,13 @@ struct Functional {
     Id region = -1;
     Id face = -1;
 
+    /// Heat content of a region whose capacity depends on temperature or that melts; else it is a row on T like a mean.
+    Id stored = -1;
+
     /// Nothing but weights on T and a constant.
     [[nodiscard]] bool plain() const noexcept {
         return reaction.unknown.empty() && heats.empty() && edges.empty() && inner.empty() && contents.empty() &&
-               !extreme;
+               !extreme && stored < 0;
     }
 };
 
@@ -98,6 +102,16 @@ struct Functional {
 /// dJ/dT at T into `row` (all unknowns, added to), reactions and prescribed values left aside: for the adjoint.
 TEPOR_INLINE void temperature_slope(const Functional& functional, const Model& model, const Values& values,
                                     Workspace& work, const double* T, TimeSpan time, double* row);
+
+/// Sensible heat of a region from 0 of the body's scale to T [J]; with `row` its derivative by the unknowns is added there. Elements
+/// of order 1 hold heat at their nodes, as lumped marching does; higher ones by quadrature.
+[[nodiscard]] TEPOR_INLINE double sensible_heat(const Model& model, const Values& values, Workspace& work,
+                                                const Enthalpy& enthalpy, std::size_t region, const double* T,
+                                                double* row);
+
+/// Latent heat of a region by the temperatures of its nodes [J]; at a melting temperature without width it counts as solid.
+[[nodiscard]] TEPOR_INLINE double latent_heat(const Model& model, const Values& values, Workspace& work,
+                                              const Enthalpy& enthalpy, std::size_t region, const double* T);
 
 /// An extreme of the finite element function and where it is.
 struct Extreme {

@@ -95,9 +95,22 @@ class Assembler {
         Fault fault = c.evaluate(slots_, pass_.time, at, value, slope);
         if (!fault) return true;
         const Index b = fault.point % W;
-        fault.cell = model_.user_cell[as_size(cells[b < count ? b : count - 1])];
+        if (cells) fault.cell = model_.user_cell[as_size(cells[b < count ? b : count - 1])];
         pass_.fault = fault;
         return false;
+    }
+
+    /// The same for what stands in the load; a pass may ask for some of the loads alone.
+    bool evaluate_load(const Coefficient& c, const Points& at, double* value, double* slope, const Id* cells,
+                       int count) {
+        if (!pass_.loads) return evaluate(c, at, value, slope, cells, count);
+        bool counts = false;
+        for (const Coefficient* load : *pass_.loads) counts = counts || load == &c;
+        if (counts && !pass_.unit_loads) return evaluate(c, at, value, slope, cells, count);
+        for (Index i = 0; i < at.count; ++i) value[i] = counts ? 1.0 : 0.0;
+        if (slope)
+            for (Index i = 0; i < at.count; ++i) slope[i] = 0.0;
+        return true;
     }
 
     /// What the coefficients of a region ask of a pass.
@@ -220,13 +233,13 @@ class Assembler {
         for (Index i = 0; i < n; ++i) source[i] = slope[i] = 0.0;
         for (const VolumeTerm& term : region.volume) {
             if (linear_sink(region, term)) {
-                if (!evaluate(term.fluid, at, fluid, nullptr, ids, block.count)) return false;
+                if (!evaluate_load(term.fluid, at, fluid, nullptr, ids, block.count)) return false;
                 const double sink = sink_of(term);
                 for (Index i = 0; i < n; ++i) source[i] -= sink * fluid[i];
                 continue;
             }
             if (term.kind == VolumeTerm::Kind::side_film) {
-                if (!evaluate(term.fluid, at, fluid, nullptr, ids, block.count)) return false;
+                if (!evaluate_load(term.fluid, at, fluid, nullptr, ids, block.count)) return false;
                 if (!evaluate(term.extent, at, extent, nullptr, ids, block.count)) return false;
                 const Points film{at.count, at.temperature, fluid, at.x, at.y};
                 if (!evaluate(term.amount, film, amount, by_T, ids, block.count)) return false;
@@ -242,7 +255,7 @@ class Assembler {
                 continue;
             }
             const double scale = term.kind == VolumeTerm::Kind::total ? 1.0 / values_.region_volume[r] : 1.0;
-            if (!evaluate(term.amount, at, amount, by_T, ids, block.count)) return false;
+            if (!evaluate_load(term.amount, at, amount, by_T, ids, block.count)) return false;
             for (Index i = 0; i < n; ++i) {
                 amount[i] *= scale;
                 source[i] -= amount[i];

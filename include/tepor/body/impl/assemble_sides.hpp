@@ -44,10 +44,13 @@ inline bool Assembler::face_term(const FaceTerm& term, Index n, const Id* ids, d
     double* TEPOR_RESTRICT outside = work_.side_coefficient[4];
     Points at{n, pass_.T ? block.point_T : nullptr, nullptr, block.point_x, block.point_y};
     if (term.kind != FaceTerm::Kind::flux) {
-        if (!evaluate(term.outside, at, outside, nullptr, ids, block.count)) return false;
+        if (!evaluate_load(term.outside, at, outside, nullptr, ids, block.count)) return false;
         at.fluid = outside;
     }
-    if (!evaluate(term.amount, at, amount, by_T, ids, block.count)) return false;
+    const bool given = term.kind == FaceTerm::Kind::flux;
+    if (!(given ? evaluate_load(term.amount, at, amount, by_T, ids, block.count)
+                : evaluate(term.amount, at, amount, by_T, ids, block.count)))
+        return false;
     const double offset = model_.absolute_offset();
     for (Index i = 0; i < n; ++i) {
         const double T = at.temperature ? at.temperature[i] : 0.0;
@@ -196,11 +199,7 @@ inline void Assembler::local(std::size_t l) {
     const LocalModel& heat = model_.locals[l];
     double total = 0.0;
     const Points at{1, nullptr, nullptr, &heat.place.x, &heat.place.y};
-    Fault fault = heat.total.evaluate(slots_, pass_.time, at, &total, nullptr);
-    if (fault) {
-        pass_.fault = fault;
-        return;
-    }
+    if (!evaluate_load(heat.total, at, &total, nullptr, nullptr, 1)) return;
     if (pass_.residual)
         for (std::size_t i = 0; i < heat.unknowns.size(); ++i)
             pass_.residual[heat.unknowns[i]] -= total * heat.share[i];

@@ -98,7 +98,9 @@ TEPOR_INLINE double Coefficient::uniform_value(const double* slot_values, TimeSp
     switch (value_.kind()) {
     case Value::Kind::number: return value_.number();
     case Value::Kind::parameter: return slot_values[slots_[0]];
-    case Value::Kind::schedule: return value_.schedule().mean(time.from, time.to);
+    case Value::Kind::schedule:
+        return time.before && time.from == time.to ? value_.schedule().before(time.to)
+                                                   : value_.schedule().mean(time.from, time.to);
     case Value::Kind::law: {
         const double nowhere = 0.0;
         const Points one{1, nullptr, nullptr, &nowhere, &nowhere};

@@ -34,8 +34,7 @@ class TermCompiler {
             FaceModel& face = model_.faces[as_size(where)];
             FaceTerm term;
             term.kind = FaceTerm::Kind::film;
-            const bool by_law =
-                film.coefficient.kind() == Value::Kind::law || film.coefficient.kind() == Value::Kind::table;
+            const bool by_law = by_temperature(film.coefficient);
             term.amount =
                 make(film.coefficient, "film coefficient on", face.name, Range::not_negative, &SlotRole::matrix);
             bool radiates = false;
@@ -145,6 +144,11 @@ class TermCompiler {
         if (!c.depends_on_temperature()) return;
         model_.nonlinear = true;
         if (conducts) model_.slope = true;
+    }
+
+    static bool by_temperature(const Value& value) {
+        return value.kind() == Value::Kind::table ||
+               (value.kind() == Value::Kind::law && value.law().uses().temperature);
     }
 
     static void no_temperature(const Coefficient& c) {
@@ -293,8 +297,7 @@ class TermCompiler {
             throw Error(ErrorCode::bad_value, region.name,
                         text("SideFilm in \"", region.name, "\": wet_sides = ", film.wet_sides, ", expected 1 or 2"));
         term.wet = term.by_thickness ? film.wet_sides : 1.0 / model_.frame_area;
-        const bool by_law =
-            film.coefficient.kind() == Value::Kind::law || film.coefficient.kind() == Value::Kind::table;
+        const bool by_law = by_temperature(film.coefficient);
         term.amount =
             make(film.coefficient, "side film coefficient in", region.name, Range::not_negative, &SlotRole::matrix);
         term.fluid = make(film.fluid, "side fluid temperature in", region.name, temperature(),

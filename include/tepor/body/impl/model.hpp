@@ -76,7 +76,7 @@ TEPOR_INLINE void Model::check_slot(Index slot, double value) const {
     }
 }
 
-TEPOR_INLINE void Model::prescribe(const Values& values, TimeSpan time, double* T) const {
+TEPOR_INLINE Fault Model::try_prescribe(const Values& values, TimeSpan time, double* T) const {
     const Point* place = places_of(values);
     for (Index u = free; u < unknowns; ++u) {
         const std::size_t j = detail::as_size(u - free);
@@ -86,11 +86,12 @@ TEPOR_INLINE void Model::prescribe(const Values& values, TimeSpan time, double* 
             const double cold = 0.0;
             double value = 0.0;
             const Points at{1, &cold, nullptr, &place[u].x, &place[u].y};
-            if (Fault fault = fixed.evaluate(values.slots.data(), time, at, &value, nullptr)) raise(fault);
+            if (Fault fault = fixed.evaluate(values.slots.data(), time, at, &value, nullptr)) return fault;
             sum += value;
         }
         T[u] = sum / (fixed_start[j + 1] - fixed_start[j]);
     }
+    return {};
 }
 
 TEPOR_INLINE const Locator& Model::locator() const {

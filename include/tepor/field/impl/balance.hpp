@@ -8,6 +8,7 @@
 #include <tepor/body/gather.hpp>
 #include <tepor/body/split.hpp>
 #include <tepor/field/field.hpp>
+#include <tepor/field/impl/functional.hpp>
 
 namespace tepor {
 
@@ -114,20 +115,43 @@ TEPOR_INLINE double rounding_floor(const Model& model, const Values& values, Wor
 TEPOR_INLINE Balance Field::balance() const {
     const Model& m = *model_;
     Workspace work = m.kernels->workspace();
-    Accounts accounts;
+    HeatSums sums;
     Pass pass;
     pass.T = temperature_.data();
     pass.time = {time_, time_, 1.0};
-    pass.accounts = &accounts;
+    pass.accounts = &sums.accounts;
     assemble(m, values_, work, pass);
     if (pass.fault) raise(pass.fault);
+    sums.reaction = reaction_.data();
+    sums.stored = storage_.empty() ? nullptr : storage_.data();
+    sums.side_traffic = pass.side_traffic;
+    sums.source_traffic = pass.source_traffic;
+    return balance_of(m, values_, work, sums, temperature_.data(), pass.time);
+}
 
+namespace detail {
+
+/// Heat that leaves through terms of other faces on sides shared with this one.
+inline bool shares_terms(const Model& model, std::size_t face) {
+    const int m = model.kernels->side_nodes;
+    for (std::size_t g = 0; g < model.faces.size(); ++g)
+        if (g != face && !model.faces[g].terms.empty() &&
+            !common_sides(model.faces[g].sides, model.faces[face].sides, m).side.empty())
+            return true;
+    return false;
+}
+
+} // namespace detail
+
+TEPOR_INLINE Balance balance_of(const Model& m, const Values& values, Workspace& work, const HeatSums& sums,
+                                const double* T, TimeSpan span) {
+    const Accounts& accounts = sums.accounts;
     Balance b;
     b.size = size_in_words(*m.mesh);
     const auto leaves = [&b](double heat) { (heat > 0.0 ? b.out : b.in) += std::abs(heat); };
     for (std::size_t r = 0; r < m.regions.size(); ++r) {
         RegionHeat region{m.regions[r].name, accounts.generated[r], accounts.side_loss[r],
-                          storage_.empty() ? 0.0 : storage_[r]};
+                          sums.stored ? sums.stored[r] : 0.0};
         for (std::size_t l = 0; l < m.locals.size(); ++l)
             if (m.locals[l].region == detail::as_id(r)) region.generated += accounts.local[l];
         b.generated += region.generated;
@@ -136,14 +160,14 @@ TEPOR_INLINE Balance Field::balance() const {
         b.regions.push_back(std::move(region));
     }
     double reaction_in = 0.0;
-    double traffic = pass.side_traffic + pass.source_traffic;
+    double traffic = sums.side_traffic + sums.source_traffic;
     for (Index u = m.free; u < m.unknowns; ++u) {
-        const double r = reaction_[detail::as_size(u)];
+        const double r = sums.reaction[u];
         reaction_in += r;
         traffic += std::abs(r);
         leaves(-r);
     }
-    for (const double s : storage_) traffic += std::abs(s);
+    for (const RegionHeat& region : b.regions) traffic += std::abs(region.stored);
     b.gross = 0.5 * traffic;
 
     std::size_t term = 0;
@@ -157,29 +181,37 @@ TEPOR_INLINE Balance Field::balance() const {
     double side_losses = 0.0;
     for (const double s : accounts.side_loss) side_losses += s;
     b.left_over = reaction_in + b.generated - through_terms - side_losses - b.stored;
-    b.floor = rounding_floor(m, values_, work, temperature_.data());
+    b.floor = sums.duration * rounding_floor(m, values, work, T);
 
     term = 0;
     for (std::size_t f = 0; f < m.faces.size(); ++f) {
         const FaceModel& face = m.faces[f];
         FaceHeat heat;
         heat.name = face.name;
-        heat.area = detail::area_of(m, values_, work, face.sides);
+        heat.area = detail::area_of(m, values, work, face.sides);
         for (const FaceTerm& t : face.terms) {
             double& kind = t.kind == FaceTerm::Kind::film
                                ? heat.film
                                : (t.kind == FaceTerm::Kind::radiation ? heat.radiation : heat.flux);
             kind += accounts.face[term++];
         }
-        const Functional flow = compile(m, values_, heat_out_through(face.name));
+        const Functional flow = compile(m, values, heat_out_through(face.name));
         heat.adiabatic = flow.heats.empty() && flow.reaction.unknown.empty();
         if (flow.unbounded) {
             heat.unbounded = true;
             heat.unbounded_x = flow.unbounded->x;
             heat.unbounded_y = flow.unbounded->y;
         } else {
-            heat.out = evaluate(flow, m, values_, work, temperature_.data(), reaction_.data(), {time_, time_, 1.0});
-            if (face.fixed.given()) heat.prescribed = heat.out - heat.film - heat.radiation - heat.flux;
+            // what passes at prescribed temperatures; films, radiation and fluxes are in the accounts
+            heat.prescribed = flow.reaction.dot(sums.reaction);
+            for (const Functional::EdgeFlux& edge : flow.edges)
+                heat.prescribed += sums.duration * edge.factor * detail::edge_flux(m, values, edge, T, span, nullptr);
+            heat.out = heat.film + heat.radiation + heat.flux + heat.prescribed;
+            if (detail::shares_terms(m, f)) {
+                heat.out = heat.prescribed;
+                for (const Functional::Heat& through : flow.heats)
+                    heat.out += sums.duration * detail::weigh(through, m, values, work, T, span, nullptr);
+            }
         }
         b.faces.push_back(std::move(heat));
     }

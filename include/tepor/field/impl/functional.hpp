@@ -9,6 +9,7 @@
 #include <tepor/field/functional.hpp>
 #include <tepor/field/impl/edge_flux.hpp>
 #include <tepor/field/impl/inner_place.hpp>
+#include <tepor/field/impl/stored.hpp>
 
 namespace tepor {
 
@@ -43,10 +44,10 @@ class QuantityCompiler {
         case Kind::heat_out_through: heat_out(); break;
         case Kind::heat_from: heat_from(); break;
         case Kind::generated_in: generated_in(); break;
-        case Kind::stored_in:
+        case Kind::stored_in: stored_in(); break;
         case Kind::conductance_between:
             throw Error(ErrorCode::not_supported, quantity_.label(),
-                        text(quantity_.label(), ": ask a march for stored heat and bracket for a conductance"));
+                        text(quantity_.label(), ": ask bracket for a conductance"));
         }
         return std::move(out_);
     }
@@ -218,6 +219,20 @@ class QuantityCompiler {
         out_.heats.push_back(std::move(heat));
     }
 
+    void stored_in() {
+        const Id r = region(quantity_.first());
+        const Enthalpy enthalpy(model_.regions[as_size(r)], values_);
+        if (enthalpy.latent() || !enthalpy.constant()) {
+            out_.stored = r;
+            return;
+        }
+        std::vector<double> row(as_size(model_.unknowns), 0.0);
+        Workspace work = model_.kernels->workspace();
+        std::vector<double> T(as_size(model_.unknowns), 0.0);
+        (void)sensible_heat(model_, values_, work, enthalpy, as_size(r), T.data(), row.data());
+        keep_row(row, 1.0);
+    }
+
     void heat_out();
     void share_reactions(Id of_face);
     void heat_from();
@@ -372,7 +387,7 @@ inline void QuantityCompiler::heat_from() {
                     text(quantity_.label(),
                          ": the two regions do not touch; ask for neighbours, such as those a contact joins"));
     if (from.weights.unknown.empty()) return;
-    const auto restrict_to = [this](Id r, Restriction& part) {
+    const auto restrict_to = [this](Id r, tepor::Restriction& part) {
         part.regions.push_back(r);
         for (std::size_t l = 0; l < model_.locals.size(); ++l)
             if (model_.locals[l].region == r) part.locals.push_back(as_id(l));
@@ -451,6 +466,11 @@ TEPOR_INLINE double evaluate(const Functional& functional, const Model& model, c
                                      : extreme_in(model, values, T, functional.region, functional.direction))
             .value;
     double value = functional.constant + functional.temperature.dot(T);
+    if (functional.stored >= 0) {
+        const Enthalpy enthalpy(model.regions[detail::as_size(functional.stored)], values);
+        value += sensible_heat(model, values, work, enthalpy, detail::as_size(functional.stored), T, nullptr);
+        value += latent_heat(model, values, work, enthalpy, detail::as_size(functional.stored), T);
+    }
     if (!functional.reaction.unknown.empty()) value += functional.reaction.dot(reaction);
     for (const Functional::Heat& heat : functional.heats)
         value += detail::weigh(heat, model, values, work, T, time, nullptr);
@@ -479,6 +499,10 @@ TEPOR_INLINE void temperature_slope(const Functional& functional, const Model& m
     }
     for (std::size_t i = 0; i < functional.temperature.unknown.size(); ++i)
         row[functional.temperature.unknown[i]] += functional.temperature.weight[i];
+    if (functional.stored >= 0) {
+        const Enthalpy enthalpy(model.regions[detail::as_size(functional.stored)], values);
+        (void)sensible_heat(model, values, work, enthalpy, detail::as_size(functional.stored), T, row);
+    }
     for (const Functional::Heat& heat : functional.heats) (void)detail::weigh(heat, model, values, work, T, time, row);
     for (const Functional::EdgeFlux& edge : functional.edges)
         (void)detail::edge_flux(model, values, edge, T, time, row);
