@@ -65,6 +65,7 @@
 #include <tepor/assembly/block.hpp>
 #include <tepor/assembly/cell_kernels.hpp>
 #include <tepor/assembly/cell_law.hpp>
+#include <tepor/assembly/element_matrices.hpp>
 #include <tepor/assembly/exact_kernels.hpp>
 #include <tepor/assembly/kernels.hpp>
 #include <tepor/assembly/kernels_cells.hpp>

@@ -1,6 +1,7 @@
 #pragma once
 // Derivatives of quantities by slots and places at fixed temperature.
 
+#include <cmath>
 #include <tepor/body/gather.hpp>
 #include <tepor/body/side_tangent.hpp>
 #include <tepor/field/functional_slope.hpp>
@@ -26,6 +27,8 @@ class FunctionalSlope {
             contract_slopes(model_, values_, work_, {T_, weights.data(), time_, &heat.part, factor_}, sums_);
         }
         for (const Functional::EdgeFlux& edge : functional_.edges) edge_flux_slope(edge);
+        if (kernel_.exact && (!functional_.inner.empty() || !functional_.contents.empty() || functional_.extreme))
+            return inner_by_differences();
         if (sums_.places.empty()) return;
         switch (quantity_.kind()) {
         case Kind::at: passing_nodes(); return;
@@ -59,6 +62,28 @@ class FunctionalSlope {
         Point& sum = sums_.places[as_size(unknown)];
         sum.x += factor_ * x;
         sum.y += factor_ * y;
+    }
+
+    /// Temperatures between the nodes of exact cells depend on every coefficient of the cell: differences of sixth order, as
+    /// for the residual of such cells. An extreme stays extreme: its move does not count.
+    void inner_by_differences() {
+        static constexpr double weight[3] = {45.0 / 60.0, -9.0 / 60.0, 1.0 / 60.0};
+        const auto value = [&](std::size_t slot, double moved_to) {
+            Values moved = values_;
+            moved.slots[slot] = moved_to;
+            if (model_.moving) model_.update_geometry(moved);
+            return evaluate(compile(model_, moved, quantity_), model_, moved, work_, T_, nullptr, time_);
+        };
+        for (std::size_t s = 0; s < sums_.slots.size(); ++s) {
+            const SlotRole& role = model_.roles[s];
+            if (!role.load && !role.matrix && !role.place) continue;
+            const double centre = values_.slots[s];
+            const double step = centre == 0.0 ? 1e-3 : 1e-2 * std::abs(centre);
+            double sum = 0.0;
+            for (int i = 0; i < 3; ++i)
+                sum += weight[i] * (value(s, centre + (i + 1) * step) - value(s, centre - (i + 1) * step));
+            sums_.slots[s] += factor_ * sum / step;
+        }
     }
 
     /// J = T(x) at a fixed x: nodes that move by v carry the field along, dJ = -v . grad T.
