@@ -73,6 +73,12 @@ TEST_CASE("S1D-09: a straight fin with a convecting tip") {
 TEST_CASE("S1D-10: annular fins") {
     run("S1D-10");
 }
+TEST_CASE("S1D-E1: slabs with one exact cell per layer keep every digit of the sources") {
+    run("S1D-E1");
+}
+TEST_CASE("S1D-E2: cylinders, a sphere and a fin with one exact cell per layer keep every digit of the sources") {
+    run("S1D-E2");
+}
 TEST_CASE("S2D-19: a rectangle with one hot side") {
     run("S2D-19");
 }

@@ -2,6 +2,7 @@
 // The table.
 
 #include <tepor/check/cases.hpp>
+#include <tepor/check/impl/exact_cells.hpp>
 #include <tepor/check/impl/iso_10211.hpp>
 #include <tepor/check/impl/round.hpp>
 #include <tepor/check/impl/sections.hpp>
@@ -31,6 +32,10 @@ TEPOR_INLINE std::vector<CheckCase> verified_cases() {
          generating_cylinder},
         {"S1D-09", "straight fin, convecting tip", "Incropera & DeWitt, table 3.4, case A", straight_fin},
         {"S1D-10", "annular fin, both tips", "modified Bessel functions; Incropera & DeWitt, sec. 3.6", annular_fin},
+        {"S1D-E1", "slabs by exact cells, one per layer", "the sources of S1D-01, S1D-02, S1D-03 and S1D-07",
+         slabs_by_exact_cells},
+        {"S1D-E2", "cylinders, sphere and fin by exact cells, one per layer",
+         "the sources of S1D-04, S1D-05, S1D-06, S1D-08 and S1D-09", round_by_exact_cells},
         {"S2D-19", "rectangle with one hot side", "sine-sinh series; Carslaw & Jaeger, sec. 5.3",
          rectangle_with_hot_side},
         {"S2D-20", "square with generation, cold sides",
