@@ -9,9 +9,9 @@
 
 namespace tepor {
 
-/// How narrow, and what it may cost. It stops as soon as one width is reached or one budget is spent.
+/// How narrow, and what it may cost. With neither width given: 1 % of |value|; with both: the one reached first.
 struct BracketOptions {
-    double relative_width = 0.01; ///< of |value|
+    double relative_width = 0.0;  ///< of |value|
     double absolute_width = 0.0;  ///< in the unit of the quantity
     Index max_unknowns = 200'000; ///< no pass on a mesh with more, the first one excepted
     double max_seconds = 60.0;    ///< no pass that would end later, judged by the one before

@@ -8,9 +8,9 @@
 
 namespace tepor {
 
-/// How good, and what it may cost. It stops when one accuracy is reached or one budget is spent, after two meshes at least.
+/// How good, and what it may cost. With neither accuracy given: 1 % of |value|; with both: the one reached first.
 struct EstimateOptions {
-    double relative_error = 0.01; ///< of |value|
+    double relative_error = 0.0;  ///< of |value|
     double absolute_error = 0.0;  ///< in the unit of the quantity
     Index max_unknowns = 200'000; ///< no mesh with more, the first two excepted
     double max_seconds = 60.0;    ///< no mesh that would end later, judged by the one before

@@ -267,6 +267,8 @@ TEPOR_INLINE Bracket bracket(const Body& body, const Quantity& quantity, const B
     using namespace detail;
     using Clock = std::chrono::steady_clock;
     validate(options);
+    const double relative =
+        options.relative_width == 0.0 && options.absolute_width == 0.0 ? 0.01 : options.relative_width;
     const auto started = Clock::now();
     const auto since = [](Clock::time_point then) {
         return std::chrono::duration<double>(Clock::now() - then).count();
@@ -295,7 +297,7 @@ TEPOR_INLINE Bracket bracket(const Body& body, const Quantity& quantity, const B
         out.upper = std::min(out.upper, answer.upper);
         out.value = std::clamp(answer.value, out.lower, out.upper);
         out.passes.push_back({out.cells, out.unknowns, answer.lower, answer.upper, since(began)});
-        out.reached = out.width() <= std::max(options.relative_width * std::abs(out.value), options.absolute_width);
+        out.reached = out.width() <= std::max(relative * std::abs(out.value), options.absolute_width);
         if (out.reached || answer.share.empty()) break;
         if (since(started) + 1.5 * out.passes.back().seconds > options.max_seconds) break;
         const Index before = mesh->cell_count();

@@ -59,6 +59,8 @@ TEPOR_INLINE Estimate estimate(const Body& body, const Quantity& quantity, const
     using namespace detail;
     using Clock = std::chrono::steady_clock;
     validate(options);
+    const double relative =
+        options.relative_error == 0.0 && options.absolute_error == 0.0 ? 0.01 : options.relative_error;
     const auto started = Clock::now();
     const auto since = [](Clock::time_point then) {
         return std::chrono::duration<double>(Clock::now() - then).count();
@@ -73,8 +75,7 @@ TEPOR_INLINE Estimate estimate(const Body& body, const Quantity& quantity, const
         const double growth = mesh->dim == 1 ? 2.0 : 4.0;
         if (out.passes.size() >= 2) {
             judge(out, mesh->order);
-            out.reached =
-                out.likely_error <= std::max(options.relative_error * std::abs(out.value), options.absolute_error);
+            out.reached = out.likely_error <= std::max(relative * std::abs(out.value), options.absolute_error);
             if (out.reached && out.passes.size() >= 3) break;
             if (growth * as_double(out.passes.back().unknowns) > as_double(options.max_unknowns)) break;
             if (since(started) + 1.5 * growth * out.passes.back().seconds > options.max_seconds) break;
