@@ -31,6 +31,9 @@ endfunction()
 
 # Defines tepor::compiled, and tepor::compiled_output where fmt is there.
 function(tepor_add_compiled include_dir binary_dir)
+    if(NOT EXISTS "${include_dir}/tepor/tepor.hpp")
+        message(FATAL_ERROR "tepor: ${include_dir} does not hold the headers")
+    endif()
     set(needs tepor::tepor)
     foreach(room IN LISTS tepor_numerical_rooms)
         tepor_add_room(${room} "${include_dir}" "${binary_dir}" ${needs})
