@@ -10,9 +10,10 @@ namespace tepor {
 
 /// How a steady solve starts and when it stops.
 struct SteadyOptions {
-    double tolerance = 1e-10;    ///< sum of |r| over the free unknowns, as a share of the gross heat traffic
-    Index most_passes = 60;      ///< of Newton's method
-    std::optional<double> start{}; ///< temperature everywhere to start from; default: the mean of the temperatures given
+    double tolerance = 1e-10; ///< sum of |r| over the free unknowns, as a share of the gross heat traffic
+    Index most_passes = 60;   ///< of Newton's method
+    std::optional<double>
+        start{};                 ///< temperature everywhere to start from; default: the mean of the temperatures given
     const Field* from = nullptr; ///< or a field of a body described alike
 };
 
