@@ -88,6 +88,31 @@ TEST_CASE("the residual in the report is that of x, and the caller's stop sees i
     CHECK(std::abs(balanced.residual - residual_of()) <= 1e-12);
 }
 
+TEST_CASE("a start far off leaves rounding that the recurrence does not see, but the report does") {
+    const test::Square square = test::square(20, true, false, 86);
+    const Index n = square.matrix.rows;
+    test::Random random(87);
+    const std::vector<double> b = test::random_vector(n, random);
+    std::vector<double> x = test::random_vector(n, random), y(b.size());
+    for (double& v : x) v *= 1e12;
+    ConjugateGradientWork work;
+    double seen = 1.0;
+    const IterationReport report = conjugate_gradient(square.matrix, n, b.data(), x.data(), none(n), {0.0, 400}, work,
+                                                      [&](const double*, double relative) {
+                                                          seen = std::min(seen, relative);
+                                                          return false;
+                                                      });
+    multiply(square.matrix, n, x.data(), y.data());
+    double sum = 0.0, scale = 0.0;
+    for (std::size_t i = 0; i < b.size(); ++i) {
+        sum += (b[i] - y[i]) * (b[i] - y[i]);
+        scale += b[i] * b[i];
+    }
+    const double residual = std::sqrt(sum / scale);
+    CHECK(std::abs(report.residual - residual) <= 1e-3 * residual);
+    CHECK(seen <= 1e-3 * residual);
+}
+
 TEST_CASE(
     "an indefinite matrix, an indefinite preconditioner and values that are not numbers end without convergence") {
     const SparseMatrix a = test::sparse({1.0, 1.0}, {{1, 0, 2.0, 2.0}});
