@@ -72,6 +72,9 @@ class Delaunay {
     /// the constrained half-edge in its way (or -2 when none can be named).
     Id move(Id v, Point target);
 
+    /// Flip what is no longer Delaunay around a vertex that has been moved within its star; `star` is set.
+    void mend_around(Id v);
+
     /// Make a-b an edge and give it the segment number. Vertices exactly on it split it: the remainder from the first
     /// such vertex to b is left for the caller, who gets that vertex; b when done; -1 - h when constrained half-edge h is
     /// crossed.
@@ -111,5 +114,6 @@ class Delaunay {
 } // namespace tepor::detail
 
 #ifndef TEPOR_COMPILED
+#include <tepor/mesh/impl/constrained.hpp>
 #include <tepor/mesh/impl/delaunay.hpp>
 #endif

@@ -65,5 +65,6 @@ Picture look_at(const Section& section);
 
 #ifndef TEPOR_COMPILED
 #include <tepor/mesh/impl/arrange.hpp>
+#include <tepor/mesh/impl/painter.hpp>
 #include <tepor/mesh/impl/picture.hpp>
 #endif

@@ -26,6 +26,7 @@ struct PlaneGraph {
     std::vector<MeshArc> arcs;
     std::vector<std::vector<Id>> face_sets; ///< faces an edge belongs to
     double tolerance = 0.0;
+    double diagonal = 0.0;
 
     /// Direction in which edge e leaves its end v (a unit vector, tangent to an arc).
     [[nodiscard]] Point leaving(const Edge& e, Id v) const noexcept {

@@ -65,7 +65,9 @@ class Refiner {
     void relax(Id vertex);
     void judge(Id triangle);
     [[nodiscard]] int verdict(Id triangle) const; ///< 0 good, 1 too large, 2 a bad angle
+    [[nodiscard]] bool bad_angle(Id triangle) const;
     [[nodiscard]] bool across_sharp_corner(Id p, Id q) const;
+    void smooth();
     void mend(Id triangle, int fault, bool plain);
     [[noreturn]] void fail(Point p, const char* cause) const;
     void sync_vertex(Id vertex, Id edge, double size);
@@ -88,5 +90,6 @@ class Refiner {
 } // namespace tepor::detail
 
 #ifndef TEPOR_COMPILED
+#include <tepor/mesh/impl/pieces.hpp>
 #include <tepor/mesh/impl/quality.hpp>
 #endif

@@ -19,7 +19,7 @@ struct Drawn {
 /// A drawing in metres: regions painted one over the other, then cuts, then names for pieces of the edge.
 ///
 /// Shapes may touch, overlap, cross, share edges and coincide; what counts is the picture. Edges between areas of the same
-/// region, or under later paint, leave no trace. All points closer than `tolerance` = 1e-9 of the drawing's diagonal are one
+/// region, or under later paint, leave no trace. All points closer than the tolerance, 1e-9 of the drawing's diagonal, are one
 /// point, and what such a merge leaves without width is gone; the mesh says so in its `remarks`.
 class Section {
   public:
@@ -52,6 +52,11 @@ class Section {
     /// A point where the mesh must have a node, such as a sensor.
     void hold(Point p);
 
+    /// Merge what is closer than this [m], instead of 1e-9 of the diagonal (which it cannot go below): for drawings whose
+    /// shapes should meet but do not quite, such as coordinates read with few digits.
+    /// @throws Error bad_value  not finite or not positive
+    void tolerance(double distance);
+
     // What has been drawn, for triangulate().
     struct Item {
         bool cut = false;
@@ -72,12 +77,14 @@ class Section {
     [[nodiscard]] const std::vector<Face>& faces() const noexcept { return faces_; }
     [[nodiscard]] const std::vector<Outline>& lines() const noexcept { return lines_; }
     [[nodiscard]] const std::vector<Point>& held() const noexcept { return held_; }
+    [[nodiscard]] double tolerance() const noexcept { return tolerance_; }
 
   private:
     std::vector<Item> items_;
     std::vector<Face> faces_;
     std::vector<Outline> lines_;
     std::vector<Point> held_;
+    double tolerance_ = 0.0;
 };
 
 } // namespace tepor

@@ -26,9 +26,9 @@ struct Meshing {
     SizeLaw law{};               ///< by place, asked at nodes: details much smaller than `size` can be missed
     double growth =
         0.3; ///< sizes grow by at most this much per unit of distance, so neighbouring sides by about 1 to 1.3
-    double turn = 20.0;              ///< most an arc turns within one cell side [degrees], at most 30
-    double deviation = 0.0;          ///< most a chord lies off its arc [m]; 0: only `turn` counts
-    Index most_triangles = 20000000; ///< more is an Error, for sizes in the wrong unit
+    double turn = 20.0;             ///< most an arc turns within one cell side [degrees], at most 30
+    double deviation = 0.0;         ///< most a chord lies off its arc [m]; 0: only `turn` counts
+    Index most_triangles = 4000000; ///< more is an Error, for sizes in the wrong unit
 };
 
 namespace detail {

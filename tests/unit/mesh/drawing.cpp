@@ -382,6 +382,28 @@ TEST_CASE("difficult drawings give the areas they show") {
     }
 }
 
+TEST_CASE("a wider tolerance closes gaps between shapes that should meet, arcs included") {
+    Section section;
+    section.add("plate", rectangle({0, 0}, {1, 1}));
+    section.add("strip", rectangle({1.00004, 0}, {1.5, 1.00003}));
+    section.add("end", enclosed(Outline({1.5, 0.0}).arc_to({2.0, 0.5}, {1.50002, 1.0})));
+    // As drawn the gaps stay, and three bodies lie side by side.
+    const auto drawn = triangulate<Triangle<2>>(section, {.size = 0.2});
+    CHECK(verify(drawn).problem == "");
+    section.tolerance(1e-4);
+    section.rest("air");
+    const auto closed = triangulate<Triangle<2>>(section, {.size = 0.2});
+    CHECK(verify(closed).problem == "");
+    CHECK(std::abs(test::area_of(closed) - (1.5 + pi / 8.0)) <= 3e-4);
+    REQUIRE(closed.remarks.size() == 1);
+    check_says(closed.remarks[0], "places up to 5e-05 m apart were merged");
+    CHECK(std::abs(length_of(closed, "air") - (1.0 + 3.0 + pi / 2.0)) <= 1e-2);
+    section.tolerance(1.0);
+    check_says(refusal([&] { (void)triangulate<Triangle<2>>(section); }),
+               "tolerance = 1 m, expected less than a hundredth");
+    check_says(refusal([&] { section.tolerance(0.0); }), "tolerance = 0, expected a length > 0");
+}
+
 TEST_CASE("drawings that show nothing or cannot be told apart are refused with place and cause") {
     check_says(refusal([] { (void)triangulate<Triangle<1>>(Section{}); }), "nothing drawn");
     check_says(refusal([] {
@@ -423,7 +445,7 @@ TEST_CASE("drawings that show nothing or cannot be told apart are refused with p
                    (void)triangulate<Triangle<1>>(s,
                                                   {.size = 1e-5}); // would be 2e10 triangles: told before they are made
                }),
-               "more than 20000000");
+               "triangles or more, over most_triangles = 4000000");
     check_says(refusal([] {
                    Section s;
                    s.add("a", rectangle({0, 0}, {1, 1}));

@@ -179,7 +179,11 @@ TEPOR_INLINE Arrangement arrange(const Section& section, std::vector<std::string
         high = {std::max(high.x, e.high().x), std::max(high.y, e.high().y)};
     }
     out.diagonal = distance(low, high);
-    out.tolerance = 1e-9 * out.diagonal;
+    out.tolerance = std::max(1e-9 * out.diagonal, section.tolerance());
+    if (!(out.tolerance < 0.01 * out.diagonal))
+        throw Error(ErrorCode::bad_value, "tolerance",
+                    text("section: tolerance = ", out.tolerance, " m, expected less than a hundredth of the diagonal, ",
+                         out.diagonal, " m"));
     const double tolerance = out.tolerance;
     if (!(tolerance > 4.0 * 1e-16 * std::max({std::abs(low.x), std::abs(low.y), std::abs(high.x), std::abs(high.y)})))
         throw Error(ErrorCode::bad_geometry, "section",
@@ -282,6 +286,23 @@ TEPOR_INLINE Arrangement arrange(const Section& section, std::vector<std::string
         const Point b = out.points[as_size(p.b)];
         return p.arc < 0 ? 0.5 * (a + b) : on_arc(out.arcs[as_size(p.arc)], a, b, 0.5);
     };
+    // Where merging has moved an end off its circle, the piece lies on a circle of its own, of the same radius.
+    for (Arrangement::Piece& p : all) {
+        if (p.arc < 0) continue;
+        const MeshArc arc = out.arcs[as_size(p.arc)];
+        const Point a = out.points[as_size(p.a)];
+        const Point b = out.points[as_size(p.b)];
+        const double off =
+            std::max(std::abs(distance(a, arc.centre) - arc.radius), std::abs(distance(b, arc.centre) - arc.radius));
+        if (off <= 1e-9 * out.diagonal) continue;
+        const double half = 0.5 * distance(a, b);
+        const double radius = std::max(arc.radius, half);
+        const Point m = 0.5 * (a + b);
+        const Point normal = (1.0 / (2.0 * half)) * Point{a.y - b.y, b.x - a.x};
+        const double side = dot(arc.centre - m, normal) < 0.0 ? -1.0 : 1.0;
+        p.arc = as_id(out.arcs.size());
+        out.arcs.push_back({m + (side * std::sqrt((radius - half) * (radius + half))) * normal, radius});
+    }
     std::vector<Key> keys;
     for (std::size_t k = 0; k < all.size(); ++k)
         keys.push_back({std::min(all[k].a, all[k].b), std::max(all[k].a, all[k].b), k});

@@ -1,14 +1,11 @@
 #pragma once
-// Delaunay refinement: pieces of edges first, then triangles too large or too sharp.
+// The second half of the refiner: pieces of edges and triangles split until sizes and angles are reached.
 
 #include <algorithm>
 #include <cmath>
 #include <tepor/base/error.hpp>
 #include <tepor/base/text.hpp>
-#include <tepor/mesh/curve.hpp>
-#include <tepor/mesh/edge_grid.hpp>
 #include <tepor/mesh/quality.hpp>
-#include <tepor/mesh/space_order.hpp>
 
 namespace tepor::detail {
 
@@ -17,288 +14,13 @@ inline constexpr double least_sine_squared = 0.17860619515673032;
 /// A triangle is too large when its circumradius exceeds this times the size at its vertices. At more than 1/sqrt(2) a new
 /// vertex cannot encroach a piece of an edge that is itself no longer than the size; edges come out about as long as the size.
 inline constexpr double radius_per_size = 0.73;
+/// A short piece of an edge asks for small cells around it: this times its length. Large enough that a piece split for its
+/// neighbours' sake never makes them too long or their triangles too large in turn (a right corner needs 1.33).
+inline constexpr double size_per_piece = 1.7;
+/// Passes over all free vertices at the end.
+inline constexpr int smoothing_sweeps = 2;
 /// A piece of an edge is too long beyond this times the size at its ends.
 inline constexpr double piece_per_size = 1.42;
-
-TEPOR_INLINE Refiner::Refiner(const PlaneGraph& graph, const Targets& targets)
-    : mesh(
-          [&] {
-              Point low = graph.points.front();
-              for (Point p : graph.points) low = {std::min(low.x, p.x), std::min(low.y, p.y)};
-              for (const MeshArc& a : graph.arcs)
-                  low = {std::min(low.x, a.centre.x - a.radius), std::min(low.y, a.centre.y - a.radius)};
-              return low;
-          }(),
-          [&] {
-              Point high = graph.points.front();
-              for (Point p : graph.points) high = {std::max(high.x, p.x), std::max(high.y, p.y)};
-              for (const MeshArc& a : graph.arcs)
-                  high = {std::max(high.x, a.centre.x + a.radius), std::max(high.y, a.centre.y + a.radius)};
-              return high;
-          }()),
-      graph_(graph), targets_(targets) {}
-
-TEPOR_INLINE void Refiner::fail(Point p, const char* cause) const {
-    throw Error(ErrorCode::bad_geometry, "section",
-                text("section: cannot be meshed near (", p.x, ", ", p.y, "): ", cause, "; the drawing's tolerance is ",
-                     graph_.tolerance, " m"));
-}
-
-/// Points where two edges leave within 75 degrees of each other: there pieces end on common circles around the point. (75, not
-/// 60: chords of arcs may stand closer than the arcs.)
-TEPOR_INLINE void Refiner::mark_sharp_corners() {
-    sharp_.assign(graph_.points.size(), 0);
-    std::vector<std::pair<Id, double>> rays;
-    for (const auto& e : graph_.edges)
-        for (Id v : {e.a, e.b}) {
-            const Point d = graph_.leaving(e, v);
-            rays.emplace_back(v, std::atan2(d.y, d.x));
-        }
-    std::sort(rays.begin(), rays.end());
-    const double sharp = 75.0 * pi / 180.0;
-    for (std::size_t i = 0; i < rays.size();) {
-        std::size_t j = i;
-        while (j < rays.size() && rays[j].first == rays[i].first) ++j;
-        for (std::size_t k = i; j - i > 1 && k < j; ++k) {
-            const double gap =
-                k + 1 < j ? rays[k + 1].second - rays[k].second : rays[i].second + 2.0 * pi - rays[k].second;
-            if (gap < sharp) sharp_[as_size(rays[i].first)] = 1;
-        }
-        i = j;
-    }
-}
-
-/// Where the piece a-b of edge e is split: the middle; on edges with a sharp corner a place whose distance from the corner is
-/// as round a binary number as the middle part of the piece allows, so that all edges at the corner are split alike.
-TEPOR_INLINE Point Refiner::split_place(const PlaneGraph::Edge& e, Point a, Point b) const {
-    const MeshArc* arc = e.arc < 0 ? nullptr : &graph_.arcs[as_size(e.arc)];
-    const Point middle = arc != nullptr ? on_arc(*arc, a, b, 0.5) : 0.5 * (a + b);
-    Id corner = -1;
-    for (Id v : {e.a, e.b})
-        if (sharp_[as_size(v)] != 0 && (corner < 0 || distance(middle, graph_.points[as_size(v)]) <
-                                                          distance(middle, graph_.points[as_size(corner)])))
-            corner = v;
-    if (corner < 0) return middle;
-    const Point p = graph_.points[as_size(corner)];
-    const Point q = graph_.points[as_size(corner == e.a ? e.b : e.a)];
-    double near = distance(a, p);
-    double far = distance(b, p);
-    if (near > far) std::swap(near, far);
-    const double low = near + 0.3 * (far - near);
-    const double high = near + 0.7 * (far - near);
-    double step = std::exp2(std::ceil(std::log2(high)));
-    while (std::ceil(low / step) * step > high) step *= 0.5;
-    double r = std::ceil(low / step) * step;
-    // Of several equally round places the one nearest the middle.
-    while (r + step <= high && std::abs(r + step - 0.5 * (near + far)) < std::abs(r - 0.5 * (near + far))) r += step;
-    if (arc == nullptr) return p + (r / distance(p, q)) * (q - p);
-    const Point u = p - arc->centre;
-    const double turn =
-        (cross(u, q - arc->centre) > 0.0 ? 2.0 : -2.0) * std::asin(std::min(1.0, 0.5 * r / arc->radius));
-    const double scale = arc->radius / std::hypot(u.x, u.y);
-    const double c = scale * std::cos(turn);
-    const double s = scale * std::sin(turn);
-    return {arc->centre.x + c * u.x - s * u.y, arc->centre.y + s * u.x + c * u.y};
-}
-
-TEPOR_INLINE bool Refiner::pieces_too_long(const PlaneGraph::Edge& e, Point a, Point b, bool sized) const {
-    const double length = distance(a, b);
-    if (sized && length > 1.1 * e.size) return true;
-    if (e.arc < 0) return false;
-    const MeshArc& arc = graph_.arcs[as_size(e.arc)];
-    const double turn = 2.0 * std::asin(std::min(1.0, 0.5 * length / arc.radius));
-    if (turn > targets_.turn * (1.0 + 1e-9)) return true;
-    return sized && arc_height(arc, a, b) > targets_.deviation;
-}
-
-TEPOR_INLINE void Refiner::subdivide(bool sized) {
-    points_ = graph_.points;
-    point_edge_.assign(points_.size(), -1);
-    pieces_.clear();
-    std::vector<Piece> open;
-    for (std::size_t k = 0; k < graph_.edges.size(); ++k) {
-        const auto& e = graph_.edges[k];
-        const auto edge = as_id(k);
-        const Point a = graph_.points[as_size(e.a)];
-        const Point b = graph_.points[as_size(e.b)];
-        if (sharp_[as_size(e.a)] == 0 && sharp_[as_size(e.b)] == 0) {
-            double parts = 1.0;
-            double length = distance(a, b);
-            if (e.arc >= 0) {
-                const MeshArc& arc = graph_.arcs[as_size(e.arc)];
-                const double turn = 2.0 * std::asin(std::min(1.0, 0.5 * length / arc.radius));
-                length = turn * arc.radius;
-                parts = std::max(parts, std::ceil(turn / targets_.turn - 1e-9));
-                if (sized && targets_.deviation < arc.radius)
-                    parts = std::max(parts,
-                                     std::ceil(turn / (2.0 * std::acos(1.0 - targets_.deviation / arc.radius)) - 1e-9));
-            }
-            if (sized) parts = std::max(parts, std::ceil(length / e.size - 0.1));
-            if (!(parts < 1e8))
-                throw Error(ErrorCode::too_large, "size",
-                            "size: an edge would have more than 1e8 pieces; use a larger size");
-            const auto n = static_cast<Index>(parts);
-            Id last = e.a;
-            for (Index i = 1; i <= n; ++i) {
-                Id here = e.b;
-                if (i < n) {
-                    const double t = as_double(i) / parts;
-                    here = as_id(points_.size());
-                    points_.push_back(e.arc >= 0 ? on_arc(graph_.arcs[as_size(e.arc)], a, b, t) : a + t * (b - a));
-                    point_edge_.push_back(edge);
-                }
-                pieces_.push_back({last, here, edge});
-                last = here;
-            }
-            continue;
-        }
-        open.push_back({e.a, e.b, edge});
-        while (!open.empty()) {
-            const Piece p = open.back();
-            open.pop_back();
-            const Point u = points_[as_size(p.a)];
-            const Point v = points_[as_size(p.b)];
-            if (!pieces_too_long(e, u, v, sized)) {
-                pieces_.push_back(p);
-                continue;
-            }
-            if (points_.size() > 100000000)
-                throw Error(ErrorCode::too_large, "size", "size: more than 1e8 pieces of edges; use a larger size");
-            const Id m = as_id(points_.size());
-            points_.push_back(split_place(e, u, v));
-            point_edge_.push_back(edge);
-            open.push_back({m, p.b, edge});
-            open.push_back({p.a, m, edge});
-        }
-    }
-}
-
-/// Chords must lie to each other as their arcs do: no point may stand between a chord and its arc, and no two pieces may have
-/// the same chord. Arcs that break this are split in halves.
-TEPOR_INLINE void Refiner::part_crossing_chords() {
-    if (graph_.arcs.empty()) return;
-    for (int round = 0; round < 60; ++round) {
-        EdgeGrid grid;
-        for (Point p : points_) grid.add(p, p);
-        grid.build();
-        std::vector<std::pair<std::pair<Id, Id>, std::size_t>> chords;
-        std::vector<char> bad(pieces_.size(), 0);
-        bool any = false;
-        for (std::size_t i = 0; i < pieces_.size(); ++i) {
-            const Piece& piece = pieces_[i];
-            chords.push_back({std::minmax(piece.a, piece.b), i});
-            const auto& e = graph_.edges[as_size(piece.edge)];
-            if (e.arc < 0) continue;
-            const MeshArc& arc = graph_.arcs[as_size(e.arc)];
-            const Point a = points_[as_size(piece.a)];
-            const Point b = points_[as_size(piece.b)];
-            const double height = arc_height(arc, a, b);
-            const double length = distance(a, b);
-            const double side = cross(b - a, arc.centre - a) > 0.0 ? 1.0 : -1.0;
-            grid.visit(a, b, height, [&](std::size_t k) {
-                if (k == as_size(piece.a) || k == as_size(piece.b) || bad[i] != 0) return;
-                const Point p = points_[k];
-                const double along = dot(p - a, b - a);
-                if (along <= 0.0 || along >= length * length) return;
-                if (side * cross(b - a, p - a) < 1e-3 * height * length && distance(p, arc.centre) < arc.radius)
-                    bad[i] = 1;
-            });
-            any = any || bad[i] != 0;
-        }
-        std::sort(chords.begin(), chords.end());
-        for (std::size_t i = 1; i < chords.size(); ++i)
-            if (chords[i].first == chords[i - 1].first)
-                for (std::size_t k : {i - 1, i}) {
-                    const std::size_t piece = chords[k].second;
-                    if (graph_.edges[as_size(pieces_[piece].edge)].arc >= 0) bad[piece] = 1;
-                    any = true;
-                }
-        if (!any) return;
-        std::vector<Piece> next;
-        for (std::size_t i = 0; i < pieces_.size(); ++i) {
-            const Piece piece = pieces_[i];
-            if (bad[i] == 0) {
-                next.push_back(piece);
-                continue;
-            }
-            const Point a = points_[as_size(piece.a)];
-            const Point b = points_[as_size(piece.b)];
-            if (distance(a, b) < 8.0 * graph_.tolerance)
-                fail(a, "an arc and another edge run closer than the tolerance");
-            const Id m = as_id(points_.size());
-            points_.push_back(split_place(graph_.edges[as_size(piece.edge)], a, b));
-            point_edge_.push_back(piece.edge);
-            next.push_back({piece.a, m, piece.edge});
-            next.push_back({m, piece.b, piece.edge});
-        }
-        pieces_.swap(next);
-    }
-    fail(points_.front(), "arcs and other edges run too close to each other");
-}
-
-TEPOR_INLINE void Refiner::insert_pieces() {
-    const std::vector<Id> order = space_order(points_);
-    std::vector<Id> vertex(points_.size(), -1);
-    Id hint = 0;
-    for (Id k : order) {
-        const Index before = static_cast<Index>(mesh.points.size());
-        vertex[as_size(k)] = mesh.insert(points_[as_size(k)], hint);
-        if (static_cast<Index>(mesh.points.size()) == before) fail(points_[as_size(k)], "two points coincide");
-        hint = mesh.out[as_size(vertex[as_size(k)])];
-    }
-    vertex_of_point.assign(vertex.begin(), vertex.begin() + static_cast<Index>(graph_.points.size()));
-    const std::size_t n = mesh.points.size();
-    vertex_edge_.assign(n, -1);
-    vertex_point_.assign(n, -1);
-    for (std::size_t k = 0; k < points_.size(); ++k) {
-        vertex_edge_[as_size(vertex[k])] = point_edge_[k];
-        if (k < graph_.points.size()) vertex_point_[as_size(vertex[k])] = as_id(k);
-    }
-    for (const Piece& piece : pieces_) {
-        const Id a = vertex[as_size(piece.a)];
-        const Id b = vertex[as_size(piece.b)];
-        const Id end = mesh.force_edge(a, b, as_id(edge_of_segment.size()));
-        if (end < 0) fail(mesh.at(mesh.from(-1 - end)), "two edges cross there or run closer than the tolerance");
-        if (end != b) fail(mesh.at(end), "a point lies on an edge without being part of it");
-        edge_of_segment.push_back(piece.edge);
-        // The half-edge in the direction of the graph's edge.
-        const Id h = mesh.find_edge(a, b);
-        mesh.segment_edge.back() = h;
-    }
-}
-
-TEPOR_INLINE void Refiner::flood() {
-    std::fill(mesh.label.begin(), mesh.label.end(), -2);
-    std::vector<Id> stack;
-    const auto give = [&](Id half, Id label) {
-        if (half < 0) return;
-        Id& now = mesh.label[as_size(half / 3)];
-        if (now == -2) {
-            now = label;
-            stack.push_back(half / 3);
-        } else if (now != label) {
-            fail(mesh.at(mesh.from(half)), "the regions beside an edge contradict each other");
-        }
-    };
-    // After force_edge of later pieces half-edges may have moved: find them by their ends.
-    for (std::size_t s = 0; s < pieces_.size(); ++s) {
-        const Piece& piece = pieces_[s];
-        const auto& e = graph_.edges[as_size(piece.edge)];
-        Id h = mesh.segment_edge[s];
-        if (!(mesh.at(mesh.from(h)) == points_[as_size(piece.a)])) h = mesh.twin[as_size(h)];
-        mesh.segment_edge[s] = h;
-        give(h, e.left);
-        give(mesh.twin[as_size(h)], e.right);
-    }
-    while (!stack.empty()) {
-        const Id t = stack.back();
-        stack.pop_back();
-        for (Id h = 3 * t; h < 3 * t + 3; ++h)
-            if (mesh.segment[as_size(h)] < 0) give(mesh.twin[as_size(h)], mesh.label[as_size(t)]);
-    }
-    for (Id& label : mesh.label)
-        if (label == -2) label = -1;
-}
 
 TEPOR_INLINE double Refiner::target_at(Point p, Id region) const {
     double size = targets_.size;
@@ -312,14 +34,6 @@ TEPOR_INLINE double Refiner::target_at(Point p, Id region) const {
         size = std::min(size, asked);
     }
     return size;
-}
-
-TEPOR_INLINE void Refiner::start(bool sized) {
-    mark_sharp_corners();
-    subdivide(sized);
-    part_crossing_chords();
-    insert_pieces();
-    flood();
 }
 
 TEPOR_INLINE void Refiner::sync_vertex(Id vertex, Id edge, double size) {
@@ -372,34 +86,46 @@ TEPOR_INLINE bool Refiner::across_sharp_corner(Id p, Id q) const {
     return false;
 }
 
+/// Squared sides and twice the area of a triangle.
+struct TriangleMeasure {
+    double side[3];
+    double area;
+    double product;
+
+    TriangleMeasure(Point a, Point b, Point c)
+        : side{dot(b - a, b - a), dot(c - b, c - b), dot(a - c, a - c)}, area(cross(b - a, c - a)),
+          product(side[0] * side[1] * side[2]) {}
+
+    [[nodiscard]] int shortest() const noexcept {
+        return side[0] <= side[1] ? (side[0] <= side[2] ? 0 : 2) : (side[1] <= side[2] ? 1 : 2);
+    }
+    /// sin^2 of the least angle = (shortest side / 2R)^2, R^2 = product / (4 area^2).
+    [[nodiscard]] double least_sine_squared() const noexcept {
+        return std::min({side[0], side[1], side[2]}) * area * area / product;
+    }
+};
+
+/// An angle below 25 degrees that can be mended.
+TEPOR_INLINE bool Refiner::bad_angle(Id triangle) const {
+    const Id* o = mesh.org.data() + Index{3} * triangle;
+    const TriangleMeasure m(mesh.at(o[0]), mesh.at(o[1]), mesh.at(o[2]));
+    if (m.least_sine_squared() >= least_sine_squared * (1.0 - 1e-9)) return false;
+    const int k = m.shortest();
+    if (across_sharp_corner(o[k], o[k == 2 ? 0 : k + 1])) return false;
+    // The least angle stands in a sharp corner between two held edges: nothing can widen it.
+    const Id point = vertex_point_[as_size(o[k == 0 ? 2 : k - 1])];
+    if (point < 0 || sharp_[as_size(point)] == 0) return true;
+    const Id h = Id{3} * triangle + k;
+    return mesh.segment[as_size(Delaunay::next(h))] < 0 || mesh.segment[as_size(Delaunay::prev(h))] < 0;
+}
+
 TEPOR_INLINE int Refiner::verdict(Id triangle) const {
     const Id* o = mesh.org.data() + Index{3} * triangle;
-    const Point a = mesh.at(o[0]);
-    const Point b = mesh.at(o[1]);
-    const Point c = mesh.at(o[2]);
-    const Point ab = b - a;
-    const Point bc = c - b;
-    const Point ca = a - c;
-    const double l[3] = {dot(ab, ab), dot(bc, bc), dot(ca, ca)};
-    const double area = cross(ab, c - a); // twice
-    const double product = l[0] * l[1] * l[2];
+    const TriangleMeasure m(mesh.at(o[0]), mesh.at(o[1]), mesh.at(o[2]));
     const double size = (size_[as_size(o[0])] + size_[as_size(o[1])] + size_[as_size(o[2])]) * (radius_per_size / 3.0);
-    // R^2 = product / (2 area)^2 with twice the area a: R^2 = product / (4 a^2).
-    if (product > 4.0 * area * area * size * size) return 1;
-    const int k = l[0] <= l[1] ? (l[0] <= l[2] ? 0 : 2) : (l[1] <= l[2] ? 1 : 2);
-    // sin of the least angle = shortest side / 2R.
-    if (l[k] * area * area >= least_sine_squared * (1.0 - 1e-9) * product) return 0;
-    const Id p = o[k];
-    const Id q = o[k == 2 ? 0 : k + 1];
-    const Id top = o[k == 0 ? 2 : k - 1];
-    if (across_sharp_corner(p, q)) return 0;
-    // The least angle stands in a sharp corner between two held edges: nothing can widen it.
-    const Id point = vertex_point_[as_size(top)];
-    if (point >= 0 && sharp_[as_size(point)] != 0) {
-        const Id h = Id{3} * triangle + k;
-        if (mesh.segment[as_size(Delaunay::next(h))] >= 0 && mesh.segment[as_size(Delaunay::prev(h))] >= 0) return 0;
-    }
-    return 2;
+    if (m.product > 4.0 * m.area * m.area * size * size) return 1;
+    if (m.least_sine_squared() >= least_sine_squared * (1.0 - 1e-9)) return 0;
+    return bad_angle(triangle) ? 2 : 0;
 }
 
 TEPOR_INLINE void Refiner::judge(Id triangle) {
@@ -443,9 +169,10 @@ TEPOR_INLINE void Refiner::settle(Id vertex) {
     const Point p = mesh.at(vertex);
     double size = size_[as_size(vertex)];
     for (const Id h : mesh.star) {
-        if (mesh.label[as_size(h / 3)] < 0) continue;
         const Id a = mesh.from(h);
         const Id b = mesh.to(h);
+        if (!(distance(p, mesh.at(a)) > 1e-3 * graph_.tolerance)) fail(p, "edges run together at too sharp an angle");
+        if (mesh.label[as_size(h / 3)] < 0) continue;
         size = std::min(size, size_[as_size(a)] + targets_.growth * distance(p, mesh.at(a)));
         size = std::min(size, size_[as_size(b)] + targets_.growth * distance(p, mesh.at(b)));
     }
@@ -480,7 +207,7 @@ TEPOR_INLINE void Refiner::split_segment(Id segment, int depth) {
         const double t = dot(target - a, b - a) / (length * length);
         first = a + t * (b - a);
     }
-    const double half = 1.2 * std::max(distance(a, target), distance(b, target));
+    const double half = size_per_piece * std::max(distance(a, target), distance(b, target));
     const double mean = 0.5 * (size_[as_size(mesh.from(h))] + size_[as_size(mesh.to(h))]);
     const Id v = mesh.split_edge(h, first);
     if (v < 0) fail(first, "an edge and a point run closer than numbers can tell");
@@ -554,12 +281,16 @@ TEPOR_INLINE void Refiner::mend(Id triangle, int fault, bool plain) {
             triangles_.push_back(triangle);
         }
     };
+    // A triangle a little too large beside pieces of the right length may stay, but not one with a bad angle.
+    const auto give_up = [&] {
+        if (fault == 1 && bad_angle(triangle)) mend(triangle, 2, plain);
+    };
     if (found.blocked) {
         const Id s = mesh.segment[as_size(found.half)];
         if (s < 0) fail(centre, "the refinement left the drawing");
         if (fault == 1) {
             const Id k = found.half;
-            if (distance(mesh.at(mesh.from(k)), mesh.at(mesh.to(k))) <= 1.1 * mean_size) return;
+            if (distance(mesh.at(mesh.from(k)), mesh.at(mesh.to(k))) <= 1.1 * mean_size) return give_up();
         }
         again();
         split_segment(s, 0);
@@ -585,7 +316,8 @@ TEPOR_INLINE void Refiner::mend(Id triangle, int fault, bool plain) {
     }
     if (!free) {
         if (!plain && fault == 1) return mend(triangle, fault, true);
-        if (split) again();
+        if (!split) return give_up();
+        again();
         return;
     }
     const Id v = mesh.fill_cavity(centre);
@@ -593,28 +325,74 @@ TEPOR_INLINE void Refiner::mend(Id triangle, int fault, bool plain) {
     settle(v);
 }
 
+/// Move free vertices to the mean of their neighbours where that widens the least angle around them, then flip.
+TEPOR_INLINE void Refiner::smooth() {
+    std::vector<Point> ring;
+    for (Id v = 4; v < static_cast<Id>(mesh.points.size()); ++v) {
+        if (vertex_edge_[as_size(v)] >= 0 || vertex_point_[as_size(v)] >= 0) continue;
+        if (mesh.label[as_size(mesh.out[as_size(v)] / 3)] < 0) continue;
+        ring.clear();
+        mesh.star.clear();
+        Point mean;
+        mesh.around(v, [&](Id h) {
+            ring.push_back(mesh.at(mesh.to(h)));
+            mesh.star.push_back(Delaunay::next(h));
+            mean = mean + ring.back();
+        });
+        const std::size_t n = ring.size();
+        mean = (1.0 / as_double(n)) * mean;
+        const Point old = mesh.at(v);
+        double before = 1.0;
+        double after = 1.0;
+        for (std::size_t i = 0; i < n; ++i) {
+            const Point a = ring[i];
+            const Point b = ring[i + 1 == n ? 0 : i + 1];
+            before = std::min(before, TriangleMeasure(a, b, old).least_sine_squared());
+            const TriangleMeasure moved(a, b, mean);
+            after = std::min(after, moved.area > 0.0 ? moved.least_sine_squared() : -1.0);
+        }
+        if (!(after > before)) continue;
+        mesh.points[as_size(v)] = mean;
+        mesh.mend_around(v);
+    }
+}
+
 TEPOR_INLINE void Refiner::refine() {
     // Sizes in the wrong unit are told before the work is done: triangles are about 0.43 size^2 each.
     double least = 0.0;
     for (Index t = 0; t < mesh.triangles(); ++t) {
         const Id region = mesh.label[as_size(t)];
+        for (Index h = 3 * t; h < 3 * t + 3; ++h)
+            if (!(distance(mesh.at(mesh.from(as_id(h))), mesh.at(mesh.to(as_id(h)))) > 1e-3 * graph_.tolerance))
+                fail(mesh.at(mesh.from(as_id(h))), "edges run together at too sharp an angle");
         if (region < 0) continue;
         const Id* o = mesh.org.data() + 3 * t;
         const double size =
             as_size(region) < targets_.region_size.size() ? targets_.region_size[as_size(region)] : targets_.size;
         least += 0.5 * cross(mesh.at(o[1]) - mesh.at(o[0]), mesh.at(o[2]) - mesh.at(o[0])) / (0.43 * size * size);
     }
-    const auto refuse = [&](const std::string& count) {
+    const auto refuse = [&](double count) {
+        Id shortest = 0;
+        double length = 1e300;
+        for (std::size_t s = 0; s < edge_of_segment.size(); ++s) {
+            const Id h = mesh.segment_edge[s];
+            const double l = distance(mesh.at(mesh.from(h)), mesh.at(mesh.to(h)));
+            if (l >= length) continue;
+            length = l;
+            shortest = mesh.from(h);
+        }
+        const Point p = mesh.at(shortest);
         throw Error(ErrorCode::too_large, "size",
-                    text("size: ", count, " triangles, more than ", targets_.most_triangles,
-                         "; use a larger size, or raise Meshing::most_triangles"));
+                    text("size: about ", count, " triangles or more, over most_triangles = ", targets_.most_triangles,
+                         "; the shortest piece of an edge is ", length, " m long, near (", p.x, ", ", p.y,
+                         "); use a larger size, or draw no strips that narrow, or raise most_triangles"));
     };
-    if (least > 1.5 * as_double(targets_.most_triangles)) refuse(text("about ", least));
+    if (least > 1.5 * as_double(targets_.most_triangles)) refuse(least);
     size_.assign(mesh.points.size(), 1e300);
     for (std::size_t s = 0; s < pieces_.size(); ++s) {
         const Id h = mesh.segment_edge[s];
         const auto& e = graph_.edges[as_size(edge_of_segment[s])];
-        const double length = 1.2 * distance(mesh.at(mesh.from(h)), mesh.at(mesh.to(h)));
+        const double length = size_per_piece * distance(mesh.at(mesh.from(h)), mesh.at(mesh.to(h)));
         for (Id v : {mesh.from(h), mesh.to(h)})
             size_[as_size(v)] = std::min({size_[as_size(v)], e.size, length, target_at(mesh.at(v), -1)});
     }
@@ -642,8 +420,9 @@ TEPOR_INLINE void Refiner::refine() {
             if (mesh.label[as_size(t)] < 0) continue;
             if (const int fault = verdict(t); fault != 0) mend(t, fault, false);
         }
-        if (mesh.triangles() > targets_.most_triangles) refuse("the mesh has come to");
+        if (mesh.triangles() > targets_.most_triangles) refuse(as_double(mesh.triangles()));
     }
+    for (int sweep = 0; sweep < smoothing_sweeps; ++sweep) smooth();
 }
 
 } // namespace tepor::detail

@@ -89,4 +89,11 @@ TEPOR_INLINE void Section::hold(Point p) {
     held_.push_back(p);
 }
 
+TEPOR_INLINE void Section::tolerance(double distance) {
+    if (!(distance > 0.0 && std::isfinite(distance)))
+        throw Error(ErrorCode::bad_value, "tolerance",
+                    detail::text("section: tolerance = ", distance, ", expected a length > 0 [m]"));
+    tolerance_ = distance;
+}
+
 } // namespace tepor

@@ -112,18 +112,18 @@ struct TileCell {
 /// The cells of one tile. `steps` is the number of lattice steps along a tile's edge.
 TEPOR_INLINE std::vector<TileCell> tile_cells(CellShape shape, Diagonals diagonals, Index steps,
                                               const std::vector<Point>& reference_nodes) {
-    // Vertices of the cells in half edges of the tile.
+    // Vertices of the cells in half edges of the tile; the diagonal lies opposite vertex 0, where bisection begins.
     using Vertices = std::vector<Point>;
     std::vector<Vertices> cells;
     if (shape == CellShape::quadrilateral)
         cells = {{{0, 0}, {2, 0}, {2, 2}, {0, 2}}};
     else if (diagonals == Diagonals::crossed)
         cells = {
-            {{0, 0}, {2, 0}, {1, 1}}, {{2, 0}, {2, 2}, {1, 1}}, {{2, 2}, {0, 2}, {1, 1}}, {{0, 2}, {0, 0}, {1, 1}}};
+            {{1, 1}, {0, 0}, {2, 0}}, {{1, 1}, {2, 0}, {2, 2}}, {{1, 1}, {2, 2}, {0, 2}}, {{1, 1}, {0, 2}, {0, 0}}};
     else if (diagonals == Diagonals::rising)
-        cells = {{{0, 0}, {2, 0}, {2, 2}}, {{0, 0}, {2, 2}, {0, 2}}};
+        cells = {{{2, 0}, {2, 2}, {0, 0}}, {{0, 2}, {0, 0}, {2, 2}}};
     else
-        cells = {{{0, 0}, {2, 0}, {0, 2}}, {{2, 0}, {2, 2}, {0, 2}}};
+        cells = {{{0, 0}, {2, 0}, {0, 2}}, {{2, 2}, {0, 2}, {2, 0}}};
 
     std::vector<TileCell> out;
     for (const Vertices& v : cells) {

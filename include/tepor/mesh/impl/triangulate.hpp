@@ -36,7 +36,7 @@ TEPOR_INLINE void validate(const Meshing& m) {
 TEPOR_INLINE Targets make_targets(const Meshing& meshing, const Section& section, Picture& picture) {
     PlaneGraph& graph = picture.graph;
     Targets targets;
-    targets.size = meshing.size > 0.0 ? meshing.size : graph.tolerance * 1e9 / 40.0;
+    targets.size = meshing.size > 0.0 ? meshing.size : graph.diagonal / 40.0;
     targets.law = meshing.law;
     targets.growth = meshing.growth;
     targets.turn = meshing.turn * pi / 180.0;

@@ -239,7 +239,7 @@ TEPOR_INLINE MeshReport verify_angles(const MeshData& mesh, const CellKind& kind
 }
 
 /// No vertex lies on the outer edge of another cell, and outer edges do not cross.
-TEPOR_INLINE MeshReport verify_outline(const MeshData& mesh, const SideMap& sides) {
+TEPOR_INLINE MeshReport verify_outline(const MeshData& mesh, const SideMap& sides, double size) {
     if (mesh.dim == 1) {
         std::vector<Id> order(as_size(mesh.cell_count()));
         std::iota(order.begin(), order.end(), 0);
@@ -270,7 +270,7 @@ TEPOR_INLINE MeshReport verify_outline(const MeshData& mesh, const SideMap& side
         const Point a = mesh.nodes[as_size(ia)];
         const Point z = mesh.nodes[as_size(iz)];
         const double length = distance(a, z);
-        const double near = 1e-6 * length;
+        const double near = std::min(1e-6 * length, 0.9e-9 * size); // gaps wider than a drawing's tolerance are meant
         grid.visit(a, z, near, [&](std::size_t j) {
             if (j == i || !report) return;
             const Id ib = node(outer[j], 0);
@@ -369,7 +369,7 @@ TEPOR_INLINE MeshReport verify(const MeshData& mesh, const CellKind& kind) {
     if (report = verify_sides(mesh, kind, sides); !report) return report;
     if (mesh.dim == 2)
         if (report = verify_angles(mesh, kind, sides); !report) return report;
-    if (report = verify_outline(mesh, sides); !report) return report;
+    if (report = verify_outline(mesh, sides, size); !report) return report;
     return verify_faces(mesh, kind, size);
 }
 
