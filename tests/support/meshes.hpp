@@ -15,12 +15,12 @@
 namespace tepor::test {
 
 /// n x n squares on the unit square, whole or as two triangles each, or n segments; the left half is region "left", the rest
-/// "right"; faces "bottom" and "right side" (1D: "left end"). Inner vertices are moved about by a quarter of the width.
+/// "right"; faces "bottom" and "right side" (1D: "left end"). Inner vertices are moved about by up to `distortion` of the width.
 template <class E>
-Mesh<E> unit_mesh(int n, unsigned seed = 1) {
+Mesh<E> unit_mesh(int n, unsigned seed = 1, double distortion = 0.25) {
     Mesh<E> mesh;
     std::mt19937 random(seed);
-    std::uniform_real_distribution<double> shift(-0.25 / n, 0.25 / n);
+    std::uniform_real_distribution<double> shift(-distortion / n, distortion / n);
     const auto size = [](auto i) { return static_cast<std::size_t>(i); };
     std::vector<Id> corners;
     mesh.region_names = {"left", "right"};

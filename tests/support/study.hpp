@@ -19,6 +19,11 @@ struct Study {
     }
     [[nodiscard]] double order() const { return order(h.size() - 1); }
 
+    /// Order over the whole range: on random meshes single steps scatter.
+    [[nodiscard]] double mean_order() const {
+        return std::log(error.front() / error.back()) / std::log(h.front() / h.back());
+    }
+
     /// One row per mesh: h, error, order.
     [[nodiscard]] std::string text() const {
         std::string out = "\n           h        error   order\n";
