@@ -33,7 +33,8 @@ int main(void) {
     DONE(tepor_tiles_add(session, tiles, "metal", 0.0, 0.0, 0.1, 0.1));
     DONE(tepor_tiles_mesh(session, tiles, TEPOR_QUADRILATERAL_1, 0.05, tepor_planar(1.0), &mesh));
     DONE(tepor_body_create(session, mesh, 0, &body));
-    DONE(tepor_body_in_material(session, body, "metal", tepor_number(200.0), tepor_number(2700.0), tepor_number(900.0)));
+    DONE(
+        tepor_body_in_material(session, body, "metal", tepor_number(200.0), tepor_number(2700.0), tepor_number(900.0)));
     DONE(tepor_body_in_generation_total(session, body, "metal", tepor_of(power)));
     DONE(tepor_body_on_film(session, body, "right", tepor_number(0.5), tepor_number(20.0)));
     DONE(tepor_quantity_at(session, 0.05, 0.05, "", &middle));
@@ -61,7 +62,8 @@ int main(void) {
     EXPECT(fabs(tepor_march_read(march, probe) - before - (100.0 - 0.05 * (before - 20.0)) * 1000.0 / capacity) <= 0.1);
     DONE(tepor_march_time_to_reach(session, march, middle, before + 20.0, 1e6, &time));
     EXPECT(time > tepor_march_time(march) - 100.0 && time <= tepor_march_time(march));
-    EXPECT(tepor_march_time_to_reach(session, march, middle, -50.0, tepor_march_time(march) + 1000.0, &time) == TEPOR_NO_ANSWER);
+    EXPECT(tepor_march_time_to_reach(session, march, middle, -50.0, tepor_march_time(march) + 1000.0, &time) ==
+           TEPOR_NO_ANSWER);
     EXPECT(isnan(tepor_march_read(march, 5)));
     EXPECT(tepor_march_advance(NULL) == 16);
 

@@ -148,10 +148,12 @@ static void refusals(tepor_session* session) {
     EXPECT(tepor_parameter_create(NULL, "p", 1.0, &parameter) == TEPOR_INVALID_ARGUMENT);
     EXPECT(parameter == NULL);
     const tepor_layer stack[1] = {{"slab", tepor_number(0.5), 4, 0.0}};
-    EXPECT(tepor_layers_create(session, TEPOR_TRIANGLE_1, stack, 1, tepor_planar(1.0), tepor_nothing(), &mesh) == TEPOR_INVALID_ARGUMENT);
+    EXPECT(tepor_layers_create(session, TEPOR_TRIANGLE_1, stack, 1, tepor_planar(1.0), tepor_nothing(), &mesh) ==
+           TEPOR_INVALID_ARGUMENT);
     DONE(tepor_layers_create(session, TEPOR_SEGMENT_1, stack, 1, tepor_planar(1.0), tepor_nothing(), &mesh));
     DONE(tepor_body_create(session, mesh, 0, &body));
-    EXPECT(tepor_body_in_material(session, body, "slap", tepor_number(2.0), tepor_nothing(), tepor_nothing()) == TEPOR_BAD_NAME);
+    EXPECT(tepor_body_in_material(session, body, "slap", tepor_number(2.0), tepor_nothing(), tepor_nothing()) ==
+           TEPOR_BAD_NAME);
     EXPECT(strstr(tepor_session_message(session), "\"slab\"") != NULL);
     DONE(tepor_body_in_material(session, body, "slab", tepor_number(2.0), tepor_nothing(), tepor_nothing()));
     EXPECT(tepor_steady(session, body, &field) == TEPOR_NO_LEVEL);

@@ -77,8 +77,8 @@ typedef struct tepor_section tepor_section;     /* a drawing of any shapes */
 typedef struct tepor_mesh tepor_mesh;
 typedef struct tepor_body tepor_body;
 typedef struct tepor_quantity tepor_quantity; /* a scalar asked of a temperature field */
-typedef struct tepor_field tepor_field;       /* a temperature field: a snapshot, later calls on the body do not touch it */
-typedef struct tepor_march tepor_march;       /* a body through time */
+typedef struct tepor_field tepor_field; /* a temperature field: a snapshot, later calls on the body do not touch it */
+typedef struct tepor_march tepor_march; /* a body through time */
 
 /* Version of the library, such as "0.1.0"; never NULL. */
 TEPOR_C_API const char* tepor_version(void);
@@ -247,9 +247,11 @@ TEPOR_C_API size_t tepor_mesh_node_count(const tepor_mesh* mesh);
 TEPOR_C_API size_t tepor_mesh_cell_count(const tepor_mesh* mesh);
 TEPOR_C_API size_t tepor_mesh_nodes_per_cell(const tepor_mesh* mesh);
 /* x and y of every node in turn [m] into `places`, 2 * node_count entries. */
-TEPOR_C_API tepor_status tepor_mesh_places(tepor_session* session, const tepor_mesh* mesh, double* places, size_t entries);
+TEPOR_C_API tepor_status tepor_mesh_places(tepor_session* session, const tepor_mesh* mesh, double* places,
+                                           size_t entries);
 /* Node numbers cell after cell into `cells`, cell_count * nodes_per_cell entries. */
-TEPOR_C_API tepor_status tepor_mesh_cells(tepor_session* session, const tepor_mesh* mesh, int32_t* cells, size_t entries);
+TEPOR_C_API tepor_status tepor_mesh_cells(tepor_session* session, const tepor_mesh* mesh, int32_t* cells,
+                                          size_t entries);
 
 /* ---------------------------------------------------------------------------------------------------------------- body */
 
@@ -263,7 +265,8 @@ TEPOR_C_API void tepor_body_free(tepor_body* body);
 /* In a region. Conductivity [W/(m K)]; density [kg/m3] and specific heat [J/(kg K)] count in marching only and may be
  * tepor_nothing(). TEPOR_BAD_NAME, TEPOR_BAD_VALUE, TEPOR_BAD_UNIT, TEPOR_CONTRADICTION. */
 TEPOR_C_API tepor_status tepor_body_in_material(tepor_session* session, tepor_body* body, const char* region,
-                                                tepor_value conductivity, tepor_value density, tepor_value specific_heat);
+                                                tepor_value conductivity, tepor_value density,
+                                                tepor_value specific_heat);
 /* The same with conductivities along x (radius) and y (axis); 2D. */
 TEPOR_C_API tepor_status tepor_body_in_orthotropic(tepor_session* session, tepor_body* body, const char* region,
                                                    tepor_value along_x, tepor_value along_y, tepor_value density,
@@ -273,8 +276,8 @@ TEPOR_C_API tepor_status tepor_body_in_melting(tepor_session* session, tepor_bod
                                                tepor_value conductivity, tepor_value density, tepor_value specific_heat,
                                                tepor_value latent_heat, tepor_value solidus, tepor_value liquidus);
 /* Heat generated per volume [W/m3], or in all cells of the region together [W] for the frame's size. */
-TEPOR_C_API tepor_status tepor_body_in_generation_per_volume(tepor_session* session, tepor_body* body, const char* region,
-                                                             tepor_value watts_per_m3);
+TEPOR_C_API tepor_status tepor_body_in_generation_per_volume(tepor_session* session, tepor_body* body,
+                                                             const char* region, tepor_value watts_per_m3);
 TEPOR_C_API tepor_status tepor_body_in_generation_total(tepor_session* session, tepor_body* body, const char* region,
                                                         tepor_value watts);
 /* Loss from the sides of a bar with wetted perimeter [m] (1D planar, section = the frame's area), or of a plate of
@@ -282,8 +285,8 @@ TEPOR_C_API tepor_status tepor_body_in_generation_total(tepor_session* session, 
 TEPOR_C_API tepor_status tepor_body_in_side_film_bar(tepor_session* session, tepor_body* body, const char* region,
                                                      tepor_value coefficient, tepor_value fluid, tepor_value perimeter);
 TEPOR_C_API tepor_status tepor_body_in_side_film_plate(tepor_session* session, tepor_body* body, const char* region,
-                                                       tepor_value coefficient, tepor_value fluid, tepor_value thickness,
-                                                       int32_t wet_sides);
+                                                       tepor_value coefficient, tepor_value fluid,
+                                                       tepor_value thickness, int32_t wet_sides);
 
 /* On a face; different kinds add up, the same kind twice is TEPOR_CONTRADICTION. */
 /* Film coefficient [W/(m2 K)], fluid [degC]. */
@@ -331,7 +334,8 @@ TEPOR_C_API tepor_status tepor_quantity_coldest_in(tepor_session* session, const
 TEPOR_C_API tepor_status tepor_quantity_hottest_on(tepor_session* session, const char* face, tepor_quantity** out);
 TEPOR_C_API tepor_status tepor_quantity_coldest_on(tepor_session* session, const char* face, tepor_quantity** out);
 /* Heat through a face, from one region to another, and generated in a region [W], for the frame's size. */
-TEPOR_C_API tepor_status tepor_quantity_heat_out_through(tepor_session* session, const char* face, tepor_quantity** out);
+TEPOR_C_API tepor_status tepor_quantity_heat_out_through(tepor_session* session, const char* face,
+                                                         tepor_quantity** out);
 TEPOR_C_API tepor_status tepor_quantity_heat_in_through(tepor_session* session, const char* face, tepor_quantity** out);
 TEPOR_C_API tepor_status tepor_quantity_heat_from(tepor_session* session, const char* region, const char* to,
                                                   tepor_quantity** out);
@@ -380,12 +384,13 @@ TEPOR_C_API tepor_status tepor_field_balance(tepor_session* session, const tepor
 
 /* How to march. Start from tepor_march_options_default(), then change what is wanted. */
 typedef struct tepor_march_options {
-    size_t size;          /* sizeof(tepor_march_options) */
-    double theta;         /* 0.5 to 1 */
-    double step;          /* [s]; 0: adaptive steps */
-    double tolerance;     /* adaptive: error per step [K] */
-    double largest_step;  /* adaptive [s]; 0: no limit */
-    int32_t damped_start; /* four backward-Euler half steps at the start and after jumps of schedules; not 0 by default */
+    size_t size;         /* sizeof(tepor_march_options) */
+    double theta;        /* 0.5 to 1 */
+    double step;         /* [s]; 0: adaptive steps */
+    double tolerance;    /* adaptive: error per step [K] */
+    double largest_step; /* adaptive [s]; 0: no limit */
+    int32_t
+        damped_start; /* four backward-Euler half steps at the start and after jumps of schedules; not 0 by default */
     int32_t newton_passes; /* fixed step, nonlinear: always this many; 0: until converged */
 } tepor_march_options;
 TEPOR_C_API tepor_march_options tepor_march_options_default(void);
@@ -393,8 +398,9 @@ TEPOR_C_API tepor_march_options tepor_march_options_default(void);
 /* A march from one temperature [degC], or from a field. TEPOR_BAD_VALUE, TEPOR_MISSING (density, specific heat). */
 TEPOR_C_API tepor_status tepor_march_create(tepor_session* session, const tepor_body* body, double temperature,
                                             const tepor_march_options* options, tepor_march** out);
-TEPOR_C_API tepor_status tepor_march_create_from(tepor_session* session, const tepor_body* body, const tepor_field* field,
-                                                 const tepor_march_options* options, tepor_march** out);
+TEPOR_C_API tepor_status tepor_march_create_from(tepor_session* session, const tepor_body* body,
+                                                 const tepor_field* field, const tepor_march_options* options,
+                                                 tepor_march** out);
 TEPOR_C_API void tepor_march_free(tepor_march* march);
 
 /* Before the loop: names and places are resolved once; the numbers are handles for this march. */
@@ -447,8 +453,9 @@ TEPOR_C_API tepor_status tepor_bracket(tepor_session* session, const tepor_body*
                                        tepor_bracket_result* result);
 
 /* The derivative of a quantity by each of `count` parameters at a steady field: one extra solve for all of them. */
-TEPOR_C_API tepor_status tepor_gradient(tepor_session* session, const tepor_field* field, const tepor_quantity* quantity,
-                                        const tepor_parameter* const* parameters, size_t count, double* slope);
+TEPOR_C_API tepor_status tepor_gradient(tepor_session* session, const tepor_field* field,
+                                        const tepor_quantity* quantity, const tepor_parameter* const* parameters,
+                                        size_t count, double* slope);
 
 typedef enum tepor_target_kind { TEPOR_EQUAL_TO = 0, TEPOR_AT_MOST = 1, TEPOR_AT_LEAST = 2 } tepor_target_kind;
 
@@ -466,9 +473,10 @@ typedef struct tepor_sized {
 } tepor_sized;
 /* The value of a parameter at which a quantity meets a target, sought between `from` and `to` (both 0: from 1/100 to 100
  * times its value). The body stays as it was. */
-TEPOR_C_API tepor_status tepor_size_for(tepor_session* session, const tepor_body* body, const tepor_parameter* parameter,
-                                        const tepor_quantity* quantity, tepor_target_kind kind, double target, double from,
-                                        double to, tepor_sized* result);
+TEPOR_C_API tepor_status tepor_size_for(tepor_session* session, const tepor_body* body,
+                                        const tepor_parameter* parameter, const tepor_quantity* quantity,
+                                        tepor_target_kind kind, double target, double from, double to,
+                                        tepor_sized* result);
 
 #ifdef __cplusplus
 }
