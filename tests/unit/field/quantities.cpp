@@ -168,11 +168,18 @@ TEST_CASE("in 1D a parabola's extremes, means and fluxes are exact in every fram
     }
 }
 
-TEST_CASE("stored heat and conductances are asked elsewhere, and the answer says where") {
-    Body body = two_regions<Quadrilateral<1>>();
-    const Field field = given_field(body.on("left", FixedTemperature{0.0}), slope_field);
-    check_refused([&] { (void)field[stored_in("left half")]; }, ErrorCode::not_supported, "stored in \"left half\"",
-                  "march");
+TEST_CASE("stored heat is the heat content above zero of the body's scale, and asks for what it needs") {
+    Body body = two_regions<Triangle<2>>();
+    body.on("left", FixedTemperature{0.0});
+    check_refused([&] { (void)given_field(body, slope_field)[stored_in("left half")]; }, ErrorCode::missing,
+                  "left half", "density");
+    body.replace("left half", Material{.conductivity = 2.0, .density = 1000.0, .specific_heat = 500.0});
+    const Field field = given_field(body, slope_field);
+    CHECK(close(field[stored_in("left half")], 1000.0 * 500.0 * slope_field({0.05, 0.1}) * 0.1 * 0.2 * 0.5));
+}
+
+TEST_CASE("a flow between a region and itself is refused") {
+    const Field field = given_field(two_regions<Quadrilateral<1>>().on("left", FixedTemperature{0.0}), slope_field);
     check_refused([&] { (void)field[heat_from("left half", "left half")]; }, ErrorCode::bad_name, "left half",
                   "different");
 }
