@@ -102,6 +102,7 @@
 #include <tepor/flux/equilibrated.hpp>
 #include <tepor/flux/fan.hpp>
 #include <tepor/flux/flux_load.hpp>
+#include <tepor/flux/given_trace.hpp>
 #include <tepor/flux/line.hpp>
 #include <tepor/flux/line_cell.hpp>
 #include <tepor/flux/loads.hpp>
@@ -109,6 +110,7 @@
 #include <tepor/flux/neighbours.hpp>
 #include <tepor/flux/problem.hpp>
 #include <tepor/flux/residual.hpp>
+#include <tepor/flux/round.hpp>
 #include <tepor/flux/sweep.hpp>
 #include <tepor/flux/tables2.hpp>
 #include <tepor/flux/weak_form.hpp>

@@ -180,6 +180,15 @@ class FluxCase {
                             : std::array{1 - t, t, 0.0};
     }
 
+    /// 1 in a plane section, the radius in r-z.
+    double radius(Index c, double l1, double l2) const {
+        if (mesh.frame.power() == 0) return 1.0;
+        return (1.0 - l1 - l2) * corner(c, 0).x + l1 * corner(c, 1).x + l2 * corner(c, 2).x;
+    }
+    double radius(CellSide s, double t) const {
+        return mesh.frame.power() == 0 ? 1.0 : (1.0 - t) * corner(s.cell, s.side).x + t * corner(s.cell, s.side + 1).x;
+    }
+
     double area(Index c) const { return 0.5 * cross(corner(c, 1) - corner(c, 0), corner(c, 2) - corner(c, 0)); }
     double length(CellSide s) const { return distance(corner(s.cell, s.side), corner(s.cell, s.side + 1)); }
 
@@ -215,9 +224,11 @@ class FluxCase {
                 Point g[6];
                 shapes(c, l1, l2, n, g);
                 for (int i = 0; i < mesh.nodes_per_cell; ++i) {
-                    load[d[i]] += w * area(c) * f * n[i];
+                    load[d[i]] += w * area(c) * radius(c, l1, l2) * f * n[i];
                     for (int j = 0; j < mesh.nodes_per_cell; ++j)
-                        entries.emplace_back(d[i], d[j], w * area(c) * (conduct(c, g[i], g[j]) + sink * n[i] * n[j]));
+                        entries.emplace_back(d[i], d[j],
+                                             w * area(c) * radius(c, l1, l2) *
+                                                 (conduct(c, g[i], g[j]) + sink * n[i] * n[j]));
                 }
             });
         }
@@ -238,7 +249,7 @@ class FluxCase {
                 std::array<Id, 3> who{}, other{};
                 std::array<double, 3> n{}, m{};
                 on_side(s.side, t, who, n);
-                const double l = w * length(s.side);
+                const double l = w * length(s.side) * radius(s.side, t);
                 if (s.kind == SideKind::contact) on_side(problem.sides[as_size(s.partner)].side, 1 - t, other, m);
                 for (std::size_t i = 0; i < 3; ++i) {
                     load[who[i]] += l * n[i] * (s.film * s.fluid - s.flux);

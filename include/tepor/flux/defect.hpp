@@ -87,6 +87,30 @@ struct Defect2 {
     }
 };
 
+/// The coefficients of the flux alone from its moments, its bubble and the integrals of the source against 1, x and y; also what
+/// the balance leaves over. Returns a bound of the size of what was added up.
+inline double flux_fields(const double* out, double bubble, const double (&load)[3], Defect2& d) noexcept {
+    const FluxTables2& t = flux_tables2();
+    d.left_over = load[0] - out[0] - out[3] - out[6];
+    d.traffic = std::abs(load[0]) + std::abs(out[0]) + std::abs(out[3]) + std::abs(out[6]);
+    double dofs[12];
+    for (int i = 0; i < 9; ++i) dofs[i] = out[i];
+    // Green: integral of s.grad x = outflow weighted with x - (divergence against x); what is left over spreads evenly.
+    dofs[9] = 0.5 * (out[0] + out[1] + out[3] - out[4]) - (load[1] - d.left_over / 3.0);
+    dofs[10] = 0.5 * (out[3] + out[4] + out[6] - out[7]) - (load[2] - d.left_over / 3.0);
+    dofs[11] = bubble;
+    for (int m = 0; m < 6; ++m) d.x[m] = d.y[m] = 0.0;
+    double size = 0.0;
+    for (int i = 0; i < 12; ++i) {
+        for (int m = 0; m < 6; ++m) {
+            d.x[m] += dofs[i] * t.dual[i][0][m];
+            d.y[m] += dofs[i] * t.dual[i][1][m];
+        }
+        size += std::abs(dofs[i]) * t.size[i];
+    }
+    return size;
+}
+
 inline Defect2 defect_order2(const FluxWork& work, const Equilibrated& flux, Index c) noexcept {
     const FluxProblem& problem = work.problem;
     const FluxTables2& t = flux_tables2();
@@ -110,23 +134,7 @@ inline Defect2 defect_order2(const FluxWork& work, const Equilibrated& flux, Ind
         load[1] = load[2] = load[0] / 3.0;
     }
     Defect2 d;
-    d.left_over = load[0] - out[0] - out[3] - out[6];
-    d.traffic = std::abs(load[0]) + std::abs(out[0]) + std::abs(out[3]) + std::abs(out[6]);
-    double dofs[12];
-    for (int i = 0; i < 9; ++i) dofs[i] = out[i];
-    // Green: integral of s.grad x = outflow weighted with x - (divergence against x); what is left over spreads evenly.
-    dofs[9] = 0.5 * (out[0] + out[1] + out[3] - out[4]) - (load[1] - d.left_over / 3.0);
-    dofs[10] = 0.5 * (out[3] + out[4] + out[6] - out[7]) - (load[2] - d.left_over / 3.0);
-    dofs[11] = flux.bubble[as_size(c)];
-    for (int m = 0; m < 6; ++m) d.x[m] = d.y[m] = 0.0;
-    double size = 0.0;
-    for (int i = 0; i < 12; ++i) {
-        for (int m = 0; m < 6; ++m) {
-            d.x[m] += dofs[i] * t.dual[i][0][m];
-            d.y[m] += dofs[i] * t.dual[i][1][m];
-        }
-        size += std::abs(dofs[i]) * t.size[i];
-    }
+    double size = flux_fields(out, flux.bubble[as_size(c)], load, d);
     const double level = work.temperature[dof[0]];
     double u[6];
     for (int i = 1; i < 6; ++i) u[i] = work.temperature[dof[i]] - level;

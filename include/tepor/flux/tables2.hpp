@@ -31,8 +31,9 @@ struct FluxTables2 {
     double
         linear[3]
               [6]; ///< basis coefficients of the barycentric coordinate of each vertex (only the first 3 are not zero)
-    double shape[6][6]; ///< basis coefficients of the P2 shape functions
-    double size[12];    ///< norm of the coefficients of each dual field
+    double at_node[6][6]; ///< value of basis function k at P2 node n (vertices, then middles of sides)
+    double shape[6][6];   ///< basis coefficients of the P2 shape functions
+    double size[12];      ///< norm of the coefficients of each dual field
 };
 
 /// Built once at first use (safe from several threads).

@@ -265,6 +265,30 @@ TEST_CASE("one dimension: wall of two layers with films, contact and source, bra
     holds(bracket(ball, mean_in("a"), {.relative_width = 1e-9}), 10.0 + 6e4 * 0.01 / 30.0, 1e-9);
 }
 
+TEST_CASE("body of revolution: mean temperature and heat flow of a finite cylinder, order 1") {
+    Section section;
+    section.add("solid", rectangle({0, 0}, {1, 1}));
+    section.face("cold", {0, 0}, {1, 0}, {1, 1});
+    section.face("cold", {1, 1}, {0, 1});
+    Body body{triangulate<Triangle<1>>(section, {.size = 0.3}, Cylindrical{})};
+    body.in("solid", Material{.conductivity = 1.0});
+    body.in("solid", Generation{.per_volume = 1.0});
+    body.on("cold", FixedTemperature{0.0});
+    // sines along the axis: H. S. Carslaw and J. C. Jaeger, Conduction of Heat in Solids, 2nd ed., section 8.3
+    double mean = 0.0;
+    for (int n = 1; n < 4000; n += 2) {
+        const double m = n * pi;
+        const double ratio = m < 600.0 ? std::cyl_bessel_i(1.0, m) / std::cyl_bessel_i(0.0, m) : 1.0 - 0.5 / m;
+        mean += 16.0 / (m * m * m * m) * (0.5 - ratio / m);
+    }
+    const Bracket inside = bracket(body, mean_in("solid"), {.relative_width = 2e-3});
+    CHECK(inside.reached);
+    holds(inside, mean, 1e-12);
+    CHECK(rate(inside) <= -0.9);
+    holds(bracket(body, heat_out_through("cold"), {.relative_width = 2e-3}), pi, 1e-12);
+    CHECK(says(refusal([&] { static_cast<void>(bracket(body, at({0.5, 0.5}))); }), "r-z"));
+}
+
 TEST_CASE("a curved section is bracketed as its polygon, and says so") {
     // eccentric annulus: S = 2 pi/acosh((D^2 + d^2 - 4 z^2)/(2 D d)); the polygon tends to it from below or above
     Section section;

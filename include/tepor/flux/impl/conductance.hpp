@@ -22,6 +22,9 @@ TEPOR_INLINE TwoSided conductance_bounds(const FluxProblem& problem, const doubl
         if (side.flux != 0.0 || side.trace >= 0)
             throw Error(ErrorCode::not_certifiable, "flux",
                         "a conductance is bracketed for bodies without given heat flows; ask for a heat flow");
+    if (mesh.dim == 1 || mesh.frame.power() > 0)
+        throw Error(ErrorCode::not_certifiable, "frame",
+                    "a conductance is bracketed for plane sections; ask for a heat flow");
     // The energies of the field alone and of the flux alone are defects of one with the other set to zero.
     const FluxWork work{problem, temperature, {}, {}, {}};
     Equilibrated still;

@@ -2,6 +2,7 @@
 // From patches to the bound: checks, sweep, defects cell by cell, what the solver left over.
 
 #include <algorithm>
+#include <limits>
 #include <tepor/base/error.hpp>
 #include <tepor/base/text.hpp>
 #include <tepor/flux/defect.hpp>
@@ -9,6 +10,7 @@
 #include <tepor/flux/line.hpp>
 #include <tepor/flux/neighbours.hpp>
 #include <tepor/flux/residual.hpp>
+#include <tepor/flux/round.hpp>
 #include <tepor/flux/sweep.hpp>
 
 namespace tepor {
@@ -22,9 +24,15 @@ inline void check_flux_problem(const FluxProblem& problem) {
     if (mesh.dim == 2 && mesh.order > 2)
         throw Error(ErrorCode::not_certifiable, "mesh",
                     text("no guaranteed bound for triangles of order ", mesh.order, "; use order 1 or 2, or estimate"));
-    if (mesh.dim == 2 && mesh.frame.power() > 0)
-        throw Error(ErrorCode::not_certifiable, "frame",
-                    "no guaranteed bound for bodies of revolution yet; use estimate");
+    if (mesh.dim == 2 && mesh.frame.power() > 0) {
+        if (mesh.order > 1)
+            throw Error(ErrorCode::not_certifiable, "mesh",
+                        "no guaranteed bound for triangles of order 2 in r-z; use order 1, or estimate");
+        if (!problem.sink.empty() || !problem.spread.empty() || !problem.stretch.empty() || !problem.traces.empty())
+            throw Error(
+                ErrorCode::not_certifiable, "frame",
+                "no guaranteed bound in r-z with side films, spots, conductivity tensors or radiation; use estimate");
+    }
     for (std::size_t c = 0; c < problem.conductivity.size(); ++c)
         if (!(problem.conductivity[c] > 0.0))
             throw Error(ErrorCode::bad_value, "conductivity",
@@ -37,9 +45,14 @@ inline void check_flux_problem(const FluxProblem& problem) {
                         static_cast<Index>(c));
 }
 
+/// A body of revolution in the r-z plane.
+inline bool is_round(const FluxProblem& problem) noexcept {
+    return problem.mesh->dim == 2 && problem.mesh->frame.power() > 0;
+}
+
 inline FluxWork prepare_flux(const FluxProblem& problem, const double* temperature) {
     return {problem, temperature, side_neighbours(*problem.mesh, problem.sides), side_moments(problem, temperature),
-            source_loads(problem, temperature)};
+            is_round(problem) ? round_loads(problem) : source_loads(problem, temperature)};
 }
 
 /// Largest ratio |integral of (g - mean g) v| / (|g - mean g| |||v|||) on a cell: L. E. Payne and H. F. Weinberger, Arch. Rational
@@ -68,26 +81,34 @@ TEPOR_INLINE Equilibrated equilibrate(const FluxProblem& problem, const double* 
     const std::size_t cells = as_size(mesh.cell_count());
     const FluxWork work = prepare_flux(problem, temperature);
     Equilibrated flux;
-    flux.per_side = mesh.order + 1;
+    const bool round = is_round(problem);
+    flux.per_side = round ? 3 : mesh.order + 1;
     flux.outflow.assign(cells * 3 * as_size(flux.per_side), 0.0);
-    if (mesh.order == 1) {
+    if (flux.per_side == 2) {
         sweep_order1(work, flux.outflow.data());
     } else {
         flux.bubble.assign(cells, 0.0);
-        sweep_order2(work, flux.outflow.data(), flux.bubble.data());
+        if (round)
+            sweep_round(work, flux.outflow.data(), flux.bubble.data());
+        else
+            sweep_order2(work, flux.outflow.data(), flux.bubble.data());
     }
     flux.squared.resize(cells);
     std::vector<LeftOver> left_over(cells);
     double size_squared = 0.0;
+    bool breach = false; // of the condition on the axis: the energy would be infinite
     for (std::size_t c = 0; c < cells; ++c) {
-        if (mesh.order == 1) {
+        if (flux.per_side == 2) {
             const Defect1 d = defect_order1(work, flux.outflow.data(), static_cast<Index>(c));
             flux.squared[c] = Defect1::product(d, d);
             left_over[c] = {d.left_over, rounding_unit * d.traffic};
             size_squared += d.area / d.k * d.size * d.size;
         } else {
-            const Defect2 d = defect_order2(work, flux, static_cast<Index>(c));
-            flux.squared[c] = Defect2::product(d, d);
+            const Index q = static_cast<Index>(c);
+            const Defect2 d = round ? defect_round(work, flux, q) : defect_order2(work, flux, q);
+            flux.squared[c] = round ? round_product(problem, q, d, d) : Defect2::product(d, d);
+            if (round && !vanishes_on_axis(problem, q, d, 1e-9 * std::sqrt(d.size_squared / (d.gxx + d.gyy))))
+                breach = true;
             left_over[c] = {d.left_over, rounding_unit * d.traffic};
             size_squared += d.size_squared;
         }
@@ -109,7 +130,7 @@ TEPOR_INLINE Equilibrated equilibrate(const FluxProblem& problem, const double* 
             if (side.kind == SideKind::contact)
                 for (const double v : values_along(problem, temperature, problem.sides[as_size(side.partner)].side))
                     t = std::max(t, std::abs(v));
-            size_squared += 4.0 * side.film * length * t * t;
+            size_squared += 4.0 * side.film * length * std::max(start, end) * t * t;
         }
     }
     double mixed = 0.0, lost = 0.0;
@@ -125,7 +146,7 @@ TEPOR_INLINE Equilibrated equilibrate(const FluxProblem& problem, const double* 
     flux.lost_total = std::sqrt(lost);
     flux.mixed_total = std::sqrt(mixed);
     const CarriedNorms carried = carry_left_over(work, left_over);
-    flux.residual = carried.residual;
+    flux.residual = breach ? std::numeric_limits<double>::infinity() : carried.residual;
     flux.rounding = carried.rounding + rounding_unit * std::sqrt(size_squared);
     return flux;
 }
@@ -139,13 +160,22 @@ TEPOR_INLINE PairBound pair_bound(const FluxProblem& primal, const double* tempe
     if (mesh.dim == 1) {
         product = line_product(primal, temperature, flux, adjoint, influence, adjoint_flux);
     } else {
-        const FluxWork first{primal, temperature, {}, {}, source_loads(primal, temperature)};
-        const FluxWork second{adjoint, influence, {}, {}, source_loads(adjoint, influence)};
-        for (Index c = 0; c < mesh.cell_count(); ++c)
-            product += mesh.order == 1
-                           ? Defect1::product(defect_order1(first, flux.outflow.data(), c),
-                                              defect_order1(second, adjoint_flux.outflow.data(), c))
-                           : Defect2::product(defect_order2(first, flux, c), defect_order2(second, adjoint_flux, c));
+        const bool round = is_round(primal);
+        const auto loads = [&](const FluxProblem& p, const double* t) {
+            return round ? round_loads(p) : source_loads(p, t);
+        };
+        const FluxWork first{primal, temperature, {}, {}, loads(primal, temperature)};
+        const FluxWork second{adjoint, influence, {}, {}, loads(adjoint, influence)};
+        for (Index c = 0; c < mesh.cell_count(); ++c) {
+            if (flux.per_side == 2)
+                product += Defect1::product(defect_order1(first, flux.outflow.data(), c),
+                                            defect_order1(second, adjoint_flux.outflow.data(), c));
+            else if (round)
+                product +=
+                    round_product(primal, c, defect_round(first, flux, c), defect_round(second, adjoint_flux, c));
+            else
+                product += Defect2::product(defect_order2(first, flux, c), defect_order2(second, adjoint_flux, c));
+        }
     }
     // With inexact balances the two parts of a defect are not orthogonal: |e|^2 + |s|^2 <= eta^2 + 2 |e| lost.
     const double extra_t = flux.residual + flux.rounding, extra_z = adjoint_flux.residual + adjoint_flux.rounding;

@@ -1,6 +1,7 @@
 #pragma once
 // Breadth-first tree over the cells and lowest-order fluxes along it.
 
+#include <algorithm>
 #include <cmath>
 #include <limits>
 #include <tepor/flux/residual.hpp>
@@ -16,6 +17,11 @@ TEPOR_INLINE CarriedNorms carry_left_over(const FluxWork& work, const std::vecto
     std::vector<Id> order;
     order.reserve(cells);
     const auto sink = [&](std::size_t c) { return !problem.sink.empty() && problem.sink[c] > 0.0; };
+    const bool round = mesh.frame.power() > 0;
+    double widest = 0.0;
+    if (round)
+        for (const Point& p : mesh.nodes) widest = std::max(widest, p.x);
+    const auto on_axis = [&](Id n) { return mesh.nodes[as_size(n)].x <= 1e-12 * widest; };
     const auto lets_out = [&](const FluxSide& side) {
         return side.kind == SideKind::fixed ||
                (side.kind == SideKind::open &&
@@ -101,20 +107,30 @@ TEPOR_INLINE CarriedNorms carry_left_over(const FluxWork& work, const std::vecto
                 doubts[s] = sent[as_size(other)].doubt;
             }
         }
-        // Lowest-order field sum_s leaves_s (x - x_opposite)/(2 |T|): its vertex values
-        double sum = 0.0, sx = 0.0, sy = 0.0, doubt = 0.0;
+        const double r[3] = {round && on_axis(node[0]) ? 0.0 : place[0].x, round && on_axis(node[1]) ? 0.0 : place[1].x,
+                             round && on_axis(node[2]) ? 0.0 : place[2].x};
+        double least = std::numeric_limits<double>::infinity(); // of the radii off the axis
+        for (const double radius : r)
+            if (radius > 0.0) least = std::min(least, radius);
+        // Linear field whose flux is constant along a side, or in r-z falls to zero towards an end on the axis: its vertex values
+        double sum = 0.0, sx = 0.0, sy = 0.0, largest = 0.0, doubt = 0.0;
         for (std::size_t i = 0; i < 3; ++i) {
-            double vx = 0.0, vy = 0.0;
-            for (std::size_t s = 0; s < 3; ++s) {
-                const Point d = x[i] - x[(s + 2) % 3];
-                vx += leaves[s] * d.x, vy += leaves[s] * d.y;
-                doubt += doubts[s] * (std::abs(d.x) + std::abs(d.y));
-            }
+            const std::size_t before = (i + 2) % 3, after = (i + 1) % 3;
+            const auto at_vertex = [&](std::size_t other) {
+                return !round ? 1.0 : r[i] == 0.0 ? 0.0 : r[other] == 0.0 ? 2.0 : 1.0;
+            };
+            const Point t1 = x[after] - x[i], t2 = x[before] - x[i];
+            const double enter = -leaves[i] * at_vertex(after), leave = leaves[before] * at_vertex(before);
+            const double vx = enter * t2.x - leave * t1.x, vy = enter * t2.y - leave * t1.y;
+            doubt =
+                std::max(doubt, 2.0 * (doubts[i] * std::sqrt(dot(t2, t2)) + doubts[before] * std::sqrt(dot(t1, t1))));
+            largest = std::max(largest, vx * vx + vy * vy);
             sum += vx * vx + vy * vy, sx += vx, sy += vy;
         }
         const double weight = 0.5 / (twice * problem.conductivity[c]);
-        residual += weight / 12.0 * (sum + sx * sx + sy * sy);
-        rounding += weight * doubt * doubt;
+        // In r-z |tau|^2/r is at most its largest vertex value over the least radius off the axis, since tau is zero on it.
+        residual += round ? weight * largest / least : weight / 12.0 * (sum + sx * sx + sy * sy);
+        rounding += weight * doubt * doubt / (round ? least : 1.0);
         if (exit[c] == 3) {
             const double share = 2.0 / (cross(place[1] - place[0], place[2] - place[0]) * problem.sink[c]);
             residual += share * sent[c].value * sent[c].value;
@@ -123,7 +139,8 @@ TEPOR_INLINE CarriedNorms carry_left_over(const FluxWork& work, const std::vecto
             const FluxSide& side = problem.sides[as_size(-2 - n)];
             if (side.kind != SideKind::fixed) { // mismatch with the law of the film, the radiation or the contact
                 const Point d = place[(as_size(exit[c]) + 1) % 3] - place[as_size(exit[c])];
-                const double share = 1.0 / (film_of(side) * std::sqrt(dot(d, d)));
+                double share = 1.0 / (film_of(side) * std::sqrt(dot(d, d)));
+                if (round) share *= 2.0 / least; // constant over r, or linear towards the axis
                 residual += share * sent[c].value * sent[c].value;
                 rounding += share * sent[c].doubt * sent[c].doubt;
             }

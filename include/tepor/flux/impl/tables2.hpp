@@ -136,6 +136,9 @@ inline FluxTables2 build_flux_tables2() {
     constexpr double shape[6][6] = {{1, -3, -3, 2, 4, 2}, {0, -1, 0, 2, 0, 0}, {0, 0, -1, 0, 0, 2},
                                     {0, 4, 0, -4, -4, 0}, {0, 0, 0, 0, 4, 0},  {0, 0, 4, 0, -4, -4}};
     for (int n = 0; n < 6; ++n) basis(shape[n], t.shape[n]);
+    for (int n = 0; n < 6; ++n)
+        for (int k = 0; k < 6; ++k) t.at_node[k][n] = t.shape[n][k]; // N_n = sum of shape[n][k] times basis k
+    invert_small(t.at_node);
     constexpr double linear[3][6] = {{1, -1, -1, 0, 0, 0}, {0, 1, 0, 0, 0, 0}, {0, 0, 1, 0, 0, 0}};
     for (int n = 0; n < 3; ++n) basis(linear[n], t.linear[n]);
     constexpr int node[3] = {0, 3, 5};
