@@ -4,6 +4,7 @@
 #include <cmath>
 #include <tepor/base/numbers.hpp>
 #include <tepor/linear/detail/buffer.hpp>
+#include <tepor/linear/detail/crew.hpp>
 #include <tepor/linear/sparse_matrix.hpp>
 #include <type_traits>
 
@@ -22,9 +23,12 @@ struct IterationReport {
     double residual = 0.0; ///< |b - A x| / |b|, recomputed from x at the end (Euclidean norm); 0 when b is zero
 };
 
-/// Work vectors of conjugate_gradient(); kept between solves so that these allocate nothing.
+/// Work vectors of conjugate_gradient(); kept between solves so that these allocate nothing. With more than one thread the
+/// results keep the same bits: sums run over slices fixed by the size alone.
 class ConjugateGradientWork {
   public:
+    explicit ConjugateGradientWork(int threads = 1) : crew(detail::make_crew(threads)) {}
+
     void reset(Index n) {
         residual.reset(n);
         direction.reset(n);
@@ -32,6 +36,8 @@ class ConjugateGradientWork {
         preconditioned.reset(n);
     }
     detail::Buffer<double> residual, direction, product, preconditioned;
+    detail::Buffer<double> spill; ///< what slices add to rows before them
+    std::shared_ptr<detail::Crew> crew;
 };
 
 namespace detail {
@@ -50,29 +56,88 @@ inline double dot_product(const double* a, const double* b, Index n) noexcept {
     return (s0 + s2) + (s1 + s3);
 }
 
-/// p := z + beta p, y := A p for a symmetric A; returns p.y. One pass: row i needs no p beyond its own.
-inline double direction_product(const SparseMatrix& matrix, Index n, const double* z, double beta, double* p,
-                                double* y) noexcept {
-    const Id* start = matrix.start.data();
-    const Id* column = matrix.column.data();
-    const double* value = matrix.lower.data();
-    double even = 0.0, odd = 0.0;
-    for (Index i = 0; i < n; ++i) {
-        const Index last = start[i + 1] - 1;
-        const double pi = beta == 0.0 ? z[i] : z[i] + beta * p[i];
-        double sum = 0.0;
-        for (Index e = start[i]; e < last; ++e) {
-            const Index j = column[e];
-            sum += value[e] * p[j];
-            y[j] += value[e] * pi;
+/// The product of conjugate gradients, slice by slice. A slice owns its rows of the result; what it adds to rows before them
+/// goes to a place of its own first.
+class SlicedProduct {
+  public:
+    SlicedProduct(const SparseMatrix& matrix, Index n, Buffer<double>& spill)
+        : start_(matrix.start.data()), column_(matrix.column.data()), value_(matrix.lower.data()), slices_{n} {
+        Index room = 0;
+        for (Index k = 0; k < slices_.count(); ++k) {
+            const Index begin = slices_.begin(k);
+            lowest_[k] = begin;
+            for (Index i = begin; i < slices_.end(k); ++i) { // columns ascend: the first entry reaches lowest
+                lowest_[k] = column_[start_[i]] < lowest_[k] ? column_[start_[i]] : lowest_[k];
+            }
+            offset_[k] = room;
+            room += begin - lowest_[k];
         }
-        const double own = value[last] * pi;
-        p[i] = pi;
-        y[i] = sum + own;
-        (i % 2 == 0 ? even : odd) += pi * (2.0 * sum + own);
+        spill.reserve(room);
+        spill_ = spill.data();
     }
-    return even + odd;
-}
+
+    /// p := z + beta p, y := A p; returns p.y. Without a crew all in one pass, since a row needs no p beyond its own.
+    double operator()(Crew* crew, const double* z, double beta, double* p, double* y) const noexcept {
+        if (crew) {
+            const auto advance = [&](Index k) {
+                for (Index i = slices_.begin(k); i < slices_.end(k); ++i) p[i] = next(z, beta, p, i);
+            };
+            run_tasks(crew, slices_.count(), advance);
+        }
+        double sum[Slices::most];
+        const auto multiply = [&](Index k) {
+            sum[k] = crew ? slice<false>(k, z, beta, p, y) : slice<true>(k, z, beta, p, y);
+        };
+        run_tasks(crew, slices_.count(), multiply);
+        double all = 0.0;
+        for (Index k = 0; k < slices_.count(); ++k) {
+            const double* from = spill_ + offset_[k];
+            for (Index j = lowest_[k]; j < slices_.begin(k); ++j) y[j] += *from++;
+            all += sum[k];
+        }
+        return all;
+    }
+
+  private:
+    static double next(const double* z, double beta, const double* p, Index i) noexcept {
+        return beta == 0.0 ? z[i] : z[i] + beta * p[i]; // the first p need not be numbers
+    }
+
+    template <bool Advance>
+    double slice(Index k, const double* z, double beta, double* p, double* y) const noexcept {
+        const Index begin = slices_.begin(k), end = slices_.end(k);
+        double* early = spill_ + (offset_[k] - lowest_[k]);
+        for (Index j = lowest_[k]; j < begin; ++j) early[j] = 0.0;
+        double even = 0.0, odd = 0.0;
+        for (Index i = begin; i < end; ++i) {
+            const Index last = start_[i + 1] - 1;
+            const double pi = Advance ? next(z, beta, p, i) : p[i];
+            double gathered = 0.0;
+            Index e = start_[i];
+            for (; e < last && column_[e] < begin; ++e) {
+                gathered += value_[e] * p[column_[e]];
+                early[column_[e]] += value_[e] * pi;
+            }
+            for (; e < last; ++e) {
+                gathered += value_[e] * p[column_[e]];
+                y[column_[e]] += value_[e] * pi;
+            }
+            const double own = value_[last] * pi;
+            if (Advance) p[i] = pi;
+            y[i] = gathered + own;
+            (i % 2 == 0 ? even : odd) += pi * (2.0 * gathered + own);
+        }
+        return even + odd;
+    }
+
+    const Id* start_;
+    const Id* column_;
+    const double* value_;
+    Slices slices_;
+    double* spill_ = nullptr;
+    Index lowest_[Slices::most] = {};
+    Index offset_[Slices::most] = {};
+};
 
 } // namespace detail
 
@@ -115,6 +180,9 @@ IterationReport conjugate_gradient(const SparseMatrix& matrix, Index n, const do
         report.converged = true;
         return report;
     }
+    detail::Crew* const crew = work.crew.get();
+    const detail::SlicedProduct product(matrix, n, work.spill);
+    const detail::Slices slices{n};
     double before = 0.0; // r.z of the iteration before; 0 starts again along z
     while (report.iterations < limits.most) {
         double rz = 0.0;
@@ -127,17 +195,23 @@ IterationReport conjugate_gradient(const SparseMatrix& matrix, Index n, const do
         if (!(rz > 0.0)) break;
         const double beta = before > 0.0 ? rz / before : 0.0;
         before = rz;
-        const double curvature = detail::direction_product(matrix, n, z, beta, p, ap);
+        const double curvature = product(crew, z, beta, p, ap);
         if (!(curvature > 0.0)) break;
         const double alpha = rz / curvature;
-        double s0 = 0.0, s1 = 0.0;
-        for (Index i = 0; i < n; ++i) {
-            x[i] += alpha * p[i];
-            const double ri = r[i] - alpha * ap[i];
-            r[i] = ri;
-            (i % 2 == 0 ? s0 : s1) += ri * ri;
-        }
-        const double sum = s0 + s1;
+        double squares[detail::Slices::most];
+        const auto step = [&](Index k) {
+            double even = 0.0, odd = 0.0;
+            for (Index i = slices.begin(k); i < slices.end(k); ++i) {
+                x[i] += alpha * p[i];
+                const double ri = r[i] - alpha * ap[i];
+                r[i] = ri;
+                (i % 2 == 0 ? even : odd) += ri * ri;
+            }
+            squares[k] = even + odd;
+        };
+        detail::run_tasks(crew, slices.count(), step);
+        double sum = 0.0;
+        for (Index k = 0; k < slices.count(); ++k) sum += squares[k];
         ++report.iterations;
         report.residual = std::sqrt(sum) / scale;
         if (!stop(static_cast<const double*>(r), report.residual)) continue;

@@ -3,6 +3,7 @@
 
 #include <tepor/base/config.hpp>
 #include <tepor/base/numbers.hpp>
+#include <tepor/linear/detail/crew.hpp>
 #include <tepor/linear/detail/multigrid_level.hpp>
 #include <tepor/linear/sparse_matrix.hpp>
 #include <vector>
@@ -14,6 +15,7 @@ struct MultigridOptions {
     double strength = 0.08;     ///< a_ij is strong when |a_ij| >= strength sqrt(a_ii a_jj)
     double low_strength = 0.01; ///< the same on levels under 1,000 rows and where coarsening would stall
     Index coarsest = 150;       ///< levels up to this many rows are solved by dense Cholesky
+    int threads = 1;            ///< of the cycle, the caller's included; the results keep the same bits
 };
 
 /// One V cycle of smoothed aggregation as a symmetric positive definite preconditioner for conjugate_gradient().
@@ -24,7 +26,8 @@ struct MultigridOptions {
 class Multigrid {
   public:
     Multigrid() = default;
-    explicit Multigrid(const MultigridOptions& options) : options_(options) {}
+    explicit Multigrid(const MultigridOptions& options)
+        : options_(options), crew_(detail::make_crew(options.threads)) {}
 
     /// Builds the levels for the leading n x n block of a symmetric matrix; only its lower triangle is read, and it need not
     /// outlive the call.
@@ -46,12 +49,16 @@ class Multigrid {
     /// An unknown of the singular part found by setup(), or -1.
     [[nodiscard]] Index singular_row() const noexcept { return singular_row_; }
 
+    /// The helping threads, to be shared with conjugate_gradient(); null with one thread.
+    [[nodiscard]] const std::shared_ptr<detail::Crew>& crew() const noexcept { return crew_; }
+
   private:
     TEPOR_INLINE Index factor_coarsest(const SparseMatrix& matrix, Index n, const detail::Buffer<float>& scale);
     TEPOR_INLINE void descend(std::size_t depth) noexcept;
     TEPOR_INLINE void descend_twice(std::size_t depth) noexcept;
 
     MultigridOptions options_;
+    std::shared_ptr<detail::Crew> crew_;
     Index size_ = 0;
     Index coarse_size_ = 0;
     Index singular_row_ = -1;

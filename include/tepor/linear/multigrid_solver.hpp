@@ -15,7 +15,9 @@ class MultigridSolver {
   public:
     MultigridSolver() = default;
     explicit MultigridSolver(const IterationLimits& limits, const MultigridOptions& options = {})
-        : limits_(limits), multigrid_(options) {}
+        : limits_(limits), multigrid_(options) {
+        work_.crew = multigrid_.crew();
+    }
 
     /// Notes the size, and finds a better numbering where the pattern needs one.
     TEPOR_INLINE void analyze(const SparseMatrix& pattern, Index n, const Point* places = nullptr);

@@ -189,6 +189,27 @@ TEST_CASE("small, empty, diagonal and separate systems are solved") {
     CHECK(solved.backward_error <= 1e-7);
 }
 
+TEST_CASE("the answer has the same bits at any number of threads") {
+    for (const Index cells : {Index{60}, Index{test::scaled(260, 185)}}) { // below and above the size that is sliced
+        CAPTURE(cells);
+        const test::Square square = test::square(cells, true, false, 78);
+        const Index n = square.matrix.rows;
+        test::Random random(79);
+        const std::vector<double> b = test::random_vector(n, random);
+        std::vector<double> first;
+        for (const int threads : {1, 2, 3}) {
+            CAPTURE(threads);
+            MultigridSolver solver({.tolerance = 1e-9, .most = 60}, {.threads = threads});
+            solver.analyze(square.matrix, n);
+            REQUIRE(solver.factor(square.matrix));
+            std::vector<double> x = b;
+            REQUIRE(solver.solve(x.data()));
+            if (threads == 1) first = x;
+            CHECK(x == first);
+        }
+    }
+}
+
 TEST_CASE("a shuffled numbering changes neither the answer nor the number of iterations by much, and stays inside") {
     const Index cells = 90;
     const test::Square plain = test::square(cells, true, false, 74), mixed = test::square(cells, true, true, 74);

@@ -14,7 +14,7 @@ namespace detail {
 /// Rows in blocks fixed by their number alone. Few rows, or neighbours in other blocks for more than one row in twenty: one
 /// block, since entries between blocks weaken the sweeps.
 inline std::vector<Index> blocks_of(const SparseMatrix& a, Index rows) {
-    const Index count = rows < 4000 ? 1 : rows < 100000 ? 2 : 8;
+    const Index count = rows < 4000 ? 1 : rows < 50000 ? 2 : rows < 500000 ? 8 : 16;
     std::vector<Index> block;
     for (Index b = 0; b <= count; ++b) block.push_back(rows * b / count);
     Index astride = 0;
@@ -165,7 +165,10 @@ TEPOR_INLINE void Multigrid::descend(std::size_t depth) noexcept {
     const bool last = depth + 1 == level_.size();
     float* coarse = last ? coarse_right_.data() : level_[depth + 1].x.data();
     for (Index c = 0; c < level.columns; ++c) coarse[c] = 0.0f;
-    for (std::size_t b = 0; b + 1 < level.block.size(); b += 2) detail::forward_blocks(level, b, coarse);
+    const Index pairs = static_cast<Index>(level.block.size()) / 2;
+    detail::Crew* const crew = level.rows < 8000 ? nullptr : crew_.get(); // below, waking costs more than it gains
+    const auto down = [&](Index pair) { detail::forward_blocks(level, detail::as_size(2 * pair), coarse); };
+    detail::run_tasks(crew, pairs, down);
     detail::forward_between(level, coarse);
     if (level.columns > 0) {
         if (depth > 0 && !last && level.columns * 5 < level.rows * 2) {
@@ -175,7 +178,8 @@ TEPOR_INLINE void Multigrid::descend(std::size_t depth) noexcept {
         }
     }
     detail::backward_between(level, coarse);
-    for (std::size_t b = 0; b + 1 < level.block.size(); b += 2) detail::backward_blocks(level, b, coarse);
+    const auto up = [&](Index pair) { detail::backward_blocks(level, detail::as_size(2 * pair), coarse); };
+    detail::run_tasks(crew, pairs, up);
 }
 
 // A second visit from the residual of the first, so that convergence does not fade with the number of levels. Below the
@@ -209,16 +213,29 @@ TEPOR_INLINE double Multigrid::cycle(const double* r, double* z) noexcept {
     }
     const double factor = 1.0 / largest;
     float* x = level_.empty() ? coarse_right_.data() : level_[0].x.data();
-    for (Index i = 0; i < n; ++i) x[i] = static_cast<float>(r[i] * static_cast<double>(scale_[i]) * factor);
+    const detail::Slices slices{n};
+    const auto enter = [&](Index k) {
+        for (Index i = slices.begin(k); i < slices.end(k); ++i) {
+            x[i] = static_cast<float>(r[i] * static_cast<double>(scale_[i]) * factor);
+        }
+    };
+    detail::run_tasks(crew_.get(), slices.count(), enter);
     descend(0);
-    double even = 0.0, odd = 0.0;
-    for (Index i = 0; i < n; ++i) {
-        const double ri = r[i];
-        const double zi = static_cast<double>(x[i]) * static_cast<double>(scale_[i]) * largest;
-        z[i] = zi;
-        (i % 2 == 0 ? even : odd) += ri * zi;
-    }
-    return even + odd;
+    double part[detail::Slices::most];
+    const auto leave = [&](Index k) {
+        double even = 0.0, odd = 0.0;
+        for (Index i = slices.begin(k); i < slices.end(k); ++i) {
+            const double ri = r[i];
+            const double zi = static_cast<double>(x[i]) * static_cast<double>(scale_[i]) * largest;
+            z[i] = zi;
+            (i % 2 == 0 ? even : odd) += ri * zi;
+        }
+        part[k] = even + odd;
+    };
+    detail::run_tasks(crew_.get(), slices.count(), leave);
+    double sum = 0.0;
+    for (Index k = 0; k < slices.count(); ++k) sum += part[k];
+    return sum;
 }
 
 } // namespace tepor
