@@ -109,3 +109,24 @@ TEST_CASE("S2D-26: NAFEMS T2, a radiating bar") {
 TEST_CASE("S2D-26: NAFEMS T4, a plate with films") {
     run("S2D-26.T4");
 }
+TEST_CASE("T1D-11: a slab after a step of its surface temperature keeps its bounds and follows the series") {
+    run("T1D-11");
+}
+TEST_CASE("T1D-12 to T1D-14: slab, cylinder and sphere cool by their series") {
+    run("T1D-12.14");
+}
+TEST_CASE("T1D-15: a semi-infinite solid takes in heat by erfc") {
+    run("T1D-15");
+}
+TEST_CASE("T1D-18: a thin slab cools all but alike throughout") {
+    run("T1D-18");
+}
+TEST_CASE("S2D-26: NAFEMS T3, a bar under a sine of temperature") {
+    run("S2D-26.T3");
+}
+TEST_CASE("T2D-27: a rectangular bar cools by the product of two slabs") {
+    run("T2D-27");
+}
+TEST_CASE("T2D-28: a finite cylinder cools by the product of cylinder and slab") {
+    run("T2D-28");
+}

@@ -7,6 +7,7 @@
 #include <tepor/check/impl/round.hpp>
 #include <tepor/check/impl/sections.hpp>
 #include <tepor/check/impl/slabs.hpp>
+#include <tepor/check/impl/transient.hpp>
 
 namespace tepor {
 
@@ -36,6 +37,13 @@ TEPOR_INLINE std::vector<CheckCase> verified_cases() {
          slabs_by_exact_cells},
         {"S1D-E2", "cylinders, sphere and fin by exact cells, one per layer",
          "the sources of S1D-04, S1D-05, S1D-06, S1D-08 and S1D-09", round_by_exact_cells},
+        {"T1D-11", "slab after a step of its surface temperature", "Fourier series; Carslaw & Jaeger, sec. 3.3",
+         stepped_slab},
+        {"T1D-12.14", "slab, cylinder and sphere cooling, Bi = 1",
+         "series; Incropera & DeWitt, sec. 5.5 and 5.6; Carslaw & Jaeger, sec. 3.11, 7.7, 9.4", cooling_solids},
+        {"T1D-15", "semi-infinite solid, step of its surface temperature", "erfc; Carslaw & Jaeger, sec. 2.4",
+         semi_infinite},
+        {"T1D-18", "thin slab, Bi = 0.001", "series; Incropera & DeWitt, sec. 5.1 to 5.5", thin_slab},
         {"S2D-19", "rectangle with one hot side", "sine-sinh series; Carslaw & Jaeger, sec. 5.3",
          rectangle_with_hot_side},
         {"S2D-20", "square with generation, cold sides",
@@ -53,8 +61,14 @@ TEPOR_INLINE std::vector<CheckCase> verified_cases() {
          "EN ISO 10211, Annex A, case 2 (from memory); independent control volumes", iso_10211_profile},
         {"S2D-26.T2", "radiating bar", "The Standard NAFEMS Benchmarks, 1990, T2 (from memory); quartic root",
          nafems_t2},
+        {"S2D-26.T3", "bar under a sine of temperature",
+         "The Standard NAFEMS Benchmarks, 1990, T3 (from memory); eigenfunctions with Duhamel's integral", nafems_t3},
         {"S2D-26.T4", "plate with films",
          "The Standard NAFEMS Benchmarks, 1990, T4 (from memory); series of convective roots", nafems_t4},
+        {"T2D-27", "rectangular bar cooling",
+         "product of slabs; Incropera & DeWitt, sec. 5.8; Carslaw & Jaeger, sec. 5.6", cooling_bar},
+        {"T2D-28", "finite cylinder cooling", "product of cylinder and slab; Carslaw & Jaeger, sec. 8.4",
+         cooling_finite_cylinder},
     };
 }
 
