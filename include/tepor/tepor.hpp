@@ -123,11 +123,13 @@
 
 #include <tepor/solve/adaptive.hpp>
 #include <tepor/solve/capacity.hpp>
+#include <tepor/solve/checkpoint.hpp>
 #include <tepor/solve/engine.hpp>
 #include <tepor/solve/initial.hpp>
 #include <tepor/solve/loads.hpp>
 #include <tepor/solve/march.hpp>
 #include <tepor/solve/march_handles.hpp>
+#include <tepor/solve/periodic.hpp>
 #include <tepor/solve/steady.hpp>
 #include <tepor/solve/step.hpp>
 #include <tepor/solve/theta.hpp>

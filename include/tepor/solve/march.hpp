@@ -6,6 +6,7 @@
 #include <tepor/body/body.hpp>
 #include <tepor/field/field.hpp>
 #include <tepor/solve/adaptive.hpp>
+#include <tepor/solve/checkpoint.hpp>
 #include <tepor/solve/initial.hpp>
 #include <tepor/solve/march_handles.hpp>
 #include <tepor/solve/step.hpp>
@@ -27,6 +28,10 @@ class March {
     ///         whatever the description gets wrong
     TEPOR_INLINE March(const Body& body, const Initial& start, const Theta& theta);
     TEPOR_INLINE March(const Body& body, const Initial& start, const Adaptive& adaptive);
+    /// Goes on from a checkpoint of a march of this body; the parameters have the values they had there.
+    /// @throws Error bad_file (of another body), and as above
+    TEPOR_INLINE March(const Body& body, const Checkpoint& from, const Theta& theta);
+    TEPOR_INLINE March(const Body& body, const Checkpoint& from, const Adaptive& adaptive);
     TEPOR_INLINE March(March&&) noexcept;
     TEPOR_INLINE March& operator=(March&&) noexcept;
     March(const March&) = delete;
@@ -91,6 +96,8 @@ class March {
     [[nodiscard]] TEPOR_INLINE Balance total() const;
     /// Molten share of what can melt in a region, 0 to 1.
     [[nodiscard]] TEPOR_INLINE double molten_in(std::string_view region) const;
+    /// The state, to go on from later.
+    [[nodiscard]] TEPOR_INLINE Checkpoint checkpoint() const;
     /// The value a parameter has in this march.
     [[nodiscard]] TEPOR_INLINE double value(const Parameter& parameter) const;
     /// Size of the last step [s].
@@ -99,6 +106,9 @@ class March {
     [[nodiscard]] TEPOR_INLINE Index factorisations() const noexcept;
     /// Steps that Adaptive tried again with half their size.
     [[nodiscard]] TEPOR_INLINE Index rejections() const noexcept;
+
+    // for the verbs built on it
+    [[nodiscard]] detail::Marcher& marcher() const noexcept { return *marcher_; }
 
   private:
     TEPOR_INLINE void run(double t, detail::MarchCallback* progress);

@@ -186,7 +186,22 @@ TEPOR_INLINE Fault Coefficient::evaluate(const double* slot_values, TimeSpan tim
             fault.time = time.to;
             return fault;
         }
-        return check(points, time, value);
+        Fault fault = check(points, time, value);
+        if (fault || !slope || !depends_on_temperature()) return fault;
+        // a slope that cannot be used (differences that reach beyond a law's domain) would look like a singular matrix
+        for (Index i = 0; i < n; ++i)
+            if (!std::isfinite(slope[i])) {
+                fault.kind = Fault::Kind::not_finite;
+                fault.coefficient = this;
+                fault.point = i;
+                fault.value = slope[i];
+                fault.temperature = points.temperature ? points.temperature[i] : 0.0;
+                fault.x = points.x[i];
+                fault.y = points.y[i];
+                fault.time = time.to;
+                break;
+            }
+        return fault;
     }
     }
     return {};

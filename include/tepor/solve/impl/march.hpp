@@ -9,6 +9,7 @@
 #include <tepor/solve/impl/marcher_newton.hpp>
 #include <tepor/solve/impl/marcher_run.hpp>
 #include <tepor/solve/impl/marcher_setup.hpp>
+#include <tepor/solve/impl/marcher_state.hpp>
 #include <tepor/solve/impl/marcher_theta.hpp>
 #include <tepor/solve/march.hpp>
 
@@ -71,6 +72,14 @@ TEPOR_INLINE March::March(const Body& body, const Initial& start, const Theta& t
     : marcher_(std::make_unique<detail::Marcher>(body, start, detail::scheme_of(theta))) {}
 TEPOR_INLINE March::March(const Body& body, const Initial& start, const Adaptive& adaptive)
     : marcher_(std::make_unique<detail::Marcher>(body, start, detail::scheme_of(adaptive))) {}
+TEPOR_INLINE March::March(const Body& body, const Checkpoint& from, const Theta& theta)
+    : March(body, initial(body.model()->scale == TemperatureScale::kelvin ? 300.0 : 20.0), theta) {
+    marcher_->restore(from);
+}
+TEPOR_INLINE March::March(const Body& body, const Checkpoint& from, const Adaptive& adaptive)
+    : March(body, initial(body.model()->scale == TemperatureScale::kelvin ? 300.0 : 20.0), adaptive) {
+    marcher_->restore(from);
+}
 TEPOR_INLINE March::March(March&&) noexcept = default;
 TEPOR_INLINE March& March::operator=(March&&) noexcept = default;
 TEPOR_INLINE March::~March() = default;
@@ -126,6 +135,9 @@ TEPOR_INLINE Balance March::total() const {
 }
 TEPOR_INLINE double March::molten_in(std::string_view region) const {
     return marcher_->molten_in(region);
+}
+TEPOR_INLINE Checkpoint March::checkpoint() const {
+    return marcher_->checkpoint();
 }
 TEPOR_INLINE double March::value(const Parameter& parameter) const {
     const Index slot = marcher_->model->slot_of(parameter);

@@ -6,6 +6,7 @@
 #include <string_view>
 #include <tepor/field/field.hpp>
 #include <tepor/solve/capacity.hpp>
+#include <tepor/solve/checkpoint.hpp>
 #include <tepor/solve/engine.hpp>
 #include <tepor/solve/initial.hpp>
 #include <tepor/solve/loads.hpp>
@@ -66,6 +67,13 @@ class Marcher {
     [[nodiscard]] Balance balance_of(bool whole_run);
     [[nodiscard]] double residual();
     [[nodiscard]] double molten_in(std::string_view region) const;
+    [[nodiscard]] const std::vector<double>& temperatures() const noexcept { return T_; }
+    [[nodiscard]] const Storage& storage() const noexcept { return *storage_; }
+    /// Prescribed temperatures just before a time, in an array over all unknowns.
+    const std::vector<double>& prescribed_end(double at);
+    void restart(const std::vector<double>& T, double at);
+    [[nodiscard]] Checkpoint checkpoint();
+    void restore(const Checkpoint& checkpoint);
 
     struct Observer {
         double start = 0.0;
@@ -98,8 +106,6 @@ class Marcher {
     std::vector<Highest> peaks;
 
   private:
-    friend class Checkpoint;
-
     /// A compiled quantity with what reading needs.
     struct Reading {
         Functional functional;
@@ -128,6 +134,11 @@ class Marcher {
         };
         std::vector<Coupling> couplings;
     };
+
+    // state
+    [[nodiscard]] double signature() const;
+    template <class Stream, class Self>
+    static void transfer(Stream& stream, Self& self);
 
     // setup
     [[nodiscard]] bool matrix_depends_on_time() const;
@@ -246,6 +257,9 @@ class Marcher {
     std::vector<double> instant_book_;
     Ledger step_book_, run_book_;
     TimeSpan step_span_;
+    std::vector<double> next_slots_; ///< checkpoints: with what has been set already
+    std::vector<double> kept_sums_;  ///< of a checkpoint: integrals and peaks to go on from
+    std::vector<double> kept_peaks_;
     std::vector<Reading> readings_;
     Pass pass_;
     Fault fault_;

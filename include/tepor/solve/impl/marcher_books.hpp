@@ -306,14 +306,17 @@ TEPOR_INLINE Index Marcher::watch(const Quantity& quantity) {
 
 TEPOR_INLINE Index Marcher::integral(const Quantity& quantity) {
     const Index reading = watch(quantity);
-    integrals.push_back({reading, 0.0, 0.0});
-    return static_cast<Index>(integrals.size()) - 1;
+    const std::size_t id = integrals.size();
+    integrals.push_back({reading, id < kept_sums_.size() ? kept_sums_[id] : 0.0, 0.0});
+    return static_cast<Index>(id);
 }
 
 TEPOR_INLINE Index Marcher::peak(const Quantity& quantity) {
     const Index reading = watch(quantity);
+    const std::size_t id = peaks.size();
     peaks.push_back({reading, {read(reading), time}});
-    return static_cast<Index>(peaks.size()) - 1;
+    if (2 * id + 1 < kept_peaks_.size()) peaks.back().moment = {kept_peaks_[2 * id], kept_peaks_[2 * id + 1]};
+    return static_cast<Index>(id);
 }
 
 /// Rates of change and reactions of an instant: what the weak form leaves over is stored.

@@ -42,13 +42,14 @@ TEPOR_INLINE bool Marcher::evaluate(double scale, double leg, TimeSpan span, con
     for (std::size_t i = 0; i < nodes.size(); ++i)
         stored_rise_[as_size(nodes[i].unknown)] += molten_[i] - piece_molten_[i];
     double traffic = pass_.side_traffic + pass_.source_traffic;
+    double stored = 0.0;
     for (Index u = 0; u < all; ++u) {
         const auto at = as_size(u);
-        traffic += std::abs(stored_rise_[at]) / scale;
+        stored += stored_rise_[at];
         b_[at] = stored_rise_[at] + scale * b_[at] + (explicit_part ? explicit_part[u] : 0.0);
         if (u >= n) traffic += std::abs(b_[at]) / scale;
     }
-    gross_ = 0.5 * traffic;
+    gross_ = 0.5 * (traffic + std::abs(stored) / scale);
     return true;
 }
 
@@ -186,7 +187,8 @@ TEPOR_INLINE Verdict Marcher::newton(double scale, double leg, TimeSpan span, co
     for (Index pass = 0;; ++pass) {
         const double now = sum();
         if (with_matrix) rounding = residual_rounding(*model, engine.matrix, T_.data());
-        const double limit = scheme.tolerance * gross_ * scale + rounding;
+        // a quarter: what the balance of the step calls gross may be less than what is at hand here
+        const double limit = 0.25 * scheme.tolerance * gross_ * scale + rounding;
         residual_ = now / scale;
         if (!std::isfinite(now)) return Verdict::not_converged;
         const bool done = fixed ? pass >= scheme.passes : now <= limit && (pass > 0 || curved);

@@ -135,8 +135,14 @@ TEPOR_INLINE void Marcher::prepare_line() {
 }
 
 TEPOR_INLINE Marcher::Lane* Marcher::lane_for(double a) {
+    for (std::size_t i = 0; i < kept_lanes_; ++i)
+        if (lanes_[i].a == a) return &lanes_[i];
+    // sizes of pieces carry rounding: nearly equal ones share a factor, of a size that does not depend on which came first
+    int exponent = 0;
+    if (kept_lanes_ > 0 || scheme.adaptive) a = std::frexp(a, &exponent);
+    if (kept_lanes_ > 0 || scheme.adaptive) a = std::ldexp(std::nearbyint(std::ldexp(a, 42)), exponent - 42);
     for (Lane& lane : lanes_)
-        if (std::abs(lane.a - a) <= 1e-12 * a) return &lane;
+        if (lane.a == a) return &lane;
     constexpr std::size_t spare = 6; // for steps cut by events, and for Adaptive
     if (lanes_.size() >= kept_lanes_ + spare) {
         std::rotate(lanes_.begin() + static_cast<Index>(kept_lanes_),
@@ -183,7 +189,7 @@ TEPOR_INLINE Index Marcher::drive(const Parameter& parameter) {
                  "\" is a thickness, which cannot change while heat is stored; set it on the body and march again"));
     Driven driven;
     driven.slot = as_id(slot);
-    driven.value = values.slots[as_size(slot)];
+    driven.value = next_slots_.empty() ? values.slots[as_size(slot)] : next_slots_[as_size(slot)];
     driven.remake = role.matrix || role.capacity;
     driven.low = -std::numeric_limits<double>::infinity();
     driven.high = std::numeric_limits<double>::infinity();

@@ -130,6 +130,13 @@ TEPOR_INLINE bool Marcher::prescribe_ends(TimeSpan from, TimeSpan to) {
     return prescribed_fresh_;
 }
 
+TEPOR_INLINE const std::vector<double>& Marcher::prescribed_end(double at) {
+    prescribed_fresh_ = false;
+    if (!prescribe_ends({at, at, 1.0}, {at, at, 1.0, true})) raise(fault_);
+    prescribed_fresh_ = false;
+    return prescribed_to_;
+}
+
 TEPOR_INLINE void Marcher::product(const double* v, double* out) const noexcept {
     if (!line_.on) {
         multiply(K_, model->unknowns, v, out);
