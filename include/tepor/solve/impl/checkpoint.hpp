@@ -1,9 +1,9 @@
 #pragma once
-// Checkpoints: bytes, files, and the fields that make up the state of a march.
+// Checkpoints: bytes, and the fields that make up the state of a march.
 
 #include <cstdint>
-#include <cstdio>
 #include <cstring>
+#include <string>
 #include <tepor/base/error.hpp>
 #include <tepor/base/text.hpp>
 #include <tepor/solve/checkpoint.hpp>
@@ -105,37 +105,6 @@ TEPOR_INLINE Checkpoint::Checkpoint(std::vector<unsigned char> bytes) : bytes_(s
     const std::size_t body = bytes_.size() - 8;
     if (detail::word_at(bytes_.data() + body) != detail::checksum(bytes_.data(), body))
         refuse("its checksum does not fit; it was cut short or damaged, write it again");
-}
-
-TEPOR_INLINE Checkpoint Checkpoint::load(const std::string& path) {
-    std::FILE* file = std::fopen(path.c_str(), "rb");
-    if (!file)
-        throw Error(ErrorCode::bad_file, path,
-                    "checkpoint: \"" + path + "\" cannot be opened; check the path and its permissions");
-    std::vector<unsigned char> bytes;
-    unsigned char piece[4096];
-    std::size_t got = 0;
-    while ((got = std::fread(piece, 1, sizeof piece, file)) > 0) bytes.insert(bytes.end(), piece, piece + got);
-    std::fclose(file);
-    return Checkpoint(std::move(bytes));
-}
-
-TEPOR_INLINE void Checkpoint::save(const std::string& path) const {
-    const std::string beside = path + ".new";
-    std::FILE* file = std::fopen(beside.c_str(), "wb");
-    bool fine = file != nullptr;
-    if (fine) {
-        fine = std::fwrite(bytes_.data(), 1, bytes_.size(), file) == bytes_.size();
-        fine = std::fclose(file) == 0 && fine;
-    }
-    if (fine && std::rename(beside.c_str(), path.c_str()) != 0) {
-        std::remove(path.c_str()); // some systems do not rename onto an existing file
-        fine = std::rename(beside.c_str(), path.c_str()) == 0;
-    }
-    if (!fine)
-        throw Error(ErrorCode::bad_file, path,
-                    "checkpoint: \"" + path +
-                        "\" cannot be written; check the path, its permissions and the space left");
 }
 
 } // namespace tepor
