@@ -261,11 +261,12 @@ Law make_law(std::vector<Parameter> parameters, F f) {
 template <std::size_t P, class F>
 Law make_place_law(std::vector<Parameter> parameters, F f) {
     constexpr Law::Uses uses{false, true, true};
-    if constexpr (takes<F, Point, double, P> && !takes<F, BasicPlace<Dual<1>>, Dual<1>, P>) {
+    // a generic callable is never tried with a Point, which has no time
+    if constexpr (takes<F, BasicPlace<Dual<1>>, Dual<1>, P>) {
+        return Law(std::make_shared<const DualLaw<F, P, false>>(std::move(f)), std::move(parameters), uses, true);
+    } else if constexpr (takes<F, Point, double, P>) {
         return Law(std::make_shared<const PlainLaw<F, P, Point>>(std::move(f)), std::move(parameters),
                    Law::Uses{false, true, false}, false);
-    } else if constexpr (takes<F, BasicPlace<Dual<1>>, Dual<1>, P>) {
-        return Law(std::make_shared<const DualLaw<F, P, false>>(std::move(f)), std::move(parameters), uses, true);
     } else {
         static_assert(takes<F, Place, double, P>,
                       "tepor of_place: the callable must take a place (`const auto&`, `const tepor::Place&` or "

@@ -156,3 +156,12 @@ TEST_CASE("an unqualified abs in a generic law is never the integer one") {
     const Law l = law([](const auto& s) { return abs(s.temperature - 20.4); });
     CHECK(std::abs(ask(l, Batch{}).value[0] - 0.4) <= 1e-12);
 }
+
+TEST_CASE("a generic law of place may read the time") {
+    const Law l =
+        of_place([](const auto& p) { return p.x + 2.0 * p.time; }); // did not compile: it was tried with a Point
+    CHECK(l.uses().time);
+    CHECK(std::abs(ask(l, Batch{}).value[0] - (ask(of_place([](const auto& p) { return p.x; }), Batch{}).value[0] +
+                                               ask(of_time([](double t) { return 2.0 * t; }), Batch{}).value[0])) <=
+          1e-12);
+}
