@@ -32,8 +32,9 @@ class ComplexBody {
 
     using Tensor = std::array<Complex, 3>; // xx, yy, xy
     std::function<Tensor(std::size_t, const ComplexSpot&)> conductivity;
-    std::function<Complex(std::size_t, const ComplexSpot&)> source;  // heat taken up per volume
-    std::function<Complex(std::size_t, const ComplexSpot&)> outflow; // per area of a face
+    std::function<Complex(std::size_t, const ComplexSpot&)> source;   // heat taken up per volume
+    std::function<Complex(std::size_t, const ComplexSpot&)> outflow;  // per area of a face
+    std::function<Complex(std::size_t, const ComplexSpot&)> capacity; // per volume, not of temperature
     Complex contact = 0.0;
 
     std::size_t regions() const { return mesh_.region_names.size(); }
@@ -103,6 +104,80 @@ class ComplexBody {
             }
             if (pass > 4 && largest < 1e-13) break;
         }
+    }
+
+    /// Heat taken up at every unknown by a rise, lumped by row sums or consistent.
+    std::vector<Complex> stored(const std::vector<Complex>& rise, bool lumped) {
+        std::vector<Complex> out(T.size(), 0.0);
+        for (Index c = 0; c < mesh_.cell_count(); ++c) {
+            const Id region = mesh_.region[static_cast<std::size_t>(c)];
+            each_point(c, [&](const Cell& at, Complex w) {
+                const Complex per_volume = w * capacity(static_cast<std::size_t>(region), at.spot);
+                Complex here = 0.0;
+                for (int i = 0; i < E::nodes; ++i)
+                    here += at.shape[static_cast<std::size_t>(i)] * rise[unknown(mesh_.cell(c)[i], region)];
+                for (int i = 0; i < E::nodes; ++i) {
+                    const std::size_t u = unknown(mesh_.cell(c)[i], region);
+                    out[u] += per_volume * at.shape[static_cast<std::size_t>(i)] * (lumped ? rise[u] : here);
+                }
+            });
+        }
+        return out;
+    }
+
+    /// One theta step from the temperatures `from` into T; prescribed unknowns stand at their values throughout.
+    /// Returns stored(T - from) + dt r(theta T + (1 - theta) from) at all unknowns: zero where free.
+    std::vector<Complex> step(const std::vector<Complex>& from, double dt, double theta, bool lumped) {
+        std::vector<Complex> now = from;
+        std::vector<Complex> early = from;
+        for (std::size_t u = 0; u < now.size(); ++u)
+            if (fixed[u]) now[u] = early[u] = fixed_value[u];
+        const std::size_t n = now.size();
+        const auto balance = [&](const std::vector<Complex>& at) {
+            std::vector<Complex> rise(n);
+            for (std::size_t u = 0; u < n; ++u) {
+                rise[u] = at[u] - from[u];
+                T[u] = theta * at[u] + (1.0 - theta) * early[u];
+            }
+            std::vector<Complex> r = residual();
+            const std::vector<Complex> s = stored(rise, lumped);
+            for (std::size_t u = 0; u < n; ++u) r[u] = s[u] + dt * r[u];
+            return r;
+        };
+        std::vector<Complex> r;
+        for (int pass = 0; pass < 8; ++pass) {
+            r = balance(now);
+            std::vector<std::vector<Complex>> A(n, std::vector<Complex>(n, 0.0));
+            for (std::size_t j = 0; j < n; ++j) {
+                const double h = 1e-4;
+                std::vector<Complex> moved = now;
+                moved[j] += h;
+                const std::vector<Complex> above = balance(moved);
+                moved[j] -= 2.0 * h;
+                const std::vector<Complex> below = balance(moved);
+                for (std::size_t i = 0; i < n; ++i) A[i][j] = (above[i] - below[i]) / (2.0 * h);
+            }
+            std::vector<Complex> b = r;
+            for (std::size_t i = 0; i < n; ++i) {
+                bool used = false;
+                for (std::size_t j = 0; j < n; ++j) used = used || A[i][j] != 0.0;
+                if (fixed[i] || !used) {
+                    A[i].assign(n, 0.0);
+                    A[i][i] = 1.0;
+                    b[i] = 0.0;
+                }
+            }
+            const std::vector<Complex> d = eliminate(A, b);
+            double largest = 0.0;
+            for (std::size_t i = 0; i < n; ++i) {
+                now[i] -= d[i];
+                largest = std::max(largest, std::abs(d[i]));
+            }
+            if (pass > 3 && largest < 1e-13) break;
+        }
+        r = balance(now);
+        T = now;
+        return r;
     }
 
     /// Residual at all unknowns; with `near` only of the cells and sides that hold that unknown (for differences).

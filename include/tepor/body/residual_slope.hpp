@@ -43,12 +43,21 @@ TEPOR_INLINE void contract_slopes(const Model& model, const Values& values, Work
 TEPOR_INLINE void contract_prescribed(const Model& model, const Values& values, TimeSpan time,
                                       const double* by_prescribed, SlopeSums& sums);
 
+/// Adds d(weights . M rise)/d(slot, place) for a capacity M that does not depend on temperature, `lumped_share` of it at the nodes
+/// and the rest consistent: densities and specific heats through their parameters, and the shape derivative.
+TEPOR_INLINE void contract_capacity(const Model& model, const Values& values, Workspace& work, const double* rise,
+                                    const double* weights, double lumped_share, SlopeSums& sums);
+
 /// Adds what the places mean for the slots that move them: slots += places . dplaces/dslot. Once, when all is summed.
 TEPOR_INLINE void chain_places(const Model& model, SlopeSums& sums);
 
 /// dr/dslot at fixed T into `column` (all unknowns, set). Place slots included, prescribed temperatures aside.
 TEPOR_INLINE void residual_by_slot(const Model& model, const Values& values, Workspace& work, const double* T,
                                    TimeSpan time, Id slot, double* column);
+
+/// d(M rise)/dslot into `column` (all unknowns, set); see contract_capacity().
+TEPOR_INLINE void capacity_by_slot(const Model& model, const Values& values, Workspace& work, const double* rise, Id slot,
+                                   double lumped_share, double* column);
 
 /// dT/dslot of the prescribed unknowns into `column[free .. unknowns)` (set); true when any is not zero.
 TEPOR_INLINE bool prescribed_by_slot(const Model& model, const Values& values, TimeSpan time, Id slot, double* column);

@@ -40,6 +40,8 @@ class Storage {
 
     /// No specific heat or density depends on temperature and nothing melts.
     [[nodiscard]] bool linear() const noexcept { return linear_; }
+    /// Share of the capacity that acts at the nodes alone, 0 to 1.
+    [[nodiscard]] double lumped_share() const noexcept { return lumped_share_; }
     /// The matrix is diagonal.
     [[nodiscard]] bool diagonal_only() const noexcept { return lower_.empty() && consistent_share_ == 0.0; }
 

@@ -10,6 +10,7 @@
 #include <tepor/solve/initial.hpp>
 #include <tepor/solve/march_handles.hpp>
 #include <tepor/solve/step.hpp>
+#include <tepor/solve/tape.hpp>
 #include <tepor/solve/theta.hpp>
 #include <utility>
 
@@ -47,6 +48,11 @@ class March {
     [[nodiscard]] TEPOR_INLINE Integral integral(const Quantity& quantity);
     /// Highest value of a quantity from now on, at step ends (Adaptive: along the parabola of each step).
     [[nodiscard]] TEPOR_INLINE Peak peak(const Quantity& quantity);
+
+    /// Keeps every state from now on, for gradient(march, ...): 8 bytes per unknown and substep, twice that with Adaptive, up to
+    /// `megabytes` in all (states that do not fit are given up, and gradient says so). A recording loop allocates.
+    /// @throws Error bad_value
+    TEPOR_INLINE void record(double megabytes = 1024.0);
 
     // ---- the loop
     /// A new value, held from the next step on. NaN, infinity or a value its use does not allow keep the last one, and the next
@@ -109,6 +115,11 @@ class March {
 
     // for the verbs built on it
     [[nodiscard]] detail::Marcher& marcher() const noexcept { return *marcher_; }
+    // for derivatives
+    /// What record() has kept; null without it.
+    [[nodiscard]] TEPOR_INLINE const detail::MarchTape* tape() const noexcept;
+    [[nodiscard]] TEPOR_INLINE const std::shared_ptr<const Model>& shared_model() const noexcept;
+    [[nodiscard]] TEPOR_INLINE Capacity capacity() const noexcept;
 
   private:
     TEPOR_INLINE void run(double t, detail::MarchCallback* progress);

@@ -31,6 +31,20 @@ class SlopePasses : public SideSlopes {
             if (!only || listed(only->locals, as_id(l))) local(model_.locals[l]);
     }
 
+    /// weights . M rise, all slots at once.
+    void contract_storage(const double* rise, const double* weights, double lumped_share, SlopeSums& sums) {
+        collect_all(sums, 1.0);
+        weights_ = weights;
+        storage(rise, lumped_share);
+    }
+    /// A column of d(M rise)/dslot.
+    void storage_column(const double* rise, Id slot, const std::vector<Point>& velocity, double lumped_share,
+                        double* column) {
+        collect_column(slot, velocity);
+        column_ = column;
+        storage(rise, lumped_share);
+    }
+
     /// A column of dr/dslot: every unit weight of a cell in turn, for all cells of a block together.
     void column(const double* T, Id slot, const std::vector<Point>& velocity, double* column) {
         collect_column(slot, velocity);
@@ -48,6 +62,25 @@ class SlopePasses : public SideSlopes {
     }
 
   private:
+    void storage(const double* rise, double lumped_share) {
+        reserve_cells();
+        l_nodes_.assign(as_size(kernel_.nodes * W), 0.0);
+        CellBlock& block = work_.cells;
+        block.T = work_.nodal_T;
+        Id cell[W];
+        const Id* ids[W];
+        for (const RegionModel& region : model_.regions) {
+            if (!with_places_ && !wants(region.density) && !wants(region.specific_heat)) continue;
+            for (Id c = region.first_cell; c < region.last_cell; c += W) {
+                block.count = gather_cells(model_, place_, rise, work_.nodal_T, c, region.last_cell, block, cell);
+                for (int b = 0; b < block.count; ++b) ids[b] = model_.cell(cell[b]);
+                kernel_.open(block);
+                with_weights(ids, kernel_.nodes, block.count,
+                             [&](const double* l) { capacity_block(region, cell, l, lumped_share); });
+            }
+        }
+    }
+
     static bool listed(const std::vector<Id>& ids, Id id) {
         for (const Id i : ids)
             if (i == id) return true;
@@ -276,6 +309,26 @@ TEPOR_INLINE void contract_prescribed(const Model& model, const Values& values, 
     detail::PrescribedSlopes slopes(model, values, none, time);
     slopes.collect_all(sums, 1.0);
     slopes.run(by_prescribed, nullptr);
+}
+
+TEPOR_INLINE void contract_capacity(const Model& model, const Values& values, Workspace& work, const double* rise,
+                                    const double* weights, double lumped_share, SlopeSums& sums) {
+    if (!model.kernels->shape_at(0))
+        throw Error(ErrorCode::not_supported, "capacity",
+                    "derivatives of marches need cells with shape functions; use Segment<P>");
+    detail::SlopePasses(model, values, work, {}).contract_storage(rise, weights, lumped_share, sums);
+}
+
+TEPOR_INLINE void capacity_by_slot(const Model& model, const Values& values, Workspace& work, const double* rise,
+                                   Id slot, double lumped_share, double* column) {
+    for (Index u = 0; u < model.unknowns; ++u) column[u] = 0.0;
+    const SlotRole& role = model.roles[detail::as_size(slot)];
+    if (!role.capacity && !role.place) return;
+    if (!model.kernels->shape_at(0))
+        throw Error(ErrorCode::not_supported, "capacity",
+                    "derivatives of marches need cells with shape functions; use Segment<P>");
+    detail::SlopePasses(model, values, work, {})
+        .storage_column(rise, slot, places_by_slot(model, slot), lumped_share, column);
 }
 
 TEPOR_INLINE std::vector<Point> places_by_slot(const Model& model, Id slot) {

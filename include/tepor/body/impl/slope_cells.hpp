@@ -170,6 +170,38 @@ class CellSlopes : public SlopeCollector {
         if (with_places_) move_cells(cells, region.conductivities);
     }
 
+    /// Heat stored: density times specific heat times the rise in block.T, against the weights `l`.
+    void capacity_block(const RegionModel& region, const Id* cells, const double* l, double lumped_share) {
+        const CellBlock& block = work_.cells;
+        const auto n = as_size(kernel_.points * W);
+        const Points at{static_cast<Index>(n), value_.data(), nullptr, block.point_x, block.point_y};
+        at_points(l);
+        // what capacity per volume multiplies: at the points where consistent, node by node where lumped
+        for (int q = 0; q < kernel_.points; ++q) {
+            const double* shape = kernel_.shape_at(q);
+            for (int c = 0; c < W; ++c) {
+                const auto i = as_size(q * W + c);
+                double nodal = 0.0;
+                for (int a = 0; a < kernel_.nodes; ++a) nodal += shape[a] * l[a * W + c] * block.T[a * W + c];
+                l_[i] = (1.0 - lumped_share) * l_[i] * block.point_T[i] + lumped_share * nodal;
+                lx_[i] = ly_[i] = tx_[i] = ty_[i] = 0.0;
+            }
+        }
+        for (std::size_t i = 0; i < n; ++i) value_[i] = by_x_[i] = by_y_[i] = 0.0;
+        evaluate(region.density, at, fluid_.data());
+        evaluate(region.specific_heat, at, extent_.data());
+        for (std::size_t i = 0; i < n; ++i) p_[i] = block.weight[i] * l_[i] * extent_[i];
+        back(region.density, at, p_.data());
+        for (std::size_t i = 0; i < n; ++i) p_[i] = block.weight[i] * l_[i] * fluid_[i];
+        back(region.specific_heat, at, p_.data());
+        if (!with_places_) return;
+        for (std::size_t i = 0; i < n; ++i) {
+            density_[i] = fluid_[i] * extent_[i];
+            k_[0][i] = k_[1][i] = k_[2][i] = 0.0;
+        }
+        move_cells(cells, 1);
+    }
+
   private:
     /// Weights, their gradient and that of the temperature at the points.
     void at_points(const double* TEPOR_RESTRICT l) {

@@ -149,6 +149,21 @@ TEPOR_INLINE double March::last_step() const noexcept {
 TEPOR_INLINE Index March::factorisations() const noexcept {
     return marcher_->factorisations;
 }
+TEPOR_INLINE void March::record(double megabytes) {
+    if (!(megabytes > 0.0) || !std::isfinite(megabytes))
+        throw Error(ErrorCode::bad_value, "megabytes",
+                    detail::text("record: megabytes = ", megabytes, ", expected a finite number > 0"));
+    marcher_->record(megabytes);
+}
+TEPOR_INLINE const detail::MarchTape* March::tape() const noexcept {
+    return marcher_->tape.get();
+}
+TEPOR_INLINE const std::shared_ptr<const Model>& March::shared_model() const noexcept {
+    return marcher_->model;
+}
+TEPOR_INLINE Capacity March::capacity() const noexcept {
+    return marcher_->scheme.capacity;
+}
 TEPOR_INLINE Index March::rejections() const noexcept {
     return marcher_->rejections;
 }

@@ -12,6 +12,7 @@
 #include <tepor/solve/loads.hpp>
 #include <tepor/solve/march_handles.hpp>
 #include <tepor/solve/step.hpp>
+#include <tepor/solve/tape.hpp>
 #include <vector>
 
 namespace tepor::detail {
@@ -93,6 +94,12 @@ class Marcher {
     Values values; ///< of the last step
     std::shared_ptr<const Model> model;
     Scheme scheme;
+    std::unique_ptr<MarchTape> tape; ///< states of the run, when they are recorded
+    void record(double megabytes) {
+        tape = std::make_unique<MarchTape>();
+        tape->start = T_;
+        tape->most_bytes = static_cast<std::size_t>(megabytes * 1048576.0);
+    }
     struct Summed {
         Index reading = 0;
         double sum = 0.0;
@@ -225,6 +232,7 @@ class Marcher {
     std::vector<double> start_T_; ///< before the step
     double start_time_ = 0.0;
     int start_damp_ = 0;
+    std::size_t start_legs_ = 0;      ///< of the tape
     double whole_ = 1.0;              ///< size of the step in hand [s]
     std::vector<double> piece_T_;     ///< before the substep
     std::vector<double> early_T_;     ///< the same with prescribed temperatures after their jump

@@ -42,6 +42,7 @@ TEPOR_INLINE Verdict Marcher::advance_adaptive(double end) noexcept {
             verdict = tr_bdf2(to, dt, error);
             const bool fine = verdict == Verdict::ok && error <= scheme.error;
             if (fine) {
+                if (tape) tape->add({time, to, 1.0, true, 0, T_, stage_T_}, values);
                 time = to;
                 last_step = dt;
                 const double factor = 0.9 * std::cbrt(scheme.error / std::max(error, 1e-30));

@@ -42,6 +42,7 @@ TEPOR_INLINE Verdict Marcher::advance_short(double end) noexcept {
 TEPOR_INLINE void Marcher::keep_start() {
     start_time_ = time;
     start_damp_ = damp_;
+    if (tape) start_legs_ = tape->legs.size();
     start_T_ = T_;
     if (!molten_.empty()) start_molten_ = molten_;
 }
@@ -49,6 +50,7 @@ TEPOR_INLINE void Marcher::keep_start() {
 TEPOR_INLINE void Marcher::back_to_start() noexcept {
     time = start_time_;
     damp_ = start_damp_;
+    if (tape) tape->shorten(start_legs_);
     std::copy(start_T_.begin(), start_T_.end(), T_.begin());
     std::copy(start_molten_.begin(), start_molten_.end(), molten_.begin());
 }
@@ -115,6 +117,7 @@ TEPOR_INLINE Verdict Marcher::piece(double end, double dt) {
 TEPOR_INLINE Verdict Marcher::substep(double end, double dt, double theta) {
     const Verdict verdict = linear_ ? linear_substep(end, dt, theta) : newton_substep(end, dt, theta);
     if (verdict == Verdict::ok) {
+        if (tape) tape->add({time, end, theta, false, 0, T_, {}}, values);
         time = end;
         last_step = dt;
     }
