@@ -56,10 +56,6 @@ struct Estimated {
     double high = 0.0;
 };
 
-namespace detail {
-class FitModel;
-}
-
 /// What a fit found.
 class Fitted {
   public:
@@ -89,7 +85,6 @@ class Fitted {
                                                  const std::vector<Condition>& conditions = {}) const;
 
   private:
-    friend class detail::FitModel;
     friend struct FitAccess;
 
     std::vector<Parameter> parameters_;
