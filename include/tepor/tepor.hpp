@@ -132,12 +132,17 @@
 #include <tepor/solve/periodic.hpp>
 #include <tepor/solve/steady.hpp>
 #include <tepor/solve/step.hpp>
+#include <tepor/solve/tape.hpp>
 #include <tepor/solve/theta.hpp>
 
 #include <tepor/answers/bracket.hpp>
+#include <tepor/answers/compact.hpp>
 #include <tepor/answers/estimate.hpp>
 #include <tepor/answers/fit.hpp>
+#include <tepor/answers/fit_march.hpp>
 #include <tepor/answers/gradient.hpp>
+#include <tepor/answers/gradient_march.hpp>
 #include <tepor/answers/linear_quantity.hpp>
 #include <tepor/answers/size_for.hpp>
+#include <tepor/answers/state_space.hpp>
 #include <tepor/answers/target.hpp>
