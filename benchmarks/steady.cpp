@@ -1,0 +1,202 @@
+// Steady solves and assembly against what one would write by hand, and against triplets, all in one run.
+//
+// 1D: a million linear cells with conductivity and source of place, from a changed parameter to the field, against a fused
+// sweep that assembles and eliminates as it goes. 2D: the numeric assembly of linear triangles at about 1e5 unknowns,
+// against Eigen's triplets and against a scatter with a ready map and the same arithmetic. The copy of 256 MB beside them
+// tells what the memory of the machine gives.
+
+#include <Eigen/Sparse>
+#include <benchmark/benchmark.h>
+#include <cstring>
+#include <tepor/body/assemble.hpp>
+#include <tepor/element/segment.hpp>
+#include <tepor/element/triangle.hpp>
+#include <tepor/mesh/layers.hpp>
+#include <tepor/mesh/tiles.hpp>
+#include <tepor/solve/steady.hpp>
+#include <vector>
+
+namespace {
+using namespace tepor;
+
+constexpr Index line_cells = 1'000'000;
+
+void memory_copy(benchmark::State& state) {
+    const std::size_t bytes = std::size_t{1} << 28U;
+    std::vector<char> from(bytes, 1);
+    std::vector<char> to(bytes, 2);
+    for (auto _ : state) {
+        std::memcpy(to.data(), from.data(), bytes);
+        benchmark::DoNotOptimize(to.data());
+        benchmark::ClobberMemory();
+    }
+    state.SetBytesProcessed(static_cast<std::int64_t>(state.iterations()) * 2 * static_cast<std::int64_t>(bytes));
+}
+BENCHMARK(memory_copy)->Unit(benchmark::kMillisecond);
+
+/// -(k T')' = f on (0, 1), T(0) = 0, film 10 to 0 at x = 1: assembled and eliminated in one sweep, then substituted back.
+void line_by_hand(benchmark::State& state) {
+    const Index n = line_cells;
+    std::vector<double> x(detail::as_size(n + 1));
+    for (Index i = 0; i <= n; ++i) x[detail::as_size(i)] = static_cast<double>(i) / static_cast<double>(n);
+    std::vector<double> ratio(detail::as_size(n + 1));
+    std::vector<double> T(detail::as_size(n + 1));
+    double scale = 1.0;
+    const double g[2] = {0.21132486540518712, 0.78867513459481288};
+    for (auto _ : state) {
+        scale += 0.001;
+        const auto k = [scale](double at) { return scale * (1.0 + 0.5 * at); };
+        const auto f = [](double at) { return 100.0 * at * (1.0 - at); };
+        double pivot = 0.0; // of the node to the left, its own cell's share still missing
+        double right = 0.0;
+        for (Index c = 0; c < n; ++c) {
+            const auto i = detail::as_size(c);
+            const double h = x[i + 1] - x[i];
+            const double a = x[i] + g[0] * h;
+            const double b = x[i] + g[1] * h;
+            const double conductance = 0.5 * (k(a) + k(b)) / h;
+            const double fa = 0.5 * h * f(a);
+            const double fb = 0.5 * h * f(b);
+            if (c == 0) { // the first node is held at 0
+                pivot = conductance;
+                right = g[0] * fa + g[1] * fb;
+                continue;
+            }
+            pivot += conductance;
+            right += g[1] * fa + g[0] * fb;
+            const double r = conductance / pivot;
+            ratio[i] = r;
+            T[i] = right / pivot;
+            right = g[0] * fa + g[1] * fb + r * right;
+            pivot = conductance - r * conductance;
+        }
+        T[detail::as_size(n)] = right / (pivot + 10.0);
+        for (Index c = n - 1; c > 0; --c)
+            T[detail::as_size(c)] += ratio[detail::as_size(c)] * T[detail::as_size(c + 1)];
+        benchmark::DoNotOptimize(T.data());
+    }
+    state.counters["ns/cell"] = benchmark::Counter(
+        1e-9 * static_cast<double>(n), benchmark::Counter::kIsIterationInvariantRate | benchmark::Counter::kInvert);
+}
+BENCHMARK(line_by_hand)->Unit(benchmark::kMillisecond);
+
+void line_steady(benchmark::State& state) {
+    const Parameter scale{"scale", 1.0};
+    Body body{layers<Segment<1>>({{.region = "slab", .thickness = 1.0, .cells = line_cells}})};
+    body.in("slab",
+            Material{.conductivity = of_place({scale}, [](const auto& p, auto s) { return s * (1.0 + 0.5 * p.x); })});
+    body.in("slab", Generation{.per_volume = of_place([](const auto& p) { return 100.0 * p.x * (1.0 - p.x); })});
+    body.on("inner", FixedTemperature{0.0}).on("outer", Film{.coefficient = 10.0, .fluid = 0.0});
+    double value = 1.0;
+    for (auto _ : state) {
+        value += 0.001;
+        body.set(scale, value);
+        const Field field = steady(body);
+        benchmark::DoNotOptimize(field.temperature().data());
+    }
+    state.counters["ns/cell"] =
+        benchmark::Counter(1e-9 * static_cast<double>(line_cells),
+                           benchmark::Counter::kIsIterationInvariantRate | benchmark::Counter::kInvert);
+}
+BENCHMARK(line_steady)->Unit(benchmark::kMillisecond);
+
+const Mesh<Triangle<1>>& plane() {
+    static const Mesh<Triangle<1>> mesh = [] {
+        Tiles drawing;
+        drawing.add("plate", {0.0, 0.0}, {1.0, 1.0});
+        return tiles<Triangle<1>>(drawing, {.size = 1.0 / 316.0}, Planar{});
+    }();
+    return mesh;
+}
+
+/// Element matrix of a linear triangle with conductivity k at its middle.
+void triangle_matrix(const Point* p, double* m) {
+    const double bx[3] = {p[1].y - p[2].y, p[2].y - p[0].y, p[0].y - p[1].y};
+    const double by[3] = {p[2].x - p[1].x, p[0].x - p[2].x, p[1].x - p[0].x};
+    const double twice = bx[0] * by[1] - bx[1] * by[0];
+    const double k = (1.0 + 0.5 * (p[0].x + p[1].x + p[2].x) / 3.0) / (2.0 * twice);
+    int at = 0;
+    for (int i = 0; i < 3; ++i)
+        for (int j = 0; j <= i; ++j) m[at++] = k * (bx[i] * bx[j] + by[i] * by[j]);
+}
+
+void per_unknown(benchmark::State& state, Index unknowns) {
+    state.counters["ns/unknown"] =
+        benchmark::Counter(1e-9 * static_cast<double>(unknowns),
+                           benchmark::Counter::kIsIterationInvariantRate | benchmark::Counter::kInvert);
+}
+
+void plane_triplets(benchmark::State& state) {
+    const MeshData& mesh = plane();
+    for (auto _ : state) {
+        std::vector<Eigen::Triplet<double>> triplets;
+        triplets.reserve(detail::as_size(9 * mesh.cell_count()));
+        for (Index c = 0; c < mesh.cell_count(); ++c) {
+            const Id* ids = mesh.cell(c);
+            const Point p[3] = {mesh.nodes[detail::as_size(ids[0])], mesh.nodes[detail::as_size(ids[1])],
+                                mesh.nodes[detail::as_size(ids[2])]};
+            double m[6];
+            triangle_matrix(p, m);
+            for (int i = 0; i < 3; ++i)
+                for (int j = 0; j < 3; ++j)
+                    triplets.emplace_back(ids[i], ids[j], i > j ? m[i * (i + 1) / 2 + j] : m[j * (j + 1) / 2 + i]);
+        }
+        Eigen::SparseMatrix<double> matrix(mesh.node_count(), mesh.node_count());
+        matrix.setFromTriplets(triplets.begin(), triplets.end());
+        benchmark::DoNotOptimize(matrix.valuePtr());
+    }
+    per_unknown(state, mesh.node_count());
+}
+BENCHMARK(plane_triplets)->Unit(benchmark::kMillisecond);
+
+Body plane_body() {
+    Body body{plane()};
+    body.in("plate", Material{.conductivity = of_place([](const auto& p) { return 1.0 + 0.5 * p.x; })});
+    body.on("left", FixedTemperature{0.0});
+    return body;
+}
+
+/// The model's own numbering and map, one triangle after the other, its conductivity at the middle.
+void plane_scatter_by_hand(benchmark::State& state) {
+    const Body body = plane_body();
+    const Model& model = *body.model();
+    SparseMatrix matrix;
+    prepare_matrix(model, matrix);
+    for (auto _ : state) {
+        std::fill(matrix.lower.begin(), matrix.lower.end(), 0.0);
+        for (Index c = 0; c < static_cast<Index>(model.user_cell.size()); ++c) {
+            const Id* ids = model.cell(c);
+            const Point p[3] = {model.places[detail::as_size(ids[0])], model.places[detail::as_size(ids[1])],
+                                model.places[detail::as_size(ids[2])]};
+            double m[6];
+            triangle_matrix(p, m);
+            const Id* map = model.scatter.data() + 6 * c;
+            for (int e = 0; e < 6; ++e) matrix.lower[detail::as_size(map[e])] += m[e];
+        }
+        benchmark::DoNotOptimize(matrix.lower.data());
+    }
+    per_unknown(state, model.unknowns);
+}
+BENCHMARK(plane_scatter_by_hand)->Unit(benchmark::kMillisecond);
+
+void plane_assembly(benchmark::State& state) {
+    const Body body = plane_body();
+    const Model& model = *body.model();
+    SparseMatrix matrix;
+    prepare_matrix(model, matrix);
+    Workspace work = model.kernels->workspace();
+    const std::vector<double> T(detail::as_size(model.unknowns), 0.0);
+    for (auto _ : state) {
+        Pass pass;
+        pass.T = T.data();
+        pass.matrix = &matrix;
+        assemble(model, body.values(), work, pass);
+        benchmark::DoNotOptimize(matrix.lower.data());
+    }
+    per_unknown(state, model.unknowns);
+}
+BENCHMARK(plane_assembly)->Unit(benchmark::kMillisecond);
+
+} // namespace
+
+BENCHMARK_MAIN();
