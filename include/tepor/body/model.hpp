@@ -147,7 +147,8 @@ class Model {
 
     bool nonlinear = false;      ///< something depends on temperature
     bool slope = false;          ///< conductivity does: the derivative is unsymmetric
-    bool time_dependent = false; ///< a schedule or function of time is among the data
+    bool time_dependent = false; ///< a schedule, a function of time or a law that may use the time is among the data
+    bool scheduled = false;      ///< a schedule or a function of time alone is
     bool moving = false;         ///< a thickness is a Parameter
 
     /// Slot of a parameter, -1 when the body does not use it.

@@ -15,6 +15,8 @@ struct SteadyOptions {
     std::optional<double>
         start{};                 ///< temperature everywhere to start from; default: the mean of the temperatures given
     const Field* from = nullptr; ///< or a field of a body described alike
+    std::optional<double>
+        time{}; ///< [s] at which schedules and functions of time are taken; a body with such data needs it
 };
 
 /// The steady temperature field of a body at its present parameter values.
@@ -24,7 +26,7 @@ struct SteadyOptions {
 /// gross heat traffic plus what rounding leaves. A factor is kept by the body and used again while no value in the matrix
 /// changes. Safe from many threads on a const Body.
 /// @throws Error no_level (nothing sets the temperature level of a part), not_converged (with the history and the worst place),
-///         singular, outside_table, bad_law, and whatever the description gets wrong
+///         singular, outside_table, bad_law, missing (data over time and no instant), and whatever the description gets wrong
 [[nodiscard]] TEPOR_INLINE Field steady(const Body& body, const SteadyOptions& options = {});
 
 } // namespace tepor

@@ -137,7 +137,13 @@ class TermCompiler {
         return model_.scale == TemperatureScale::celsius ? Range::celsius_temperature : Range::kelvin_temperature;
     }
 
-    void timed(const Coefficient& c) { model_.time_dependent = model_.time_dependent || c.depends_on_time(); }
+    void timed(const Coefficient& c) {
+        if (!c.depends_on_time()) return;
+        model_.time_dependent = true;
+        // laws of place may use the time, schedules and of_time do nothing else
+        const bool law = c.value().kind() == Value::Kind::law;
+        if (!law || (!c.value().law().uses().place && !c.value().law().uses().temperature)) model_.scheduled = true;
+    }
 
     void nonlinear(const Coefficient& c, bool conducts) {
         timed(c);

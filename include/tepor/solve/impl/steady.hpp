@@ -10,10 +10,16 @@ namespace tepor {
 
 namespace detail {
 
+/// The instant a steady state is asked for.
+inline TimeSpan instant(const SteadyOptions& options) noexcept {
+    const double t = options.time ? *options.time : 0.0;
+    return {t, t, 1.0};
+}
+
 class SteadySolve {
   public:
     SteadySolve(Engine& engine, const Values& values, const SteadyOptions& options)
-        : engine_(engine), model_(engine.model()), values_(values), options_(options) {}
+        : engine_(engine), model_(engine.model()), values_(values), options_(options), at_(instant(options)) {}
 
     /// Fills T (prescribed part set already), leaves the residual of the result in the engine.
     void run(double* T, bool factored) {
@@ -43,6 +49,7 @@ class SteadySolve {
     void evaluate(const double* T, bool with_matrix) {
         pass_ = Pass{};
         pass_.T = T;
+        pass_.time = at_;
         pass_.residual = engine_.residual.data();
         pass_.matrix = with_matrix ? &engine_.matrix : nullptr;
         assemble(model_, values_, engine_.work, pass_);
@@ -72,6 +79,7 @@ class SteadySolve {
         for (Index u = 0; u < model_.unknowns; ++u) engine_.residual[as_size(u)] += engine_.product[as_size(u)];
         Pass faces;
         faces.T = T;
+        faces.time = at_;
         for (const RegionModel& region : model_.regions)
             for (const VolumeTerm& term : region.volume)
                 if (term.kind == VolumeTerm::Kind::side_film) return evaluate(T, false); // its traffic depends on T
@@ -133,6 +141,7 @@ class SteadySolve {
     const Model& model_;
     const Values& values_;
     const SteadyOptions& options_;
+    TimeSpan at_;
     Pass pass_;
     std::vector<SolvePass> history_;
 };
@@ -151,6 +160,11 @@ inline void validate(const SteadyOptions& options) {
 TEPOR_INLINE Field steady(const Body& body, const SteadyOptions& options) {
     detail::validate(options);
     const std::shared_ptr<const Model> model = body.model();
+    if (model->scheduled && !options.time)
+        throw Error(
+            ErrorCode::missing, "time",
+            "steady: the data of this body change with time (a schedule or of_time); say at which instant the steady "
+            "state is asked for with SteadyOptions{.time = ...}, or march");
     Values values = body.values();
     detail::require_level(*model, values);
     std::vector<double> T(detail::as_size(model->unknowns));
@@ -161,10 +175,11 @@ TEPOR_INLINE Field steady(const Body& body, const SteadyOptions& options) {
                 "SteadyOptions: the field to start from belongs to another mesh; start from a field of this body");
         T = options.from->temperature();
     } else {
-        const double start = options.start ? *options.start : detail::start_temperature(*model, values, {});
+        const double start =
+            options.start ? *options.start : detail::start_temperature(*model, values, detail::instant(options));
         std::fill(T.begin(), T.end(), start);
     }
-    model->prescribe(values, {}, T.data());
+    model->prescribe(values, detail::instant(options), T.data());
 
     EnginePool& pool = body.kept<EnginePool>();
     const std::vector<double> key = matrix_key(*model, values);
@@ -174,7 +189,7 @@ TEPOR_INLINE Field steady(const Body& body, const SteadyOptions& options) {
     detail::SteadySolve solve(*engine, values, options);
     solve.run(T.data(), factored);
     detail::check_tables(*model, values, engine->work, T.data());
-    Field field(model, std::move(values), std::move(T), engine->residual);
+    Field field(model, std::move(values), std::move(T), engine->residual, detail::instant(options).to);
     field.passes() = solve.take_history();
     field.keep(body.shared_kept<EnginePool>());
     if (!model->nonlinear) engine->key = key;
