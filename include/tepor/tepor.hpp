@@ -144,5 +144,6 @@
 #include <tepor/answers/gradient_march.hpp>
 #include <tepor/answers/linear_quantity.hpp>
 #include <tepor/answers/size_for.hpp>
+#include <tepor/answers/sized.hpp>
 #include <tepor/answers/state_space.hpp>
 #include <tepor/answers/target.hpp>

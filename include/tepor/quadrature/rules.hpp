@@ -29,10 +29,10 @@ inline Rule<2> square_rule(int n) {
 /// E is any type with `shape_of_cell` and `dim`, the element of a user included. Cheap: built per body, not kept.
 template <class E>
 Rule<E::dim> rule_for(int degree) {
-    using Shape = std::remove_cvref_t<decltype(E::shape_of_cell)>; // CellShape, which stands in a later room
+    using ReferenceCell = std::remove_cvref_t<decltype(E::shape_of_cell)>; // CellShape, which stands in a later room
     if constexpr (E::dim == 1)
         return line_rule(degree);
-    else if constexpr (E::shape_of_cell == Shape::triangle)
+    else if constexpr (E::shape_of_cell == ReferenceCell::triangle)
         return triangle_rule(degree);
     else
         return square_rule(degree < 1 ? 1 : degree / 2 + 1);

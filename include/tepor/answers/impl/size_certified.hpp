@@ -3,7 +3,8 @@
 
 #include <cmath>
 #include <tepor/answers/bracket.hpp>
-#include <tepor/answers/size_for.hpp>
+#include <tepor/answers/sized.hpp>
+#include <tepor/answers/target.hpp>
 #include <tepor/base/text.hpp>
 
 namespace tepor::detail {

@@ -2,7 +2,8 @@
 // The pieces of a temperature map: where it stands, its small triangles, isotherms, outlines, arrows and face names.
 
 #include <tepor/body/split.hpp>
-#include <tepor/output/svg.hpp>
+#include <tepor/field/field.hpp>
+#include <tepor/output/picture_style.hpp>
 
 namespace tepor::detail {
 
