@@ -21,11 +21,29 @@ TEPOR_INLINE ChildTable even_split(const CellKind& kind) {
     return make_child_table(kind, {{o, m, c, w}, {m, x, e, c}, {c, e, xy, n}, {w, c, n, y}});
 }
 
+/// The places of the finer nodes in the layers of a 1D stack, so that a Parameter moves them as it moved the coarse ones.
+TEPOR_INLINE void refine_stack(const MeshData& coarse, const ChildTable& table, MeshData& fine) {
+    const LayerStack& from = coarse.stack;
+    LayerStack& to = fine.stack;
+    to.start = from.start;
+    to.thickness = from.thickness;
+    to.place.resize(fine.nodes.size());
+    const Id* node = fine.cells.data(); // children follow each other as their parents do
+    for (Index c = 0; c < coarse.cell_count(); ++c) {
+        const StackPlace left = from.place[as_size(coarse.cell(c)[0])];
+        const StackPlace right = from.place[as_size(coarse.cell(c)[1])];
+        for (const int spot : table.node)
+            to.place[as_size(*node++)] = between(left, right, table.spots[as_size(spot)].xi.x);
+        to.layer_of_cell.insert(to.layer_of_cell.end(), as_size(table.children), from.layer_of_cell[as_size(c)]);
+    }
+}
+
 TEPOR_INLINE void refine_uniformly(const MeshData& coarse, const CellKind& kind, MeshData& fine) {
     const std::vector<ChildTable> tables{even_split(kind)};
     const std::vector<std::uint8_t> which(as_size(coarse.cell_count()), 0);
     Lineage lineage;
     subdivide(coarse, kind, match_sides(coarse), tables, which, false, fine, lineage);
+    if (coarse.stack.given()) refine_stack(coarse, tables[0], fine);
 }
 
 TEPOR_INLINE std::vector<double> refine_values(const MeshData& coarse, const CellKind& kind, const MeshData& fine,
