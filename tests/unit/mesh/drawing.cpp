@@ -445,7 +445,7 @@ TEST_CASE("drawings that show nothing or cannot be told apart are refused with p
                    (void)triangulate<Triangle<1>>(s,
                                                   {.size = 1e-5}); // would be 2e10 triangles: told before they are made
                }),
-               "triangles or more, over most_triangles = 4000000");
+               "size: about 2.32558e+10 triangles, over most_triangles = 4000000");
     check_says(refusal([] {
                    Section s;
                    s.add("a", rectangle({0, 0}, {1, 1}));

@@ -2,7 +2,9 @@
 // The first half of the refiner: edges of the graph cut into pieces, inserted, held as edges, regions flooded between them.
 
 #include <algorithm>
+#include <bit>
 #include <cmath>
+#include <cstdint>
 #include <tepor/base/error.hpp>
 #include <tepor/base/text.hpp>
 #include <tepor/mesh/curve.hpp>
@@ -234,7 +236,22 @@ TEPOR_INLINE void Refiner::part_crossing_chords() {
 }
 
 TEPOR_INLINE void Refiner::insert_pieces() {
-    const std::vector<Id> order = space_order(points_);
+    // In rounds of doubling size, each along a space-filling curve: points of one edge in their order would retriangulate
+    // everything that faces the edge again and again. (Amenta, Choi & Rote, Symp. Computational Geometry 2003, 211-219.)
+    const std::vector<Id> along = space_order(points_);
+    constexpr int rounds = 24;
+    const auto round_of = [](Id k) { // each number falls into the last round with chance 1/2, the one before with 1/4, ...
+        std::uint32_t h = static_cast<std::uint32_t>(k) * 0x9E3779B9U;
+        h ^= h >> 16U;
+        h *= 0x85EBCA6BU;
+        h ^= h >> 13U;
+        return std::min(std::countr_zero(h | (1U << (rounds - 1))), rounds - 1);
+    };
+    std::vector<Id> order;
+    order.reserve(along.size());
+    for (int round = rounds; round-- > 0;)
+        for (Id k : along)
+            if (round_of(k) == round) order.push_back(k);
     std::vector<Id> vertex(points_.size(), -1);
     Id hint = 0;
     for (Id k : order) {

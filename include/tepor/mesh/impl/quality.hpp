@@ -358,19 +358,9 @@ TEPOR_INLINE void Refiner::smooth() {
 }
 
 TEPOR_INLINE void Refiner::refine() {
-    // Sizes in the wrong unit are told before the work is done: triangles are about 0.43 size^2 each.
-    double least = 0.0;
-    for (Index t = 0; t < mesh.triangles(); ++t) {
-        const Id region = mesh.label[as_size(t)];
-        for (Index h = 3 * t; h < 3 * t + 3; ++h)
-            if (!(distance(mesh.at(mesh.from(as_id(h))), mesh.at(mesh.to(as_id(h)))) > 1e-3 * graph_.tolerance))
-                fail(mesh.at(mesh.from(as_id(h))), "edges run together at too sharp an angle");
-        if (region < 0) continue;
-        const Id* o = mesh.org.data() + 3 * t;
-        const double size =
-            as_size(region) < targets_.region_size.size() ? targets_.region_size[as_size(region)] : targets_.size;
-        least += 0.5 * cross(mesh.at(o[1]) - mesh.at(o[0]), mesh.at(o[2]) - mesh.at(o[0])) / (0.43 * size * size);
-    }
+    for (Index h = 0; h < 3 * mesh.triangles(); ++h)
+        if (!(distance(mesh.at(mesh.from(as_id(h))), mesh.at(mesh.to(as_id(h)))) > 1e-3 * graph_.tolerance))
+            fail(mesh.at(mesh.from(as_id(h))), "edges run together at too sharp an angle");
     const auto refuse = [&](double count) {
         Id shortest = 0;
         double length = 1e300;
@@ -383,11 +373,10 @@ TEPOR_INLINE void Refiner::refine() {
         }
         const Point p = mesh.at(shortest);
         throw Error(ErrorCode::too_large, "size",
-                    text("size: about ", count, " triangles or more, over most_triangles = ", targets_.most_triangles,
+                    text("size: ", count, " triangles and not done, over most_triangles = ", targets_.most_triangles,
                          "; the shortest piece of an edge is ", length, " m long, near (", p.x, ", ", p.y,
                          "); use a larger size, or draw no strips that narrow, or raise most_triangles"));
     };
-    if (least > 1.5 * as_double(targets_.most_triangles)) refuse(least);
     size_.assign(mesh.points.size(), 1e300);
     for (std::size_t s = 0; s < pieces_.size(); ++s) {
         const Id h = mesh.segment_edge[s];

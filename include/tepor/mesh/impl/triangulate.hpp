@@ -12,6 +12,7 @@
 #include <tepor/mesh/sides.hpp>
 #include <tepor/mesh/space_order.hpp>
 #include <tepor/mesh/triangulate.hpp>
+#include <utility>
 
 namespace tepor::detail {
 
@@ -74,6 +75,30 @@ TEPOR_INLINE Targets make_targets(const Meshing& meshing, const Section& section
             for (Id f : graph.face_sets[as_size(e.face_set)]) e.size = std::min(e.size, face_size[as_size(f)]);
     }
     return targets;
+}
+
+/// Sizes in the wrong unit are told before the work is done: triangles are about 0.43 size^2 each.
+TEPOR_INLINE void estimate_count(const Targets& targets, const PlaneGraph& graph) {
+    double least = 0.0;
+    for (const auto& e : graph.edges) {
+        const Point a = graph.points[as_size(e.a)];
+        const Point b = graph.points[as_size(e.b)];
+        double area = 0.5 * cross(a - graph.points[0], b - graph.points[0]); // of the sum over closed loops
+        if (e.arc >= 0) {
+            const MeshArc& arc = graph.arcs[as_size(e.arc)];
+            const double turn = std::atan2(cross(a - arc.centre, b - arc.centre), dot(a - arc.centre, b - arc.centre));
+            area += 0.5 * arc.radius * arc.radius * (turn - std::sin(turn));
+        }
+        for (const auto& [region, sign] : {std::pair{e.left, 1.0}, std::pair{e.right, -1.0}}) {
+            if (region < 0) continue;
+            const double size = targets.region_size[as_size(region)];
+            least += sign * area / (0.43 * size * size);
+        }
+    }
+    if (least > 1.5 * as_double(targets.most_triangles))
+        throw Error(ErrorCode::too_large, "size",
+                    text("size: about ", least, " triangles, over most_triangles = ", targets.most_triangles,
+                         "; use a larger size (is it in metres?), or raise most_triangles"));
 }
 
 /// Triangles inside, vertices they use, both along a space-filling curve; faces and curved sides.
@@ -270,6 +295,7 @@ TEPOR_INLINE void triangulate(const Section& section, const Meshing& meshing, co
         }
     }
     const Targets targets = make_targets(meshing, section, picture);
+    estimate_count(targets, picture.graph);
     Refiner refiner(picture.graph, targets);
     refiner.start(true);
     refiner.refine();
