@@ -15,7 +15,8 @@ namespace tepor {
 /// those of the exact solution too: `Field::at`, `hottest_in` and `mean_in` see it, not a straight line.
 ///
 /// A source that depends on temperature, a side loss that varies along the bar or lies in a radial frame, and marching are
-/// integrated with the same functions: nodal values are then of order 2, as with Segment<1>.
+/// integrated with the same functions: nodal values are then of order 2, as with Segment<1>. In a march the temperatures
+/// between the nodes are those a steady cell has at the present temperatures of its nodes.
 ///
 /// As an Element it has the linear shape functions of Segment<1>; the cell law is in assembly/exact_kernels.hpp.
 /// Source: I. Babuska, J. E. Osborn, SIAM J. Numerical Analysis 20 (1983) 510-536 (resistance cell); the solid centre and the
