@@ -56,8 +56,8 @@ TEPOR_INLINE void residual_by_slot(const Model& model, const Values& values, Wor
                                    TimeSpan time, Id slot, double* column);
 
 /// d(M rise)/dslot into `column` (all unknowns, set); see contract_capacity().
-TEPOR_INLINE void capacity_by_slot(const Model& model, const Values& values, Workspace& work, const double* rise, Id slot,
-                                   double lumped_share, double* column);
+TEPOR_INLINE void capacity_by_slot(const Model& model, const Values& values, Workspace& work, const double* rise,
+                                   Id slot, double lumped_share, double* column);
 
 /// dT/dslot of the prescribed unknowns into `column[free .. unknowns)` (set); true when any is not zero.
 TEPOR_INLINE bool prescribed_by_slot(const Model& model, const Values& values, TimeSpan time, Id slot, double* column);

@@ -14,7 +14,7 @@ namespace tepor {
 /// in a control step, also take two rows at a time: y(k) = b(k) - r(k-1) b(k-1) + r(k-1) r(k-2) y(k-2) halves the chain.
 class Tridiagonal {
   public:
-    /// Factors the matrix with `diagonal[0 .. n-1]` and `off[i]` at (i, i + 1) and (i + 1, i), i < n - 1.
+    /// Factors the n x n matrix of `diagonal` and `off`; off[i] stands in row i, column i + 1 and mirrored, i below n - 1.
     /// @return false when a pivot is not positive; singular_row() then names its row. Cost O(n); allocates when n grows.
     [[nodiscard]] TEPOR_INLINE bool factor(Index n, const double* diagonal, const double* off);
 

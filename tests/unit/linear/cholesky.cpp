@@ -72,7 +72,8 @@ TEST_CASE("meshes of a square leave a backward error of rounding, with places an
     }
 }
 
-TEST_CASE("nested dissection keeps the factor near n log n, whether it cuts along places or along breadth-first order") {
+TEST_CASE(
+    "nested dissection keeps the factor near n log n, whether it cuts along places or along breadth-first order") {
     // 31/4 n log2 n is the leading term for a square grid (George 1973); small grids stay well below it.
     for (const bool jittered : {false, true}) {
         const test::Square square = test::square(120, jittered, true, 12);

@@ -240,13 +240,14 @@ TEPOR_INLINE void Refiner::insert_pieces() {
     // everything that faces the edge again and again. (Amenta, Choi & Rote, Symp. Computational Geometry 2003, 211-219.)
     const std::vector<Id> along = space_order(points_);
     constexpr int rounds = 24;
-    const auto round_of = [](Id k) { // each number falls into the last round with chance 1/2, the one before with 1/4, ...
-        std::uint32_t h = static_cast<std::uint32_t>(k) * 0x9E3779B9U;
-        h ^= h >> 16U;
-        h *= 0x85EBCA6BU;
-        h ^= h >> 13U;
-        return std::min(std::countr_zero(h | (1U << (rounds - 1))), rounds - 1);
-    };
+    const auto round_of =
+        [](Id k) { // each number falls into the last round with chance 1/2, the one before with 1/4, ...
+            std::uint32_t h = static_cast<std::uint32_t>(k) * 0x9E3779B9U;
+            h ^= h >> 16U;
+            h *= 0x85EBCA6BU;
+            h ^= h >> 13U;
+            return std::min(std::countr_zero(h | (1U << (rounds - 1))), rounds - 1);
+        };
     std::vector<Id> order;
     order.reserve(along.size());
     for (int round = rounds; round-- > 0;)
