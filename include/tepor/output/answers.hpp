@@ -36,6 +36,7 @@ inline std::ostream& operator<<(std::ostream& out, const StateSpace& model) {
 
 } // namespace tepor
 
+/// @cond  (fmt's own name is not part of these pages)
 template <>
 struct fmt::formatter<tepor::Gradient> : tepor::detail::TextFormatter {};
 template <>
@@ -44,7 +45,7 @@ template <>
 struct fmt::formatter<tepor::Fitted> : tepor::detail::TextFormatter {};
 template <>
 struct fmt::formatter<tepor::StateSpace> : tepor::detail::TextFormatter {};
-
+/// @endcond
 #ifndef TEPOR_COMPILED
 #include <tepor/output/impl/answers.hpp>
 #endif

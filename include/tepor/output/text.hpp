@@ -61,6 +61,7 @@ struct TextFormatter : fmt::formatter<fmt::string_view> {
 } // namespace detail
 } // namespace tepor
 
+/// @cond  (fmt's own name is not part of these pages)
 template <>
 struct fmt::formatter<tepor::Balance> : tepor::detail::TextFormatter {};
 template <>
@@ -69,7 +70,7 @@ template <>
 struct fmt::formatter<tepor::Field> : tepor::detail::TextFormatter {};
 template <>
 struct fmt::formatter<tepor::SelfCheck> : tepor::detail::TextFormatter {};
-
+/// @endcond
 #ifndef TEPOR_COMPILED
 #include <tepor/output/impl/text_balance.hpp>
 #include <tepor/output/impl/text_body.hpp>
