@@ -36,7 +36,7 @@ inline std::ostream& operator<<(std::ostream& out, const StateSpace& model) {
 
 } // namespace tepor
 
-/// @cond  (fmt's own name is not part of these pages)
+/// @cond fmt_names
 template <>
 struct fmt::formatter<tepor::Gradient> : tepor::detail::TextFormatter {};
 template <>

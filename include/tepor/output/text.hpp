@@ -61,7 +61,7 @@ struct TextFormatter : fmt::formatter<fmt::string_view> {
 } // namespace detail
 } // namespace tepor
 
-/// @cond  (fmt's own name is not part of these pages)
+/// @cond fmt_names
 template <>
 struct fmt::formatter<tepor::Balance> : tepor::detail::TextFormatter {};
 template <>
