@@ -55,7 +55,9 @@ TEST_CASE("for constant data matrix and loads of the exact cell have their close
     const double s = 300.0;
     const auto conductivity = [k](double) { return k; };
     const auto source = [s](double) { return s; };
-    for (const auto& [a, b] : {std::pair{0.2, 0.5}, std::pair{1.0, 1.3}, std::pair{0.01, 2.0}}) {
+    for (const auto& ends : {std::pair{0.2, 0.5}, std::pair{1.0, 1.3}, std::pair{0.01, 2.0}}) {
+        const double a = ends.first;
+        const double b = ends.second;
         CAPTURE(a);
         OneCell slab(Planar{.area = 2.0}, a, b);
         slab.form(conductivity, source);

@@ -343,7 +343,7 @@ TEST_CASE("difficult drawings give the areas they show") {
         {"three circles touching each other",
          [](Section& s) {
              for (int i = 0; i < 3; ++i)
-                 s.add("abc" + i, circle({std::cos(2 * i * pi / 3) * 2 / std::sqrt(3.0),
+                 s.add(&"abc"[i], circle({std::cos(2 * i * pi / 3) * 2 / std::sqrt(3.0),
                                           std::sin(2 * i * pi / 3) * 2 / std::sqrt(3.0)},
                                          1));
          },
