@@ -22,9 +22,7 @@ if(NOT TEPOR_WARNINGS STREQUAL "off")
         target_compile_options(tepor_house INTERFACE /W4)
     else()
         target_compile_options(tepor_house INTERFACE -Wall -Wextra -Wpedantic -Wconversion -Wsign-conversion -Wshadow
-            -Wold-style-cast -Wdouble-promotion
-            # g++ 12 sees overlaps that are not there where "text" + std::string is inlined (gcc bug 105651).
-            $<$<CXX_COMPILER_ID:GNU>:-Wno-restrict>)
+            -Wold-style-cast -Wdouble-promotion)
     endif()
     if(TEPOR_WARNINGS STREQUAL "error")
         target_compile_options(tepor_house INTERFACE $<IF:$<CXX_COMPILER_ID:MSVC>,/WX,-Werror>)

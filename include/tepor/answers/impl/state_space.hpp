@@ -164,8 +164,10 @@ TEPOR_INLINE std::string StateSpace::csv() const {
     const auto matrix = [&out](const char* name, const std::vector<double>& values, Index rows, Index columns) {
         for (Index i = 0; i < rows; ++i) {
             out += detail::text(name, ",", i);
-            for (Index j = 0; j < columns; ++j)
-                out += "," + detail::exact_decimal(values[detail::as_size(i * columns + j)]);
+            for (Index j = 0; j < columns; ++j) {
+                out += ',';
+                out += detail::exact_decimal(values[detail::as_size(i * columns + j)]);
+            }
             out += "\n";
         }
     };
