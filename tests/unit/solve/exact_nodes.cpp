@@ -60,7 +60,9 @@ TEST_CASE("exact cells hit every node in every frame on any mesh, one cell per l
     // Source: the resistance cell of I. Babuska, J. E. Osborn, SIAM J. Numerical Analysis 20 (1983) 510-536; numbers by nested integrals
     for (const int n : {0, 1, 2})
         for (const double start : {0.08, 0.0})
-            for (const auto& [inner, outer] : {std::pair<Index, Index>{1, 1}, {2, 1}, {5, 7}}) {
+            for (const auto& cells : {std::pair<Index, Index>{1, 1}, {2, 1}, {5, 7}}) {
+                const Index inner = cells.first;
+                const Index outer = cells.second;
                 CAPTURE(n);
                 CAPTURE(start);
                 CAPTURE(inner);

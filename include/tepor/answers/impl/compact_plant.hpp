@@ -15,7 +15,8 @@ namespace tepor::detail {
 class CompactPlant {
   public:
     CompactPlant(const Body& body, const CompactOptions& options)
-        : body_(body), options_(options), field_(steady(body, {.time = 0.0})), model_(body.model()), n_(as_size(model_->free)) {
+        : body_(body), options_(options), field_(steady(body, {.time = 0.0})), model_(body.model()),
+          n_(as_size(model_->free)) {
         check();
         Workspace work = model_->kernels->workspace();
         const Values& values = field_.values();
