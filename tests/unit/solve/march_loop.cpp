@@ -22,6 +22,10 @@ long allocations = 0;
     if (void* p = std::malloc(size > 0 ? size : 1)) return p;
     throw std::bad_alloc();
 }
+[[gnu::noinline]] void* operator new(std::size_t size, const std::nothrow_t&) noexcept {
+    ++allocations;
+    return std::malloc(size > 0 ? size : 1);
+}
 [[gnu::noinline]] void* operator new(std::size_t size, std::align_val_t alignment) {
     ++allocations;
     const std::size_t a = static_cast<std::size_t>(alignment);
