@@ -118,3 +118,5 @@ void compact_step(benchmark::State& state) {
 BENCHMARK(compact_step)->Unit(benchmark::kNanosecond);
 
 } // namespace
+
+BENCHMARK_MAIN();
