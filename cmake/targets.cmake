@@ -5,19 +5,16 @@ if(Eigen3_VERSION VERSION_LESS 3.4)
     message(FATAL_ERROR "tepor: Eigen ${Eigen3_VERSION} found, 3.4 or newer is needed")
 endif()
 
-# Opt-in threads of the multigrid solver.
-set(THREADS_PREFER_PTHREAD_FLAG ON)
-find_package(Threads REQUIRED)
-
 file(GLOB_RECURSE tepor_headers CONFIGURE_DEPENDS "${PROJECT_SOURCE_DIR}/include/tepor/*.hpp"
     "${PROJECT_SOURCE_DIR}/include/tepor/*.h")
 
-# Header-only, Eigen and nothing else.
+# Header-only, Eigen and nothing else. The opt-in threads of the multigrid solver are std::thread: C libraries that keep
+# it apart (glibc before 2.34) want Threads::Threads linked by the program that asks for threads.
 add_library(tepor INTERFACE)
 add_library(tepor::tepor ALIAS tepor)
 target_compile_features(tepor INTERFACE cxx_std_20)
 target_sources(tepor INTERFACE FILE_SET HEADERS BASE_DIRS "${PROJECT_SOURCE_DIR}/include" FILES ${tepor_headers})
-target_link_libraries(tepor INTERFACE Eigen3::Eigen Threads::Threads)
+target_link_libraries(tepor INTERFACE Eigen3::Eigen)
 
 # Printing, pictures and files: adds fmt. Where fmt is not installed the target is left out.
 if(NOT TARGET fmt::fmt)
