@@ -46,6 +46,10 @@ struct Pass {
     const std::vector<const Coefficient*>* loads = nullptr;
     bool unit_loads = false;
 
+    /// Of the slopes of films, fluxes and sources by temperature only those that restore balance enter the matrix: it is then
+    /// positive definite where the full derivative is not, because a source grows faster than what carries its heat away.
+    bool restoring_only = false;
+
     double* residual =
         nullptr; ///< all unknowns, set (not added to); null: not wanted. Heat into the body that T would need [W]
     SparseMatrix* matrix = nullptr;  ///< lower (and upper when the model has a slope) set; null: not wanted

@@ -130,6 +130,35 @@ TEST_CASE("a source that runs away is an error with the history and the worst pl
     }
 }
 
+TEST_CASE("a source that outgrows its film at the start only is warmed past that place") {
+    // copper under current in still air, from the air's own temperature where the film carries next to nothing away:
+    // at rest q(T) r / 2 = h(T) (T - T air), by bisection here
+    const double radius = 0.01, heat = 1.1e5, air = 35.0;
+    const auto film = [](double rise) { return 3.4 * std::pow(rise + 1e-3, 0.25); };
+    double low = 0.0, high = 1000.0;
+    for (int i = 0; i < 200; ++i) {
+        const double rise = 0.5 * (low + high);
+        const double surplus = heat * (1.0 + 0.0039 * (air + rise - 20.0)) * 0.5 * radius - film(rise) * rise;
+        (surplus > 0.0 ? low : high) = rise;
+    }
+    for (const double start : {35.0, 20.0, 36.0, 200.0}) {
+        Body wire{
+            layers<Segment<2>>({{.region = "copper", .thickness = radius, .cells = 4}}, Cylindrical{.length = 1.0})};
+        wire.in("copper", Material{.conductivity = 4e3});
+        wire.in("copper", Generation{.per_volume = law([heat](const auto& s) {
+                                         return heat * (1.0 + 0.0039 * (s.temperature - 20.0));
+                                     })});
+        wire.on("outer", Film{.coefficient = law(
+                                  [](const auto& s) { return 3.4 * pow(abs(s.temperature - s.fluid) + 1e-3, 0.25); }),
+                              .fluid = air});
+        const Field field = steady(wire, {.start = start});
+        CAPTURE(start);
+        CHECK(field.at(radius) - air == doctest::Approx(low).epsilon(1e-5));
+        CHECK(field.balance().balanced());
+        CHECK(field.passes().size() <= 20);
+    }
+}
+
 TEST_CASE("too few passes are an error that shows them") {
     Body body = bar();
     body.on("inner", Flux{.into = 20000.0}).on("outer", Radiation{.emissivity = 0.9, .surroundings = 20.0});

@@ -219,6 +219,11 @@ class Assembler {
         return true;
     }
 
+    /// The derivative of a heat loss by temperature, or nothing where only restoring ones are wanted and it is not.
+    [[nodiscard]] double kept_slope(double loss_by_T) const noexcept {
+        return pass_.restoring_only ? std::max(loss_by_T, 0.0) : loss_by_T;
+    }
+
     /// Heat taken up per volume, all terms of the region, at the points of the block.
     bool volume_terms(std::size_t r, const Points& at, const Id* ids) {
         const RegionModel& region = model_.regions[r];
@@ -247,7 +252,7 @@ class Assembler {
                     const double per_volume = term.by_thickness ? term.wet / extent[i] : term.wet * extent[i];
                     const double T = at.temperature ? at.temperature[i] : 0.0;
                     amount[i] *= per_volume;
-                    slope[i] += amount[i] + by_T[i] * per_volume * (T - fluid[i]);
+                    slope[i] += amount[i] + kept_slope(by_T[i] * per_volume * (T - fluid[i]));
                     amount[i] *= T - fluid[i];
                     source[i] += amount[i];
                 }
@@ -259,7 +264,7 @@ class Assembler {
             for (Index i = 0; i < n; ++i) {
                 amount[i] *= scale;
                 source[i] -= amount[i];
-                slope[i] -= scale * by_T[i];
+                slope[i] += kept_slope(-scale * by_T[i]);
             }
             account(pass_.accounts ? &pass_.accounts->generated[r] : nullptr, amount, 1.0);
         }

@@ -55,10 +55,10 @@ inline bool Assembler::face_term(const FaceTerm& term, Index n, const Id* ids, d
     for (Index i = 0; i < n; ++i) {
         const double T = at.temperature ? at.temperature[i] : 0.0;
         double q = term.sign * amount[i];
-        double dq = term.sign * by_T[i];
+        double dq = kept_slope(term.sign * by_T[i]);
         if (term.kind == FaceTerm::Kind::film) {
             q = amount[i] * (T - outside[i]);
-            dq = amount[i] + by_T[i] * (T - outside[i]);
+            dq = amount[i] + kept_slope(by_T[i] * (T - outside[i]));
         } else if (term.kind == FaceTerm::Kind::radiation) {
             // |t| keeps the law rising for iterates below absolute zero
             const double t = T + offset;
@@ -66,7 +66,7 @@ inline bool Assembler::face_term(const FaceTerm& term, Index n, const Id* ids, d
             const double exchange =
                 stefan_boltzmann * (t * std::abs(t * t * t) - t_outside * t_outside * t_outside * t_outside);
             q = amount[i] * exchange;
-            dq = amount[i] * 4.0 * stefan_boltzmann * std::abs(t * t * t) + by_T[i] * exchange;
+            dq = amount[i] * 4.0 * stefan_boltzmann * std::abs(t * t * t) + kept_slope(by_T[i] * exchange);
         }
         amount[i] = q;
         flux[i] += q;

@@ -34,11 +34,13 @@ class SteadySolve {
             // a linear body is solved at least once, so that its answer does not depend on where it started
             if (now <= limit && (pass > 0 || model_.nonlinear)) break;
             if (model_.nonlinear ? pass >= options_.most_passes : pass >= 4) stalled(T, "the passes ran out");
-            if (!factored && !engine_.factor(Purpose::one_solve))
-                raise_singular(model_, engine_.singular_unknown(), model_.nonlinear ? told() : std::string());
+            if (!factored && !engine_.factor(Purpose::one_solve)) {
+                if (!model_.nonlinear) raise_singular(model_, engine_.singular_unknown());
+                restore(T);
+                continue;
+            }
             factored = !model_.nonlinear;
-            for (Index u = 0; u < model_.free; ++u) engine_.step[as_size(u)] = -engine_.residual[as_size(u)];
-            if (!engine_.solve(engine_.step.data(), linear_limit(now, limit))) stalled(T, "the linear solve stalled");
+            find_step(T, now, limit);
             advance(T, now, limit);
         }
     }
@@ -46,8 +48,40 @@ class SteadySolve {
     [[nodiscard]] std::vector<SolvePass> take_history() { return std::move(history_); }
 
   private:
-    void evaluate(const double* T, bool with_matrix) {
+    void find_step(const double* T, double now, double limit) {
+        for (Index u = 0; u < model_.free; ++u) engine_.step[as_size(u)] = -engine_.residual[as_size(u)];
+        if (!engine_.solve(engine_.step.data(), linear_limit(now, limit))) stalled(T, "the linear solve stalled");
+    }
+
+    /// A step with the slopes that restore balance only, where the full derivative is not positive definite: the body warms up
+    /// past the place where its sources outgrow its losses. The residual rises on the way, so no search along the line; the step
+    /// is halved only where a law cannot be evaluated, and a residual that keeps rising means that the body runs away.
+    void restore(double* T) {
+        restored_ = true;
+        if (lost_ < 0) lost_ = engine_.singular_unknown();
+        if (history_.back().residual > 1e6 * history_.front().residual) raise_singular(model_, lost_, told());
+        evaluate(T, true, true);
+        if (pass_.fault) raise(pass_.fault);
+        if (!engine_.factor(Purpose::one_solve)) raise_singular(model_, engine_.singular_unknown(), told());
+        find_step(T, history_.back().residual, history_.back().limit);
+        const double* step = engine_.step.data();
+        double share = 1.0, taken = 0.0;
+        for (int halving = 0; halving <= 40; ++halving, share *= 0.5) {
+            for (Index u = 0; u < model_.free; ++u) T[u] += (share - taken) * step[u];
+            taken = share;
+            evaluate(T, true);
+            if (!pass_.fault && std::isfinite(residual_sum(model_, engine_.residual.data()))) break;
+        }
+        if (pass_.fault) raise_singular(model_, lost_, told());
+        double largest = 0.0;
+        for (Index u = 0; u < model_.free; ++u) largest = std::max(largest, std::abs(step[u]));
+        history_.back().step = taken * largest;
+        history_.back().damping = taken;
+    }
+
+    void evaluate(const double* T, bool with_matrix, bool restoring_only = false) {
         pass_ = Pass{};
+        pass_.restoring_only = restoring_only;
         pass_.T = T;
         pass_.time = at_;
         pass_.residual = engine_.residual.data();
@@ -106,7 +140,11 @@ class SteadySolve {
             const double now = pass_.fault ? HUGE_VAL : residual_sum(model_, engine_.residual.data());
             if (now <= (1.0 - 1e-4 * share) * before || now <= limit || last_try) {
                 if (pass_.fault) raise(pass_.fault);
-                if (last_try && !(now < before)) stalled(T, "no step along Newton's direction lowers the residual");
+                if (last_try && !(now < before)) {
+                    if (restored_) stalled(T, "no step along Newton's direction lowers the residual");
+                    for (Index u = 0; u < model_.free; ++u) T[u] -= taken * step[u];
+                    return restore(T);
+                }
                 if (halving > 0) evaluate(T, true);
                 break;
             }
@@ -114,6 +152,7 @@ class SteadySolve {
         }
         history_.back().step = share * largest;
         history_.back().damping = share;
+        restored_ = false;
     }
 
     [[noreturn]] void stalled(const double* T, const char* why) {
@@ -144,6 +183,8 @@ class SteadySolve {
     TimeSpan at_;
     Pass pass_;
     std::vector<SolvePass> history_;
+    bool restored_ = false; ///< the last step was one of restore()
+    Id lost_ = -1;          ///< where a pivot was lost first
 };
 
 inline void validate(const SteadyOptions& options) {
