@@ -1,21 +1,23 @@
 # The C interface: libtepor, shared (tepor::c) and static (tepor::c_static), for C and for other languages.
 #
-# The definitions are include/tepor/c/impl/*.hpp, found by glob like those of any room; the public header is
-# tepor/c/tepor.h. Both libraries hold the whole of the library; the shared one exports only what the header marks.
+# One source of one line, tepor/c/implementation.hpp; the public header is tepor/c/tepor.h. Both libraries hold the whole of
+# the library; the shared one exports only what the header marks, and its SONAME is the header's ABI version. fmt is
+# compiled in from its headers, so that who uses libtepor needs no other package.
 
 option(TEPOR_C_LIBRARY "Build the C interface as libtepor" ${PROJECT_IS_TOP_LEVEL})
 if(NOT TEPOR_C_LIBRARY)
     return()
 endif()
+if(NOT TARGET fmt::fmt-header-only)
+    message(STATUS "tepor: fmt not found, the C interface is left out")
+    return()
+endif()
 
-file(GLOB definitions CONFIGURE_DEPENDS "${PROJECT_SOURCE_DIR}/include/tepor/c/impl/*.hpp")
-set(text "// Generated: the definitions of the C interface.\n#define TEPOR_BUILDING\n")
-foreach(file IN LISTS definitions)
-    cmake_path(RELATIVE_PATH file BASE_DIRECTORY "${PROJECT_SOURCE_DIR}/include")
-    string(APPEND text "#include <${file}>\n")
-endforeach()
+file(STRINGS "${PROJECT_SOURCE_DIR}/include/tepor/c/tepor_session.h" abi_line REGEX "define TEPOR_ABI_VERSION ")
+string(REGEX MATCH "[0-9]+" tepor_abi_version "${abi_line}")
+
 set(tepor_c_source "${PROJECT_BINARY_DIR}/tepor_compiled/c.cpp")
-file(CONFIGURE OUTPUT "${tepor_c_source}" CONTENT "${text}" @ONLY)
+file(CONFIGURE OUTPUT "${tepor_c_source}" CONTENT "#include <tepor/c/implementation.hpp>\n" @ONLY)
 
 set(tepor_c_objects)
 foreach(room IN LISTS tepor_numerical_rooms)
@@ -25,15 +27,21 @@ foreach(room IN LISTS tepor_numerical_rooms)
     endif()
 endforeach()
 
+# The output room once more, with fmt inside.
+add_library(tepor_c_output OBJECT EXCLUDE_FROM_ALL "${PROJECT_BINARY_DIR}/tepor_compiled/output.cpp")
+target_link_libraries(tepor_c_output PRIVATE tepor::tepor fmt::fmt-header-only)
+target_compile_definitions(tepor_c_output PRIVATE TEPOR_COMPILED)
+set_target_properties(tepor_c_output PROPERTIES POSITION_INDEPENDENT_CODE ON)
+list(APPEND tepor_c_objects $<TARGET_OBJECTS:tepor_c_output>)
+
 add_library(tepor_c SHARED "${tepor_c_source}" ${tepor_c_objects})
-set_target_properties(tepor_c PROPERTIES VERSION ${PROJECT_VERSION} SOVERSION
-    ${PROJECT_VERSION_MAJOR}.${PROJECT_VERSION_MINOR})
+set_target_properties(tepor_c PROPERTIES VERSION ${tepor_abi_version}.${PROJECT_VERSION} SOVERSION ${tepor_abi_version})
 add_library(tepor_c_static STATIC "${tepor_c_source}" ${tepor_c_objects})
 
 foreach(target tepor_c tepor_c_static)
     target_include_directories(${target} PUBLIC "$<BUILD_INTERFACE:${PROJECT_SOURCE_DIR}/include>"
         "$<INSTALL_INTERFACE:include>")
-    target_link_libraries(${target} PRIVATE $<BUILD_INTERFACE:tepor::tepor>)
+    target_link_libraries(${target} PRIVATE $<BUILD_INTERFACE:tepor::tepor> $<BUILD_INTERFACE:fmt::fmt-header-only>)
     if(TARGET tepor_house)
         target_link_libraries(${target} PRIVATE $<BUILD_INTERFACE:tepor_house>)
     endif()
@@ -62,4 +70,9 @@ if(TEPOR_INSTALL)
     write_basic_package_version_file("${PROJECT_BINARY_DIR}/tepor_c-config-version.cmake" COMPATIBILITY SameMinorVersion)
     install(FILES "${PROJECT_BINARY_DIR}/tepor_c-config-version.cmake" DESTINATION
         "${CMAKE_INSTALL_LIBDIR}/cmake/tepor_c")
+
+    # pkg-config finds its way from where the file lies, so that the folder can be moved.
+    file(RELATIVE_PATH tepor_prefix_from_pc "/prefix/${CMAKE_INSTALL_LIBDIR}/pkgconfig" "/prefix")
+    configure_file("${PROJECT_SOURCE_DIR}/cmake/tepor.pc.in" "${PROJECT_BINARY_DIR}/tepor.pc" @ONLY)
+    install(FILES "${PROJECT_BINARY_DIR}/tepor.pc" DESTINATION "${CMAKE_INSTALL_LIBDIR}/pkgconfig")
 endif()

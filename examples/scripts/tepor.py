@@ -2,136 +2,20 @@
 
 The grammar is the library's: a body is described in a region, on a face, between two regions; parameters go in, quantities
 come out. SI units, degC. The shared library is looked for in the environment variable TEPOR_LIBRARY, then by the system's
-loader. What the library refuses raises tepor.Error with its full text.
+loader. What the library refuses raises tepor.Error with its full text. Arrays come as ctypes arrays; numpy reads and writes
+them in place (numpy.frombuffer), and its arrays are taken as they lie.
 """
 import ctypes
-import ctypes.util
-import os
-from ctypes import POINTER, byref, c_char_p, c_double, c_int32, c_int64, c_size_t, c_void_p
+import math
+from ctypes import POINTER, byref, c_double, c_int32, c_int64, c_size_t, c_void_p
+
+import tepor_ctypes as c
+from tepor_ctypes import ELEMENTS, Error, Handle, array, call, filled, handles, lib, session, taken, text
+from tepor_results import Field, Fitted, March, Model
 
 
-class Value(ctypes.Structure):
-    _fields_ = [("kind", c_int32), ("reserved", c_int32), ("number", c_double), ("object", c_void_p)]
-
-
-class Frame(ctypes.Structure):
-    _fields_ = [("kind", c_int32), ("reserved", c_int32), ("size", c_double)]
-
-
-class LayerStruct(ctypes.Structure):
-    _fields_ = [("region", c_char_p), ("thickness", Value), ("cells", c_int64), ("grading", c_double)]
-
-
-class Points(ctypes.Structure):
-    _fields_ = [("count", c_size_t), ("temperature", POINTER(c_double)), ("fluid", POINTER(c_double)),
-                ("x", POINTER(c_double)), ("y", POINTER(c_double)), ("time", c_double),
-                ("parameters", POINTER(c_double)), ("parameter_count", c_size_t)]
-
-
-class Balance(ctypes.Structure):
-    _fields_ = [("size", c_size_t)] + [(n, c_double) for n in
-               ("into", "out", "generated", "stored", "left_over", "gross", "floor")] + \
-               [("balanced", c_int32), ("reserved", c_int32)]
-
-    def __str__(self):
-        verdict = "balanced" if self.balanced else "NOT BALANCED"
-        return (f"heat in {self.into:.6g} W, out {self.out:.6g} W, generated {self.generated:.6g} W, stored {self.stored:.6g} W; "
-                f"left over {self.left_over:.1e} W (rounding {self.floor:.1e} W): {verdict}")
-
-
-class MarchOptions(ctypes.Structure):
-    _fields_ = [("size", c_size_t), ("theta", c_double), ("step", c_double), ("tolerance", c_double),
-                ("largest_step", c_double), ("damped_start", c_int32), ("newton_passes", c_int32)]
-
-
-class BracketResult(ctypes.Structure):
-    _fields_ = [("size", c_size_t), ("lower", c_double), ("value", c_double), ("upper", c_double), ("cells", c_int64),
-                ("unknowns", c_int64), ("reached", c_int32), ("reserved", c_int32)]
-
-
-class Sized(ctypes.Structure):
-    _fields_ = [("size", c_size_t), ("value", c_double), ("reached", c_double), ("failed_at", c_double),
-                ("solves", c_int64), ("reason", c_int32), ("reserved", c_int32)]
-
-
-LawCallback = ctypes.CFUNCTYPE(c_int32, POINTER(Points), POINTER(c_double), POINTER(c_double), c_void_p)
-
-_lib = ctypes.CDLL(os.environ.get("TEPOR_LIBRARY") or ctypes.util.find_library("tepor") or "libtepor.so")
-for _name in ("nothing", "number", "kelvin", "of", "by"):
-    getattr(_lib, "tepor_" + _name).restype = Value
-_lib.tepor_number.argtypes = _lib.tepor_kelvin.argtypes = [c_double]
-_lib.tepor_of.argtypes = _lib.tepor_by.argtypes = [c_void_p]
-for _name in ("planar", "cylindrical"):
-    getattr(_lib, "tepor_" + _name).restype = Frame
-    getattr(_lib, "tepor_" + _name).argtypes = [c_double]
-_lib.tepor_spherical.restype = Frame
-_lib.tepor_session_create.restype = c_void_p
-for _name in ("version", "session_message", "session_offender", "verdict_text"):
-    getattr(_lib, "tepor_" + _name).restype = c_char_p
-_lib.tepor_session_message.argtypes = _lib.tepor_session_offender.argtypes = [c_void_p]
-_lib.tepor_status_name.restype = c_char_p
-_lib.tepor_march_time.restype = _lib.tepor_march_read.restype = c_double
-_lib.tepor_march_time.argtypes = [c_void_p]
-_lib.tepor_march_read.argtypes = [c_void_p, c_int64]
-_lib.tepor_march_set.argtypes = [c_void_p, c_int64, c_double]
-_lib.tepor_march_set.restype = None
-_lib.tepor_march_advance.argtypes = [c_void_p]
-_lib.tepor_march_options_default.restype = MarchOptions
-for _name in ("mesh_node_count", "mesh_cell_count", "mesh_nodes_per_cell"):
-    getattr(_lib, "tepor_" + _name).restype = c_size_t
-    getattr(_lib, "tepor_" + _name).argtypes = [c_void_p]
-_session = c_void_p(_lib.tepor_session_create())
-
-if _lib.tepor_abi_version() != 1:
-    raise ImportError("libtepor has another ABI version than this module")
-
-ELEMENTS = {"segment 1": 11, "segment 2": 12, "segment 3": 13, "exact segment": 19, "triangle 1": 21, "triangle 2": 22,
-            "triangle 3": 23, "quadrilateral 1": 31, "quadrilateral 2": 32, "quadrilateral 3": 33}
-
-
-class Error(RuntimeError):
-    """What the library refused: `status` is its short name, `offender` the name at fault."""
-
-    def __init__(self, code):
-        super().__init__(_lib.tepor_session_message(_session).decode())
-        self.status = _lib.tepor_status_name(code).decode()
-        self.offender = _lib.tepor_session_offender(_session).decode()
-
-
-def _plain(argument):
-    """Python arguments as ctypes ones: floats as doubles, texts encoded, handles by address."""
-    if isinstance(argument, float):
-        return c_double(argument)
-    if isinstance(argument, str):
-        return argument.encode()
-    if isinstance(argument, Handle):
-        return argument.handle
-    return argument
-
-
-def _call(name, *arguments):
-    code = getattr(_lib, "tepor_" + name)(_session, *[_plain(a) for a in arguments])
-    if code != 0:
-        raise Error(code)
-
-
-def _number(name, *arguments):
-    out = c_double()
-    _call(name, *arguments, byref(out))
-    return out.value
-
-
-class Handle:
-    """Owns what a create call made."""
-    free = None
-
-    def __init__(self, create, *arguments):
-        self.handle = c_void_p()
-        _call(create, *arguments, byref(self.handle))
-
-    def __del__(self):
-        if getattr(self, "handle", None) and _lib:
-            getattr(_lib, self.free)(self.handle)
+def version():
+    return lib.tepor_version().decode()
 
 
 class Parameter(Handle):
@@ -146,23 +30,17 @@ class Function(Handle):
     free = "tepor_function_free"
 
 
-def _array(numbers):
-    if hasattr(numbers, "ctypes"):  # a numpy array is passed as it lies
-        return numbers.ctypes.data_as(POINTER(c_double))
-    return (c_double * len(numbers))(*numbers)
-
-
 def table(points, hold=False):
     """A property over temperature: table([(200, 1.10), (800, 1.35)])."""
     at, value = zip(*points)
-    return Function("table_create", _array([float(t) for t in at]), _array([float(v) for v in value]), c_size_t(len(at)),
+    return Function("table_create", array([float(t) for t in at]), array([float(v) for v in value]), c_size_t(len(at)),
                     c_int32(hold))
 
 
 def schedule(entries, ramps=False):
     """A value over time: schedule([(0, 500), (600, 0)])."""
     at, value = zip(*entries)
-    return Function("schedule_create", _array([float(t) for t in at]), _array([float(v) for v in value]),
+    return Function("schedule_create", array([float(t) for t in at]), array([float(v) for v in value]),
                     c_size_t(len(at)), c_int32(ramps))
 
 
@@ -190,9 +68,9 @@ def law(function, parameters=(), name="own law", of_place=False):
             return 1
         return 0
 
-    callback = LawCallback(batch)
-    handles = (c_void_p * max(1, len(parameters)))(*[p.handle for p in parameters])
-    made = Function("law_create", name, callback, None, handles, c_size_t(len(parameters)), c_int32(not of_place), c_int32(0))
+    callback = c.LawCallback(batch)
+    made = Function("law_create", name, callback, None, handles(parameters), c_size_t(len(parameters)),
+                    c_int32(not of_place), c_int32(0))
     _kept.append((callback, parameters))  # a body may use them as long as the program runs
     return made
 
@@ -202,34 +80,54 @@ _kept = []
 
 def _value(v):
     if v is None:
-        return _lib.tepor_nothing()
+        return lib.tepor_nothing()
     if isinstance(v, Parameter):
         _kept.append(v)
-        return _lib.tepor_of(v.handle)
+        return lib.tepor_of(v.handle)
     if isinstance(v, Function):
-        return _lib.tepor_by(v.handle)
-    return _lib.tepor_number(float(v))
+        return lib.tepor_by(v.handle)
+    return lib.tepor_number(float(v))
 
 
 def planar(size=1.0):
-    return _lib.tepor_planar(size)
+    return lib.tepor_planar(size)
 
 
 def cylindrical(length=1.0):
-    return _lib.tepor_cylindrical(length)
+    return lib.tepor_cylindrical(length)
 
 
 def spherical():
-    return _lib.tepor_spherical()
+    return lib.tepor_spherical()
 
 
 class Mesh(Handle):
     free = "tepor_mesh_free"
 
+    def node_count(self):
+        return lib.tepor_mesh_node_count(self.handle)
+
+    def places(self):
+        """x and y of every node in turn [m]."""
+        return filled("mesh_places", self, 2 * self.node_count())
+
+
+def mesh_from_arrays(element, places, cells, nodes_per_cell, faces, frame=None):
+    """Nodes and cells of one's own; faces {name: [(cell, side), ...]}; everything is the region "body"."""
+    names = (ctypes.c_char_p * len(faces))(*[f.encode() for f in faces])
+    flat = [n for side in faces.values() for pair in side for n in pair]
+    of_side = [f for f, side in enumerate(faces.values()) for _ in side]
+    numbers = (array(places), array(cells, c_int32), array(of_side, c_int32), array(flat, c_int32))
+    given = c.Arrays(ctypes.sizeof(c.Arrays), ctypes.cast(numbers[0], POINTER(c_double)), len(places) // 2,
+                     ctypes.cast(numbers[1], POINTER(c_int32)), len(cells) // nodes_per_cell, None, None, 0, names,
+                     ctypes.cast(numbers[2], POINTER(c_int32)), ctypes.cast(numbers[3], POINTER(c_int32)), len(faces),
+                     len(of_side))
+    return Mesh("mesh_from_arrays", c_int32(ELEMENTS[element]), byref(given), frame or planar())
+
 
 def layers(stack, frame=None, start=0.0, element="segment 2"):
     """A 1D stack: [(region, thickness, cells), ...] with faces "inner" and "outer"."""
-    structs = (LayerStruct * len(stack))(*[LayerStruct(r.encode(), _value(t), n, 0.0) for r, t, n in stack])
+    structs = (c.Layer * len(stack))(*[c.Layer(r.encode(), _value(t), n, 0.0) for r, t, n in stack])
     return Mesh("layers_create", c_int32(ELEMENTS[element]), structs, c_size_t(len(stack)), frame or planar(), _value(start))
 
 
@@ -241,13 +139,13 @@ class Tiles(Handle):
         super().__init__("tiles_create")
 
     def add(self, region, corner, opposite):
-        _call("tiles_add", self, region, *map(float, (*corner, *opposite)))
+        call("tiles_add", self, region, *map(float, (*corner, *opposite)))
 
     def cut(self, corner, opposite, face=""):
-        _call("tiles_cut", self, *map(float, (*corner, *opposite)), face)
+        call("tiles_cut", self, *map(float, (*corner, *opposite)), face)
 
     def face(self, name, start, end):
-        _call("tiles_face", self, name, *map(float, (*start, *end)))
+        call("tiles_face", self, name, *map(float, (*start, *end)))
 
     def mesh(self, size, frame=None, element="quadrilateral 2"):
         return Mesh("tiles_mesh", self, c_int32(ELEMENTS[element]), float(size), frame or planar())
@@ -261,19 +159,19 @@ class Section(Handle):
         super().__init__("section_create")
 
     def rectangle(self, region, corner, opposite):
-        _call("section_add_rectangle", self, region, *map(float, (*corner, *opposite)))
+        call("section_add_rectangle", self, region, *map(float, (*corner, *opposite)))
 
     def circle(self, region, centre, radius):
-        _call("section_add_circle", self, region, *map(float, (*centre, radius)))
+        call("section_add_circle", self, region, *map(float, (*centre, radius)))
 
     def cut_circle(self, face, centre, radius):
-        _call("section_cut_circle", self, face, *map(float, (*centre, radius)))
+        call("section_cut_circle", self, face, *map(float, (*centre, radius)))
 
     def face(self, name, start, end):
-        _call("section_face", self, name, *map(float, (*start, *end)))
+        call("section_face", self, name, *map(float, (*start, *end)))
 
     def rest(self, name):
-        _call("section_rest", self, name)
+        call("section_rest", self, name)
 
     def mesh(self, size, frame=None, element="triangle 2"):
         return Mesh("section_mesh", self, c_int32(ELEMENTS[element]), float(size), frame or planar())
@@ -299,134 +197,106 @@ heat_from, generated_in = _asked("heat_from"), _asked("generated_in")
 conductance_between = _asked("conductance_between")
 
 
-class Field(Handle):
-    free = "tepor_field_free"
-
-    def __getitem__(self, quantity):
-        return _number("field_value", self, quantity)
-
-    def balance(self):
-        out = Balance(size=ctypes.sizeof(Balance))
-        _call("field_balance", self, byref(out))
-        return out
-
-    def slopes(self, quantity, *parameters):
-        """Derivatives of a quantity by parameters: one extra solve for all."""
-        handles = (c_void_p * len(parameters))(*[p.handle for p in parameters])
-        out = (c_double * len(parameters))()
-        _call("gradient", self, quantity, handles, c_size_t(len(parameters)), out)
-        return list(out)
-
-
 class Body(Handle):
     free = "tepor_body_free"
 
     def __init__(self, mesh, kelvin=False):
         super().__init__("body_create", mesh, c_int32(kelvin))
 
-    def material(self, region, conductivity, density=None, specific_heat=None):
-        _call("body_in_material", self, region, _value(conductivity), _value(density), _value(specific_heat))
+    def _say(self, how, kind, *arguments):
+        """`how`: "" says it, "also" adds another of the kind, "replace" takes back what was said."""
+        call("body_" + (how and how + "_") + kind, self, *arguments)
 
-    def generation(self, region, per_volume=None, total=None):
+    def material(self, region, conductivity, density=None, specific_heat=None, how=""):
+        self._say(how, "in_material", region, _value(conductivity), _value(density), _value(specific_heat))
+
+    def generation(self, region, per_volume=None, total=None, how=""):
         if (per_volume is None) == (total is None):
             raise ValueError("generation: give either per_volume [W/m3] or total [W]")
         kind = "per_volume" if total is None else "total"
-        _call("body_in_generation_" + kind, self, region, _value(per_volume if total is None else total))
+        self._say(how, "in_generation_" + kind, region, _value(per_volume if total is None else total))
 
-    def side_film(self, region, coefficient, fluid, perimeter=None, thickness=None, wet_sides=2):
+    def side_film(self, region, coefficient, fluid, perimeter=None, thickness=None, wet_sides=2, how=""):
         if perimeter is not None:
-            _call("body_in_side_film_bar", self, region, _value(coefficient), _value(fluid), _value(perimeter))
+            self._say(how, "in_side_film_bar", region, _value(coefficient), _value(fluid), _value(perimeter))
         else:
-            _call("body_in_side_film_plate", self, region, _value(coefficient), _value(fluid), _value(thickness), c_int32(wet_sides))
+            self._say(how, "in_side_film_plate", region, _value(coefficient), _value(fluid), _value(thickness),
+                      c_int32(wet_sides))
 
-    def film(self, face, coefficient, fluid):
-        _call("body_on_film", self, face, _value(coefficient), _value(fluid))
+    def film(self, face, coefficient, fluid, how=""):
+        self._say(how, "on_film", face, _value(coefficient), _value(fluid))
 
-    def radiation(self, face, emissivity, surroundings):
-        _call("body_on_radiation", self, face, _value(emissivity), _value(surroundings))
+    def radiation(self, face, emissivity, surroundings, how=""):
+        self._say(how, "on_radiation", face, _value(emissivity), _value(surroundings))
 
-    def flux_into(self, face, flux):
-        _call("body_on_flux_into", self, face, _value(flux))
+    def flux_into(self, face, flux, how=""):
+        self._say(how, "on_flux_into", face, _value(flux))
 
-    def fixed_temperature(self, face, temperature):
-        _call("body_on_fixed_temperature", self, face, _value(temperature))
+    def fixed_temperature(self, face, temperature, how=""):
+        self._say(how, "on_fixed_temperature", face, _value(temperature))
 
-    def contact(self, region, other, conductance):
-        _call("body_between_conductance", self, region, other, _value(conductance))
+    def contact(self, region, other, conductance, how=""):
+        self._say(how, "between_conductance", region, other, _value(conductance))
+
+    def text(self):
+        return text("body_text", self).decode()
+
+    def report(self, field):
+        """Description, temperatures, balance and cautions."""
+        return text("report", self, field).decode()
 
     def set(self, parameter, value):
-        _call("body_set", self, parameter, float(value))
+        call("body_set", self, parameter, float(value))
 
     def steady(self):
         return Field("steady", self)
 
     def bracket(self, quantity, relative_width=0.01, max_unknowns=200000, max_seconds=60.0):
-        out = BracketResult(size=ctypes.sizeof(BracketResult))
-        _call("bracket", self, quantity, float(relative_width), c_int64(max_unknowns), float(max_seconds), byref(out))
+        options, out = lib.tepor_bracket_options_default(), c.BracketResult()
+        options.relative_width, options.max_unknowns, options.max_seconds = relative_width, max_unknowns, max_seconds
+        call("bracket", self, quantity, byref(options), byref(out))
         return out
 
-    def size_for(self, parameter, quantity, target, kind="equal to", between=(0.0, 0.0)):
+    def size_for(self, parameter, quantity, target, kind="equal to", between=None):
         """The value of a parameter that meets a target; raises when there is none, with the reason in words."""
-        out = Sized(size=ctypes.sizeof(Sized))
-        _call("size_for", self, parameter, quantity, c_int32(("equal to", "at most", "at least").index(kind)), float(target),
-              float(between[0]), float(between[1]), byref(out))
+        options, out = lib.tepor_size_options_default(), c.Sized()
+        if between:
+            options.start, options.stop = between
+        call("size_for", self, parameter, quantity, c_int32(("equal to", "at most", "at least").index(kind)), float(target),
+              byref(options), byref(out), None)
         if out.reason > 1:
-            raise ValueError(_lib.tepor_session_message(_session).decode())
+            raise ValueError(lib.tepor_session_message(session).decode())
         return out
+
+    def fit(self, parameters, readings):
+        """Parameters from readings [(quantity, value, standard uncertainty[, {parameter: value while it was read}]), ...];
+        parameters [p, (p, prior, uncertainty of the prior), ...]."""
+        by = [p if isinstance(p, tuple) else (p, 0.0, 0.0) for p in parameters]
+        by = (c.FitBy * len(by))(*[c.FitBy(p.handle, math.nan, math.nan, at, by_how_much) for p, at, by_how_much in by])
+        rows, kept = [], []
+        for quantity, value, uncertainty, *under in readings:
+            held = [c.Condition(p.handle, v) for p, v in (under[0] if under else {}).items()]
+            kept.append((c.Condition * max(1, len(held)))(*held))
+            rows.append(c.Reading(quantity.handle, 0.0, value, uncertainty, ctypes.cast(kept[-1], c_void_p), len(held)))
+        return Fitted("fit", self, by, c_size_t(len(by)), (c.Reading * len(rows))(*rows), c_size_t(len(rows)), None)
+
+    def compact(self, inputs, outputs, sample_time, tolerance=1e-3):
+        """A small linear model for control, around the steady state at the present values."""
+        options, ins, outs = lib.tepor_compact_options_default(), handles(inputs), handles(outputs)
+        options.inputs, options.input_count = ctypes.cast(ins, c_void_p), len(inputs)
+        options.outputs, options.output_count = ctypes.cast(outs, c_void_p), len(outputs)
+        options.sample_time, options.tolerance = sample_time, tolerance
+        return Model("compact", self, byref(options))
 
     def march(self, initial, step=0.0, theta=0.5, tolerance=0.01):
         return March(self, initial, step, theta, tolerance)
 
 
-class March(Handle):
-    free = "tepor_march_free"
-
-    def __init__(self, body, initial, step, theta, tolerance):
-        options = _lib.tepor_march_options_default()
-        options.step, options.theta, options.tolerance = step, theta, tolerance
-        if isinstance(initial, Field):
-            super().__init__("march_create_from", body, initial, byref(options))
-        else:
-            super().__init__("march_create", body, float(initial), byref(options))
-
-    def watch(self, quantity):
-        out = c_int64()
-        _call("march_watch", self, quantity, byref(out))
-        return out.value
-
-    def drive(self, parameter):
-        out = c_int64()
-        _call("march_drive", self, parameter, byref(out))
-        return out.value
-
-    def set(self, handle, value):
-        _lib.tepor_march_set(self.handle, handle, value)
-
-    def read(self, probe):
-        return _lib.tepor_march_read(self.handle, probe)
-
-    def advance(self):
-        verdict = _lib.tepor_march_advance(self.handle)
-        if verdict > 1:
-            raise RuntimeError(_lib.tepor_verdict_text(verdict).decode())
-
-    def advance_to(self, time):
-        _call("march_advance_to", self, float(time))
-
-    def time_to_reach(self, quantity, value, latest=0.0):
-        return _number("march_time_to_reach", self, quantity, float(value), float(latest))
-
-    @property
-    def time(self):
-        return _lib.tepor_march_time(self.handle)
-
-    def __getitem__(self, quantity):
-        return _number("march_value", self, quantity)
-
-    def balance(self):
-        out = Balance(size=ctypes.sizeof(Balance))
-        _call("march_balance", self, byref(out))
-        return out
+def self_check():
+    """The library's verified cases in this build: facts, and the table."""
+    out, table_of_cases = c.SelfCheck(), c_void_p()
+    call("self_check", byref(out), byref(table_of_cases))
+    return out, taken(table_of_cases).decode()
 
 
 CAUTION_TOUCH = "Caution: whether a surface may be touched is decided by local rules and licensed practice, not by this number."

@@ -1,6 +1,7 @@
 #pragma once
 // What the C handles hold, and the one gate through which every call runs.
 
+#include <algorithm>
 #include <cstring>
 #include <memory>
 #include <new>
@@ -24,6 +25,9 @@ struct tepor_tiles {
 };
 struct tepor_section {
     tepor::Section section;
+    tepor::Drawn last{};
+    std::vector<tepor::NamedSize> size_in{};
+    std::vector<tepor::NamedSize> size_on{};
 };
 struct tepor_quantity {
     tepor::Quantity quantity;
@@ -36,8 +40,16 @@ struct tepor_field {
 };
 struct tepor_march {
     tepor::March march;
-    std::vector<tepor::Probe> probes;
-    std::vector<tepor::Input> inputs;
+    std::vector<tepor::Probe> probes{};
+    std::vector<tepor::Input> inputs{};
+    std::vector<tepor::Integral> integrals{};
+    std::vector<tepor::Peak> peaks{};
+};
+struct tepor_checkpoint {
+    tepor::Checkpoint checkpoint;
+};
+struct tepor_text {
+    std::string text;
 };
 /// A mesh whose element type is only known at run time.
 struct tepor_mesh {
@@ -46,7 +58,10 @@ struct tepor_mesh {
     tepor_mesh& operator=(const tepor_mesh&) = delete;
     virtual ~tepor_mesh() = default;
     [[nodiscard]] virtual const tepor::MeshData& data() const = 0;
-    [[nodiscard]] virtual tepor::Body body(tepor::TemperatureScale scale) const = 0;
+    [[nodiscard]] virtual tepor::Body body(const tepor::BodyOptions& options) const = 0;
+    /// The statements of another body on this mesh.
+    [[nodiscard]] virtual tepor::Body body(const tepor::Body& like) const = 0;
+    [[nodiscard]] virtual tepor_mesh* finer() const = 0;
 };
 
 namespace tepor::c {
@@ -89,6 +104,34 @@ tepor_status run(tepor_session* session, bool given, Call call) noexcept {
 
 [[noreturn]] inline void misuse(const std::string& what) {
     throw Error(static_cast<ErrorCode>(TEPOR_INVALID_ARGUMENT), "", what);
+}
+
+/// Copies what the caller's struct has room for: `size` leads every struct that may grow.
+template <class Struct>
+void give(Struct full, Struct* to) {
+    const std::size_t room = to->size;
+    if (room < sizeof(std::size_t)) misuse("set `size` of the result to sizeof its type before the call");
+    full.size = room;
+    std::memcpy(to, &full, std::min(room, sizeof full));
+}
+
+/// Takes what the caller's struct holds over the defaults in `full`.
+template <class Struct>
+void take(const Struct* given, Struct& full) {
+    if (given->size < sizeof(std::size_t)) misuse("set `size` of the struct to sizeof its type before the call");
+    std::memcpy(&full, given, std::min(given->size, sizeof full));
+}
+
+inline void copy_out(const std::vector<double>& from, double* to, std::size_t entries) {
+    if (entries != from.size())
+        misuse(tepor::detail::text("the array has ", entries, " entries, expected ", from.size()));
+    std::copy(from.begin(), from.end(), to);
+}
+
+/// A remark beside a result that is there, where the session's message stands.
+inline void remark(tepor_session* session, const std::string& words) noexcept {
+    copy_text(session->message, words.c_str());
+    copy_text(session->offender, "");
 }
 
 /// The C++ value of a C one.

@@ -1,5 +1,5 @@
 #pragma once
-// Meshes: stacks, rectangles, drawings, and their arrays.
+// Meshes: stacks, arrays, and what can be read of any mesh.
 
 #include <tepor/c/impl/handles.hpp>
 
@@ -9,7 +9,15 @@ template <class E>
 struct MeshOf final : tepor_mesh {
     explicit MeshOf(Mesh<E> made) : mesh(std::move(made)) {}
     [[nodiscard]] const MeshData& data() const override { return mesh; }
-    [[nodiscard]] Body body(TemperatureScale scale) const override { return Body(mesh, scale); }
+    [[nodiscard]] Body body(const BodyOptions& options) const override { return Body(mesh, options); }
+    [[nodiscard]] Body body(const Body& like) const override { return like.on_mesh(mesh); }
+    [[nodiscard]] tepor_mesh* finer() const override {
+        if constexpr (Element<E>)
+            return new MeshOf<E>(refined(mesh));
+        else
+            misuse(
+                "a mesh of TEPOR_EXACT_SEGMENT is exact at its nodes and is not refined; give its layers more cells");
+    }
     Mesh<E> mesh;
 };
 
@@ -43,10 +51,42 @@ tepor_mesh* for_plane(tepor_element element, Make make) {
     }
 }
 
-inline std::vector<Point> points_of(const double* corners, std::size_t count) {
-    std::vector<Point> points;
-    for (std::size_t i = 0; i < count; ++i) points.push_back({corners[2 * i], corners[2 * i + 1]});
-    return points;
+/// Below 0: mirrored about the middle.
+inline Grading grading_of(double grading) {
+    return grading < 0.0 ? finer_at_both_ends(-grading) : Grading(grading);
+}
+
+inline const char* name_at(const std::vector<std::string>& names, std::size_t i) {
+    return i < names.size() ? names[i].c_str() : nullptr;
+}
+
+/// The arrays of a mesh in the library's own containers.
+inline MeshArrays arrays_of(const tepor_arrays& a, const Frame& frame, std::size_t nodes_per_cell) {
+    if (!a.places || !a.cells) misuse("arrays: places and cells have to be given");
+    if (a.region_count > 0 && !a.region_names) misuse("arrays: region_names is NULL, though there are regions");
+    if (a.face_count > 0 && !a.face_names) misuse("arrays: face_names is NULL, though there are faces");
+    if (a.side_count > 0 && (!a.sides || !a.face_of_side))
+        misuse("arrays: sides and face_of_side have to be given, one face for every side");
+    MeshArrays out;
+    out.frame = frame;
+    for (std::size_t i = 0; i < a.node_count; ++i) out.nodes.push_back({a.places[2 * i], a.places[2 * i + 1]});
+    out.cells.assign(a.cells, a.cells + a.cell_count * nodes_per_cell);
+    if (a.region_of_cell) out.region.assign(a.region_of_cell, a.region_of_cell + a.cell_count);
+    for (std::size_t i = 0; i < a.region_count; ++i) {
+        if (!a.region_names[i]) misuse("arrays: a region name is NULL");
+        out.region_names.emplace_back(a.region_names[i]);
+    }
+    for (std::size_t i = 0; i < a.face_count; ++i) {
+        if (!a.face_names[i]) misuse("arrays: a face name is NULL");
+        out.faces.push_back({a.face_names[i], {}});
+    }
+    for (std::size_t i = 0; i < a.side_count; ++i) {
+        if (a.face_of_side[i] < 0 || static_cast<std::size_t>(a.face_of_side[i]) >= a.face_count)
+            misuse(tepor::detail::text("arrays: side ", i, " belongs to face ", a.face_of_side[i], ", expected 0 to ",
+                                       a.face_count, " less one"));
+        out.faces[static_cast<std::size_t>(a.face_of_side[i])].sides.push_back({a.sides[2 * i], a.sides[2 * i + 1]});
+    }
+    return out;
 }
 
 inline void expect_entries(std::size_t entries, std::size_t needed) {
@@ -75,7 +115,7 @@ tepor_status tepor_layers_create(tepor_session* session, tepor_element element, 
             if (!layers[i].region) tepor::c::misuse(tepor::detail::text("layer ", i + 1, " has no region name"));
             tepor::Layer layer{layers[i].region, tepor::c::number_of(layers[i].thickness),
                                static_cast<tepor::Index>(layers[i].cells)};
-            if (layers[i].grading != 0.0) layer.grading = layers[i].grading;
+            if (layers[i].grading != 0.0) layer.grading = tepor::c::grading_of(layers[i].grading);
             stack.push_back(std::move(layer));
         }
         const tepor::Frame in = tepor::c::frame_of(frame);
@@ -87,106 +127,24 @@ tepor_status tepor_layers_create(tepor_session* session, tepor_element element, 
     });
 }
 
-tepor_status tepor_tiles_create(tepor_session* session, tepor_tiles** out) {
-    return tepor::c::run(session, out, [&] { *out = new tepor_tiles; });
-}
-void tepor_tiles_free(tepor_tiles* tiles) {
-    delete tiles;
-}
-tepor_status tepor_tiles_add(tepor_session* session, tepor_tiles* tiles, const char* region, double x0, double y0,
-                             double x1, double y1) {
-    return tepor::c::run(session, tiles && region, [&] { tiles->tiles.add(region, {x0, y0}, {x1, y1}); });
-}
-tepor_status tepor_tiles_cut(tepor_session* session, tepor_tiles* tiles, double x0, double y0, double x1, double y1,
-                             const char* face) {
-    return tepor::c::run(session, tiles && face, [&] { tiles->tiles.cut({x0, y0}, {x1, y1}, face); });
-}
-tepor_status tepor_tiles_face(tepor_session* session, tepor_tiles* tiles, const char* face, double x0, double y0,
-                              double x1, double y1) {
-    return tepor::c::run(session, tiles && face, [&] { tiles->tiles.face(face, {x0, y0}, {x1, y1}); });
-}
-tepor_status tepor_tiles_mesh(tepor_session* session, const tepor_tiles* tiles, tepor_element element, double size,
-                              tepor_frame frame, tepor_mesh** out) {
-    return tepor::c::run(session, tiles && out, [&] {
+tepor_status tepor_mesh_from_arrays(tepor_session* session, tepor_element element, const tepor_arrays* arrays,
+                                    tepor_frame frame, tepor_mesh** out) {
+    return tepor::c::run(session, arrays && out, [&] {
+        tepor_arrays given{};
+        tepor::c::take(arrays, given);
         const tepor::Frame in = tepor::c::frame_of(frame);
-        *out = tepor::c::for_plane(element, [&]<class E>() -> tepor_mesh* {
-            return new tepor::c::MeshOf<E>(tepor::tiles<E>(tiles->tiles, {.size = size}, in));
-        });
+        const auto make = [&]<class E>() -> tepor_mesh* {
+            if constexpr (tepor::Element<E>)
+                return new tepor::c::MeshOf<E>(
+                    tepor::mesh_from_arrays<E>(tepor::c::arrays_of(given, in, static_cast<std::size_t>(E::nodes))));
+            else
+                tepor::c::misuse("TEPOR_EXACT_SEGMENT comes in layers, not in arrays");
+        };
+        *out = element < TEPOR_TRIANGLE_1 ? tepor::c::for_line(element, make) : tepor::c::for_plane(element, make);
     });
 }
-
-tepor_status tepor_section_create(tepor_session* session, tepor_section** out) {
-    return tepor::c::run(session, out, [&] { *out = new tepor_section; });
-}
-void tepor_section_free(tepor_section* section) {
-    delete section;
-}
-tepor_status tepor_section_add_rectangle(tepor_session* session, tepor_section* section, const char* region, double x0,
-                                         double y0, double x1, double y1) {
-    return tepor::c::run(session, section && region, [&] {
-        (void)section->section.add(region, tepor::rectangle({x0, y0}, {x1, y1}));
-    });
-}
-tepor_status tepor_section_add_circle(tepor_session* session, tepor_section* section, const char* region, double x,
-                                      double y, double radius) {
-    return tepor::c::run(session, section && region, [&] {
-        (void)section->section.add(region, tepor::circle({x, y}, radius));
-    });
-}
-tepor_status tepor_section_add_polygon(tepor_session* session, tepor_section* section, const char* region,
-                                       const double* corners, size_t count) {
-    return tepor::c::run(session, section && region && corners, [&] {
-        (void)section->section.add(region, tepor::polygon(tepor::c::points_of(corners, count)));
-    });
-}
-tepor_status tepor_section_add_ring(tepor_session* session, tepor_section* section, const char* region, double x,
-                                    double y, double inner, double outer) {
-    return tepor::c::run(session, section && region, [&] {
-        (void)section->section.add(region, tepor::ring({x, y}, inner, outer));
-    });
-}
-tepor_status tepor_section_cut_rectangle(tepor_session* session, tepor_section* section, const char* face, double x0,
-                                         double y0, double x1, double y1) {
-    return tepor::c::run(session, section && face, [&] {
-        (void)section->section.cut(tepor::rectangle({x0, y0}, {x1, y1}), face);
-    });
-}
-tepor_status tepor_section_cut_circle(tepor_session* session, tepor_section* section, const char* face, double x,
-                                      double y, double radius) {
-    return tepor::c::run(session, section && face, [&] {
-        (void)section->section.cut(tepor::circle({x, y}, radius), face);
-    });
-}
-tepor_status tepor_section_cut_polygon(tepor_session* session, tepor_section* section, const char* face,
-                                       const double* corners, size_t count) {
-    return tepor::c::run(session, section && face && corners, [&] {
-        (void)section->section.cut(tepor::polygon(tepor::c::points_of(corners, count)), face);
-    });
-}
-tepor_status tepor_section_face(tepor_session* session, tepor_section* section, const char* face, double x0, double y0,
-                                double x1, double y1) {
-    return tepor::c::run(session, section && face, [&] {
-        section->section.face(face, tepor::Point{x0, y0}, tepor::Point{x1, y1});
-    });
-}
-tepor_status tepor_section_rest(tepor_session* session, tepor_section* section, const char* face) {
-    return tepor::c::run(session, section && face, [&] { section->section.rest(face); });
-}
-tepor_status tepor_section_line(tepor_session* session, tepor_section* section, double x0, double y0, double x1,
-                                double y1) {
-    return tepor::c::run(session, section, [&] { section->section.line(tepor::Point{x0, y0}, tepor::Point{x1, y1}); });
-}
-tepor_status tepor_section_hold(tepor_session* session, tepor_section* section, double x, double y) {
-    return tepor::c::run(session, section, [&] { section->section.hold({x, y}); });
-}
-tepor_status tepor_section_mesh(tepor_session* session, const tepor_section* section, tepor_element element,
-                                double size, tepor_frame frame, tepor_mesh** out) {
-    return tepor::c::run(session, section && out, [&] {
-        const tepor::Frame in = tepor::c::frame_of(frame);
-        *out = tepor::c::for_triangle(element, [&]<class E>() -> tepor_mesh* {
-            return new tepor::c::MeshOf<E>(tepor::triangulate<E>(section->section, {.size = size}, in));
-        });
-    });
+tepor_status tepor_mesh_refined(tepor_session* session, const tepor_mesh* mesh, tepor_mesh** out) {
+    return tepor::c::run(session, mesh && out, [&] { *out = mesh->finer(); });
 }
 
 void tepor_mesh_free(tepor_mesh* mesh) {
@@ -215,6 +173,31 @@ tepor_status tepor_mesh_cells(tepor_session* session, const tepor_mesh* mesh, in
         tepor::c::expect_entries(entries, mesh->data().cells.size());
         for (const tepor::Id id : mesh->data().cells) *cells++ = id;
     });
+}
+
+tepor_status tepor_mesh_regions(tepor_session* session, const tepor_mesh* mesh, int32_t* regions, size_t entries) {
+    return tepor::c::run(session, mesh && regions, [&] {
+        tepor::c::expect_entries(entries, mesh->data().region.size());
+        std::copy(mesh->data().region.begin(), mesh->data().region.end(), regions);
+    });
+}
+size_t tepor_mesh_region_count(const tepor_mesh* mesh) {
+    return mesh ? mesh->data().region_names.size() : 0;
+}
+const char* tepor_mesh_region_name(const tepor_mesh* mesh, size_t region) {
+    return mesh ? tepor::c::name_at(mesh->data().region_names, region) : nullptr;
+}
+size_t tepor_mesh_face_count(const tepor_mesh* mesh) {
+    return mesh ? mesh->data().faces.size() : 0;
+}
+const char* tepor_mesh_face_name(const tepor_mesh* mesh, size_t face) {
+    return mesh && face < mesh->data().faces.size() ? mesh->data().faces[face].name.c_str() : nullptr;
+}
+size_t tepor_mesh_remark_count(const tepor_mesh* mesh) {
+    return mesh ? mesh->data().remarks.size() : 0;
+}
+const char* tepor_mesh_remark(const tepor_mesh* mesh, size_t remark) {
+    return mesh ? tepor::c::name_at(mesh->data().remarks, remark) : nullptr;
 }
 
 } // extern "C"

@@ -50,6 +50,17 @@ tepor_status tepor_quantity_conductance_between(tepor_session* session, const ch
     return tepor::c::run(session, face && to && out,
                          [&] { *out = new tepor_quantity{tepor::conductance_between(face, to)}; });
 }
+tepor_status tepor_quantity_mean_around(tepor_session* session, double x, double y, double radius,
+                                        tepor_quantity** out) {
+    return tepor::c::run(session, out, [&] {
+        *out = new tepor_quantity{tepor::mean_around(tepor::Point{x, y}, radius)};
+    });
+}
+tepor_status tepor_quantity_named(tepor_session* session, const tepor_quantity* quantity, const char* label,
+                                  tepor_quantity** out) {
+    return tepor::c::run(session, quantity && label && out,
+                         [&] { *out = new tepor_quantity{quantity->quantity.named(label)}; });
+}
 void tepor_quantity_free(tepor_quantity* quantity) {
     delete quantity;
 }

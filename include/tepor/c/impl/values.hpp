@@ -135,17 +135,21 @@ tepor_status tepor_schedule_create(tepor_session* session, const double* time, c
 }
 
 tepor_status tepor_law_create(tepor_session* session, const char* name, tepor_law_callback callback, void* user_data,
-                              const tepor_parameter* const* parameters, size_t parameter_count,
-                              int32_t uses_temperature, int32_t own_slope, tepor_function** out) {
+                              const tepor_parameter* const* parameters, size_t parameter_count, tepor_law_kind kind,
+                              int32_t own_slope, tepor_function** out) {
     return tepor::c::run(session, name && callback && out && (parameters || parameter_count == 0), [&] {
         std::vector<tepor::Parameter> list;
         for (size_t i = 0; i < parameter_count; ++i) {
             if (!parameters[i]) tepor::c::misuse("a parameter of the law is NULL");
             list.push_back(parameters[i]->parameter);
         }
-        auto function = std::make_shared<const tepor::c::CallbackLaw>(callback, user_data, parameter_count,
-                                                                      uses_temperature != 0, own_slope != 0);
-        const tepor::Law law(std::move(function), std::move(list), {uses_temperature != 0, true, true}, own_slope != 0);
+        if (kind != TEPOR_LAW_OF_PLACE && kind != TEPOR_LAW_OF_TEMPERATURE && kind != TEPOR_LAW_OF_TIME)
+            tepor::c::misuse("the kind of the law is no tepor_law_kind");
+        const bool temperature = kind == TEPOR_LAW_OF_TEMPERATURE;
+        auto function = std::make_shared<const tepor::c::CallbackLaw>(callback, user_data, parameter_count, temperature,
+                                                                      own_slope != 0);
+        const tepor::Law law(std::move(function), std::move(list), {temperature, kind != TEPOR_LAW_OF_TIME, true},
+                             own_slope != 0);
         *out = new tepor_function{law.named(name)};
     });
 }
