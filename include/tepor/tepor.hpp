@@ -109,6 +109,7 @@
 #include <tepor/flux/model_problem.hpp>
 #include <tepor/flux/neighbours.hpp>
 #include <tepor/flux/problem.hpp>
+#include <tepor/flux/radiating.hpp>
 #include <tepor/flux/residual.hpp>
 #include <tepor/flux/round.hpp>
 #include <tepor/flux/sweep.hpp>

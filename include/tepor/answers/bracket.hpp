@@ -48,7 +48,9 @@ struct Bracket {
 /// chords, and the interval is then that of the polygon. Nothing estimated comes back.
 ///
 /// Means over regions, faces and spots, heat through faces, contacts and between films, temperatures at points inside one material
-/// (or on its straight insulated edge), conductances between two faces. Bodies: triangles of order 1 and 2, segments.
+/// (or on its straight insulated edge), conductances between two faces. Bodies: triangles of order 1 and 2, segments. Faces may
+/// radiate where no heat is given: then the temperatures between which the body lies are known, and with them how the law of
+/// radiation bends (all but conductances; not in r-z).
 /// @throws Error not_certifiable  naming the term or quantity for which no bound exists
 ///               bad_value        an option
 Bracket bracket(const Body& body, const Quantity& quantity, const BracketOptions& options = {});

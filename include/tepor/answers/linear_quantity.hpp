@@ -18,7 +18,8 @@ struct LinearQuantity {
     double constant = 0.0;
     double absolute = 0.0; ///< sum of the absolute terms of the constant
     double scale = 1.0;
-    bool exact = false; ///< the constant is the whole answer
+    bool exact = false;        ///< the constant is the whole answer
+    std::vector<char> through; ///< heat through faces: per entry of FluxProblem::sides, asked for; else empty
 };
 
 /// @param temperature  all unknowns, prescribed ones set (the free ones are not read)

@@ -39,7 +39,8 @@ struct FluxSide {
 struct SideTrace {
     double moment[4] = {0.0, 0.0, 0.0, 0.0}; ///< [W/m2]
     double lost_squared = 0.0;               ///< integral of (g - its projection on degree p)^2 dt [W2/m4]
-    double least_slope = 0.0;                ///< lower bound of dg/dT > 0 over the possible temperatures [W/(m2 K)]
+    double least_slope = 0.0;                ///< lower bound of dg/dT over the possible temperatures [W/(m2 K)]
+    double size = 0.0;                       ///< largest sum of the absolute terms of g, for its rounding [W/m2]
 };
 
 /// Source w in one cell that is not a constant: the kernel of a point temperature, the mean over a spot.

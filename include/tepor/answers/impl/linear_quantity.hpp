@@ -196,7 +196,8 @@ class QuantityReader {
     void heat_out() {
         const std::size_t f = face(quantity_.first());
         out_.scale *= primal_.factor;
-        std::vector<char> own(problem_.sides.size(), 0);
+        std::vector<char>& own = out_.through;
+        own.assign(problem_.sides.size(), 0);
         each_side(f, [&](CellSide side, Id at) {
             if (at < 0) return; // insulated
             own[as_size(at)] = 1;

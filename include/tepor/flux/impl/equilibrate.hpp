@@ -119,9 +119,10 @@ TEPOR_INLINE Equilibrated equilibrate(const FluxProblem& problem, const double* 
         flux.flow[i] = side_total(flux, side.side);
         double start = 0.0, end = 0.0;
         const double length = side_length(mesh, side.side, start, end);
-        if (side.trace >= 0 && problem.traces[as_size(side.trace)].lost_squared > 0.0) {
+        if (side.trace >= 0) {
             const SideTrace& trace = problem.traces[as_size(side.trace)];
             flux.squared[as_size(side.side.cell)] += length * trace.lost_squared / (trace.least_slope + side.film);
+            size_squared += 4.0 * length * trace.size * trace.size / (trace.least_slope + side.film);
         }
         if (side.kind != SideKind::fixed &&
             side.film > 0.0) { // the two sides of a law agree to the rounding of its terms

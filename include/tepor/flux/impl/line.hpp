@@ -190,6 +190,11 @@ TEPOR_INLINE Equilibrated equilibrate_line(const FluxProblem& problem, const dou
         if (side.kind == SideKind::fixed) continue;
         const LineLaw law = line_law(problem, temperature, i);
         if (law.film > 0.0) size += 4.0 * (law.out * law.out + flux.flow[i] * flux.flow[i]) / law.film;
+        if (side.trace >= 0 && law.film > 0.0) {
+            const SideTrace& trace = problem.traces[as_size(side.trace)];
+            size += 4.0 * trace.size * trace.size * law.film /
+                    ((trace.least_slope + side.film) * (trace.least_slope + side.film));
+        }
     }
     flux.mixed_total = std::sqrt(flux.squared_total);
     flux.rounding = rounding_unit * (std::sqrt(size) + std::sqrt(carried));

@@ -14,7 +14,8 @@ namespace detail {
 
 class ProblemReader {
   public:
-    ProblemReader(const Model& model, const Values& values) : model_(model), values_(values), mesh_(*model.mesh) {}
+    ProblemReader(const Model& model, const Values& values, RadiatingFaces radiating)
+        : model_(model), values_(values), mesh_(*model.mesh), radiating_(radiating) {}
 
     ModelProblem read() {
         shape();
@@ -25,6 +26,7 @@ class ProblemReader {
         held_lines();
         corners();
         locals();
+        if (out_.radiating.any()) range();
         return std::move(out_);
     }
 
@@ -160,10 +162,13 @@ class ProblemReader {
         for (const FaceModel& face : model_.faces) {
             if (face.fixed.given()) static_cast<void>(uniform(face.fixed));
             for (const FaceTerm& term : face.terms) {
-                if (term.kind == FaceTerm::Kind::radiation)
-                    refuse(term.amount.label(), "because radiation goes with the fourth power");
+                if (term.kind == FaceTerm::Kind::radiation) {
+                    radiates(face, term);
+                    continue;
+                }
                 const double amount = uniform(term.amount);
                 const double fluid = term.kind == FaceTerm::Kind::film ? uniform(term.outside) : 0.0;
+                if (term.kind == FaceTerm::Kind::flux && amount != 0.0) given_flux_ = term.amount.label();
                 for (const CellSide& s : face.sides.side) {
                     FluxSide& side = listed(in_user_numbering(s), SideKind::open);
                     if (term.kind == FaceTerm::Kind::flux) {
@@ -191,6 +196,62 @@ class ProblemReader {
             }
             out_.face_side_start.push_back(as_id(out_.face_side.size()));
         }
+    }
+
+    void radiates(const FaceModel& face, const FaceTerm& term) {
+        if (radiating_ == RadiatingFaces::refuse)
+            refuse(term.amount.label(), "because radiation goes with the fourth power");
+        if (mesh_.dim == 2 && mesh_.frame.power() > 0) refuse(term.amount.label(), "because it is radiation in r-z");
+        Radiating& all = out_.radiating;
+        all.offset = model_.absolute_offset();
+        const double strength = stefan_boltzmann * uniform(term.amount);
+        const double outside = uniform(term.outside) + all.offset;
+        if (!(strength > 0.0)) return;
+        surroundings_.push_back(outside);
+        const double given = strength * outside * outside * outside * outside;
+        for (const CellSide& s : face.sides.side) {
+            const CellSide user = in_user_numbering(s);
+            static_cast<void>(listed(user, SideKind::open));
+            const Id at = entry(user);
+            if (radiating_at_.size() <= as_size(at)) radiating_at_.resize(as_size(at) + 1, -1);
+            Id& place = radiating_at_[as_size(at)];
+            if (place < 0) {
+                place = as_id(all.sides.size());
+                all.sides.push_back({at, 0.0, 0.0});
+            }
+            all.sides[as_size(place)].strength += strength;
+            all.sides[as_size(place)].given += given;
+        }
+    }
+
+    /// The range of the exact temperature, and that nothing drives it out of what stands around.
+    void range() {
+        Radiating& all = out_.radiating;
+        all.sides.erase(std::remove_if(all.sides.begin(), all.sides.end(),
+                                       [&](const RadiatingSide& r) {
+                                           return out_.problem.sides[as_size(r.side)].kind != SideKind::open;
+                                       }),
+                        all.sides.end());
+        if (!all.any()) return;
+        const auto unknown = [&](const std::string& term) {
+            refuse(term,
+                   "because the body radiates as well, and heat given leaves open which temperatures its faces can "
+                   "reach");
+        };
+        for (std::size_t c = 0; c < out_.problem.source.size(); ++c)
+            if (out_.problem.source[c] != 0.0)
+                unknown(text("generation in \"", mesh_.region_names[as_size(mesh_.region[c])], "\""));
+        if (!out_.problem.spread.empty()) unknown(model_.locals.front().total.label());
+        if (!given_flux_.empty()) unknown(given_flux_);
+        std::vector<double> outside = surroundings_;
+        for (const FluxSide& side : out_.problem.sides)
+            if (side.kind == SideKind::open && side.film > 0.0) outside.push_back(side.fluid + all.offset);
+        for (std::size_t c = 0; c < out_.problem.sink.size(); ++c)
+            if (out_.problem.sink[c] > 0.0) outside.push_back(out_.problem.sink_temperature[c] + all.offset);
+        for (const FaceModel& face : model_.faces)
+            if (face.fixed.given()) outside.push_back(uniform(face.fixed) + all.offset);
+        all.coldest = *std::min_element(outside.begin(), outside.end());
+        all.hottest = *std::max_element(outside.begin(), outside.end());
     }
 
     void contacts() {
@@ -261,14 +322,18 @@ class ProblemReader {
     const Model& model_;
     const Values& values_;
     const MeshData& mesh_;
+    RadiatingFaces radiating_;
+    std::vector<double> surroundings_; ///< of radiating faces, absolute [K]
+    std::vector<Id> radiating_at_;     ///< position in Radiating::sides of each entry of sides, -1: none
+    std::string given_flux_;           ///< a flux that is not zero
     ModelProblem out_;
     std::vector<Id> entry_;
 };
 
 } // namespace detail
 
-TEPOR_INLINE ModelProblem model_problem(const Model& model, const Values& values) {
-    return detail::ProblemReader(model, values).read();
+TEPOR_INLINE ModelProblem model_problem(const Model& model, const Values& values, RadiatingFaces radiating) {
+    return detail::ProblemReader(model, values, radiating).read();
 }
 
 } // namespace tepor
