@@ -56,6 +56,7 @@
 #include <tepor/mesh/sides.hpp>
 #include <tepor/mesh/space_order.hpp>
 #include <tepor/mesh/stack.hpp>
+#include <tepor/mesh/strip_order.hpp>
 #include <tepor/mesh/subdivide.hpp>
 #include <tepor/mesh/tile_axis.hpp>
 #include <tepor/mesh/tiles.hpp>

@@ -14,11 +14,13 @@ namespace tepor {
 struct IterationLimits {
     double tolerance = 1e-8; ///< of the residual's Euclidean norm, relative to that of the right-hand side
     Index most = 200;        ///< iterations
+    Index patience = 40;     ///< iterations without a new least residual until no more progress is expected
 };
 
 /// What an iteration did.
 struct IterationReport {
     bool converged = false;
+    bool stagnated = false; ///< ended because the residual no longer fell, usually at the level of rounding
     Index iterations = 0;
     double residual = 0.0; ///< |b - A x| / |b|, recomputed from x at the end (Euclidean norm); 0 when b is zero
 };
@@ -148,7 +150,9 @@ class SlicedProduct {
 /// @param stop          called as stop(residual, relative) after each iteration with the n residuals b - A x and their
 ///                      norm relative to b; true ends the iteration as converged (in place of limits.tolerance)
 /// Not converged: the iterations ran out, or the matrix or B proved not to be positive definite. x is then the last iterate.
-/// After a stop the residual is recomputed from x; when rounding has hidden that it is not met, the iteration goes on.
+/// After a stop the residual is recomputed from x; when rounding has hidden that it is not met, the iteration goes on, until
+/// three such looks in a row have found no residual under nine tenths of the least: what is asked then lies below rounding.
+/// Equally when the residual has had no new least for limits.patience iterations.
 /// Allocates nothing when `work` has been used for this size before.
 template <class Precondition, class Stop>
 IterationReport conjugate_gradient(const SparseMatrix& matrix, Index n, const double* b, double* x,
@@ -184,6 +188,9 @@ IterationReport conjugate_gradient(const SparseMatrix& matrix, Index n, const do
     const detail::SlicedProduct product(matrix, n, work.spill);
     const detail::Slices slices{n};
     double before = 0.0; // r.z of the iteration before; 0 starts again along z
+    double least = report.residual, least_true = report.residual;
+    Index waited = 0;
+    int vain_looks = 0;
     while (report.iterations < limits.most) {
         double rz = 0.0;
         if constexpr (std::is_convertible_v<decltype(precondition(static_cast<const double*>(r), z)), double>) {
@@ -214,11 +221,23 @@ IterationReport conjugate_gradient(const SparseMatrix& matrix, Index n, const do
         for (Index k = 0; k < slices.count(); ++k) sum += squares[k];
         ++report.iterations;
         report.residual = std::sqrt(sum) / scale;
+        waited = report.residual < least ? 0 : waited + 1;
+        least = report.residual < least ? report.residual : least;
+        if (waited >= limits.patience) {
+            report.stagnated = true;
+            break;
+        }
         if (!stop(static_cast<const double*>(r), report.residual)) continue;
         const double seen = report.residual;
         report.residual = recompute();
         if (stop(static_cast<const double*>(r), report.residual)) {
             report.converged = true;
+            return report;
+        }
+        vain_looks = report.residual < 0.9 * least_true ? 0 : vain_looks + 1;
+        least_true = report.residual < least_true ? report.residual : least_true;
+        if (vain_looks >= 3) {
+            report.stagnated = true;
             return report;
         }
         if (report.residual > 2.0 * seen)

@@ -36,6 +36,11 @@ TEPOR_INLINE void multiply(const SparseMatrix& matrix, Index rows, const double*
 /// y = A^T x for the leading block; the same as multiply() for a symmetric matrix.
 TEPOR_INLINE void multiply_transposed(const SparseMatrix& matrix, Index rows, const double* x, double* y) noexcept;
 
+/// Copies the leading n x n block without the entries that are zero up to rounding, |a_ij| <= 1e-15 sqrt(a_ii a_jj), into `out`
+/// when these are at least an eighth of all; symmetric matrices with a positive diagonal only. Right angles in triangles
+/// leave many of them. @return whether `out` was made. Cost O(entries).
+[[nodiscard]] TEPOR_INLINE bool without_zeros(const SparseMatrix& matrix, Index n, SparseMatrix& out);
+
 /// Throws Error(bad_value) naming the row when the leading n rows break a rule of SparseMatrix: positions that do not
 /// ascend, columns out of order, a row without its diagonal, or arrays of the wrong length. Cost O(entries).
 TEPOR_INLINE void verify(const SparseMatrix& matrix, Index n);

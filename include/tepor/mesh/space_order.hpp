@@ -28,6 +28,17 @@ inline std::uint32_t hilbert_key(std::uint32_t x, std::uint32_t y) noexcept {
     return key;
 }
 
+/// Sorts by the upper 32 bits, keeping the order of equal ones (radix sort); `other` is work space of the same size.
+inline void sort_by_key(std::vector<std::uint64_t>& keys, std::vector<std::uint64_t>& other) {
+    for (unsigned shift = 32; shift < 64; shift += 11) {
+        std::size_t count[2049] = {};
+        for (const std::uint64_t k : keys) ++count[((k >> shift) & 2047U) + 1];
+        for (int b = 0; b < 2048; ++b) count[b + 1] += count[b];
+        for (const std::uint64_t k : keys) other[count[(k >> shift) & 2047U]++] = k;
+        keys.swap(other);
+    }
+}
+
 /// Numbers 0 .. n-1 in the order of Hilbert's curve through the places; equal keys stay in order of number.
 /// Cost O(n) (radix sort).
 inline std::vector<Id> space_order(const std::vector<Point>& places) {
@@ -49,13 +60,7 @@ inline std::vector<Id> space_order(const std::vector<Point>& places) {
         const auto y = static_cast<std::uint32_t>(scale * (places[i].y - low.y));
         keys[i] = (static_cast<std::uint64_t>(hilbert_key(x, y)) << 32U) | i;
     }
-    for (unsigned shift = 32; shift < 64; shift += 11) {
-        std::size_t count[2049] = {};
-        for (const std::uint64_t k : keys) ++count[((k >> shift) & 2047U) + 1];
-        for (int b = 0; b < 2048; ++b) count[b + 1] += count[b];
-        for (const std::uint64_t k : keys) other[count[(k >> shift) & 2047U]++] = k;
-        keys.swap(other);
-    }
+    sort_by_key(keys, other);
     for (std::size_t i = 0; i < n; ++i) order[i] = static_cast<Id>(keys[i] & 0x7FFFFFFFU);
     return order;
 }

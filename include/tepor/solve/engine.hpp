@@ -18,7 +18,7 @@
 
 namespace tepor {
 
-/// How many right-hand sides a factor will meet: what tells a direct from an iterative solve.
+/// How many right-hand sides a factor will meet: what tells a direct from an iterative solve; see choose_solver().
 enum class Purpose { one_solve, many_solves };
 
 /// The linear algebra of one model: matrix over all unknowns, factor of its free block, work vectors. One thread at a time.
@@ -28,7 +28,12 @@ class Engine {
 
     /// Decomposes the free block of `matrix` as it stands.
     /// @return false when it is singular; see singular_unknown()
-    [[nodiscard]] TEPOR_INLINE bool factor(Purpose purpose);
+    [[nodiscard]] bool factor(Purpose purpose) {
+        return factor(purpose == Purpose::one_solve ? Index{1} : Index{1000});
+    }
+    /// The same when the number of solves to come is known. An iterative solver that meets more of them than it was made for
+    /// gives way to a factor where that pays.
+    [[nodiscard]] TEPOR_INLINE bool factor(Index solves);
 
     /// b := A^-1 b for the free unknowns, in place; with a direct factor it allocates nothing.
     /// `limit` is the residual sum of |r| an iterative solve has to reach [W]; direct ones ignore it.
@@ -58,6 +63,8 @@ class Engine {
     enum class Method { none, tridiagonal, banded, banded_lu, cholesky, multigrid };
 
     [[nodiscard]] TEPOR_INLINE bool factor_line();
+    [[nodiscard]] TEPOR_INLINE bool factor_direct(const SparseMatrix& definite);
+    [[nodiscard]] TEPOR_INLINE bool iterate(double* b, double limit);
     [[nodiscard]] TEPOR_INLINE bool solve_unsymmetric(double* b, double limit, bool transposed);
     TEPOR_INLINE void precondition(const double* r, double* z) noexcept;
 
@@ -65,7 +72,9 @@ class Engine {
     Method method_ = Method::none;
     Id singular_ = -1;
     Index iterations_ = 0;
+    Index solves_ = 0; // since the matrix was decomposed
     bool analyzed_ = false;
+    bool thinned_ = false; // multigrid works on thin_
     Tridiagonal tridiagonal_;
     BandedCholesky banded_;
     BandedLu banded_lu_;
@@ -74,6 +83,7 @@ class Engine {
     ConjugateGradientWork cg_work_;
     KrylovWork krylov_work_;
     SparseMatrix symmetric_part_;
+    SparseMatrix thin_; // the free block without zeros, where there are many
     std::vector<double> cg_x_;
 };
 

@@ -135,3 +135,33 @@ TEST_CASE(
     CHECK(x == zero);
     CHECK(conjugate_gradient(good, 0, zero.data(), x.data(), none(0), {1e-8, 50}, work).converged);
 }
+
+TEST_CASE("what lies below rounding is given up soon, and the iterate is as good as it gets") {
+    const test::Square square = test::square(40, true, false, 86);
+    const Index n = square.matrix.rows;
+    test::Random random(87);
+    const std::vector<double> b = test::random_vector(n, random);
+    SparseCholesky factor;
+    factor.analyze(square.matrix, n, square.places.data());
+    REQUIRE(factor.factor(square.matrix));
+    std::vector<double> best = b;
+    factor.solve(best.data());
+    const auto precondition = [&](const double* r, double* z) { // a factor spoilt, so that it takes some iterations
+        for (Index i = 0; i < n; ++i) z[i] = r[i];
+        factor.solve(z);
+        for (Index i = 0; i < n; ++i) z[i] += (i % 2 == 0 ? 0.1 : 0.2) * r[i];
+    };
+    std::vector<double> x(b.size(), 0.0);
+    ConjugateGradientWork work;
+    const IterationReport reach =
+        conjugate_gradient(square.matrix, n, b.data(), x.data(), precondition, {1e-12, 500}, work);
+    REQUIRE(reach.converged);
+    x.assign(b.size(), 0.0);
+    const IterationReport report =
+        conjugate_gradient(square.matrix, n, b.data(), x.data(), precondition, {1e-17, 500}, work);
+    CHECK_FALSE(report.converged);
+    CHECK(report.stagnated);
+    CHECK(report.iterations <= 3 * reach.iterations + 45);
+    CHECK(report.residual <= 1e-12);
+    CHECK(test::largest_difference(x, best) <= 1e-10 * test::largest(best));
+}

@@ -70,3 +70,26 @@ TEST_CASE("a broken matrix is refused and its row named") {
     short_values.lower.pop_back();
     CHECK(message(short_values, 8).find("differ in length") != std::string::npos);
 }
+
+TEST_CASE("without its zeros a matrix is the same matrix, and one with few of them is left alone") {
+    // a chain with zeros between second neighbours, one of them only nearly zero
+    std::vector<double> diagonal(40, 3.0);
+    std::vector<test::Entry> entries;
+    for (Id i = 1; i < 40; ++i) entries.push_back({i, i - 1, -1.0, -1.0});
+    for (Id i = 2; i < 40; ++i) entries.push_back({i, i - 2, i == 7 ? 1e-16 : 0.0, i == 7 ? 1e-16 : 0.0});
+    const SparseMatrix full = test::sparse(diagonal, entries);
+    SparseMatrix thin;
+    REQUIRE(without_zeros(full, 30, thin));
+    verify(thin, 30);
+    CHECK(thin.entries() == 30 + 29);
+    test::Random random(13);
+    const std::vector<double> x = test::random_vector(30, random);
+    std::vector<double> y(x.size()), z(x.size());
+    multiply(full, 30, x.data(), y.data());
+    multiply(thin, 30, x.data(), z.data());
+    CHECK(test::largest_difference(y, z) <= 1e-15);
+
+    entries.resize(39 + 2); // two zeros only
+    const SparseMatrix filled = test::sparse(std::vector<double>(40, 3.0), entries);
+    CHECK_FALSE(without_zeros(filled, 40, thin));
+}

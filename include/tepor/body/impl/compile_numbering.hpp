@@ -5,11 +5,11 @@
 #include <tepor/base/text.hpp>
 #include <tepor/body/model.hpp>
 #include <tepor/body/split.hpp>
-#include <tepor/mesh/space_order.hpp>
+#include <tepor/mesh/strip_order.hpp>
 
 namespace tepor::detail {
 
-/// Order of the cells: region by region, within it along the curve (2D) or by x (1D).
+/// Order of the cells: region by region, within it in strips (2D) or by x (1D).
 inline std::vector<Id> order_cells(const MeshData& mesh) {
     const auto cells = as_size(mesh.cell_count());
     const auto nn = as_size(mesh.nodes_per_cell);
@@ -21,7 +21,7 @@ inline std::vector<Id> order_cells(const MeshData& mesh) {
             for (std::size_t v = 0; v < vertices; ++v) sum = sum + mesh.nodes[as_size(mesh.cells[c * nn + v])];
             middle[c] = sum;
         }
-        const std::vector<Id> near = space_order(middle);
+        const std::vector<Id> near = strip_order(middle);
         std::vector<Id> begin(mesh.region_names.size() + 1, 0);
         for (const Id r : mesh.region) ++begin[as_size(r) + 1];
         for (std::size_t r = 1; r < begin.size(); ++r) begin[r] += begin[r - 1];
@@ -45,7 +45,7 @@ inline std::vector<Id> order_cells(const MeshData& mesh) {
     return order;
 }
 
-/// Rank of each provisional unknown: along the curve in 2D; by x, the cells' copies in place, in 1D.
+/// Rank of each provisional unknown: in strips in 2D; by x, the cells' copies in place, in 1D.
 inline std::vector<Id> rank_unknowns(const Model& model, const std::vector<Id>& provisional,
                                      const std::vector<Id>& owner) {
     const MeshData& mesh = *model.mesh;
@@ -53,7 +53,7 @@ inline std::vector<Id> rank_unknowns(const Model& model, const std::vector<Id>& 
     if (mesh.dim == 2) {
         std::vector<Point> place(owner.size());
         for (std::size_t u = 0; u < owner.size(); ++u) place[u] = mesh.nodes[as_size(owner[u])];
-        return space_order(place);
+        return strip_order(place);
     }
     // 1D: walk the cells from left to right, and in each its nodes
     const auto nn = as_size(mesh.nodes_per_cell);

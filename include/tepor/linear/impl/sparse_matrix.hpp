@@ -39,6 +39,44 @@ TEPOR_INLINE void multiply_transposed(const SparseMatrix& matrix, Index rows, co
     detail::multiply_lower(rows, matrix.start.data(), matrix.column.data(), upper, lower, lower, x, y);
 }
 
+TEPOR_INLINE bool without_zeros(const SparseMatrix& matrix, Index n, SparseMatrix& out) {
+    const Id* start = matrix.start.data();
+    const Id* column = matrix.column.data();
+    const double* value = matrix.lower.data();
+    const auto zero = [&](Index i, Id p, double own) {
+        return value[p] * value[p] <= 1e-30 * (own * value[start[column[p] + 1] - 1]) && column[p] != i;
+    };
+    // a sample tells whether counting pays
+    Index seen = 0, zeros = 0;
+    for (Index i = 0; i < n; i += n < 10000 ? 1 : 61) {
+        const double own = value[start[i + 1] - 1];
+        for (Id p = start[i]; p < start[i + 1]; ++p, ++seen) zeros += zero(i, p, own);
+    }
+    if (zeros * 8 < seen || seen == 0) return false;
+    Index kept = 0;
+    for (Index i = 0; i < n; ++i) {
+        const double own = value[start[i + 1] - 1];
+        for (Id p = start[i]; p < start[i + 1]; ++p) kept += !zero(i, p, own);
+    }
+    out.rows = n;
+    out.upper.clear();
+    out.start.resize(detail::as_size(n) + 1);
+    out.column.resize(detail::as_size(kept));
+    out.lower.resize(detail::as_size(kept));
+    out.start[0] = 0;
+    Id used = 0;
+    for (Index i = 0; i < n; ++i) {
+        const double own = value[start[i + 1] - 1];
+        for (Id p = start[i]; p < start[i + 1]; ++p) {
+            if (zero(i, p, own)) continue;
+            out.column[detail::as_size(used)] = column[p];
+            out.lower[detail::as_size(used++)] = value[p];
+        }
+        out.start[detail::as_size(i) + 1] = used;
+    }
+    return true;
+}
+
 TEPOR_INLINE void verify(const SparseMatrix& matrix, Index n) {
     const auto fail = [](Index row, const char* rule) {
         throw Error(ErrorCode::bad_value, "matrix", detail::text("matrix: row ", row, " ", rule));

@@ -10,16 +10,28 @@ namespace tepor {
 namespace detail {
 
 /// An iteration is done when the sum of |r| is below `limit`, or below what rounding leaves: each row of r sums terms of
-/// the size of its diagonal times x.
-inline auto stop_below(const SparseMatrix& matrix, Index n, double limit, const double* x) {
-    return [&matrix, n, limit, x](const double* r, double) {
-        double sum = 0.0;
-        for (Index i = 0; i < n; ++i) sum += std::abs(r[i]);
+/// the size of its diagonal times x. `scale` is the norm of the right-hand side, which the iteration's own norms are relative
+/// to: the sum is never less than the Euclidean norm, so that most iterations need not form it.
+inline auto stop_below(const SparseMatrix& matrix, Index n, double limit, const double* x, double scale) {
+    return [&matrix, n, limit, x, scale](const double* r, double relative) {
+        constexpr double rounding = 8.0 * std::numeric_limits<double>::epsilon();
+        const double norm = relative * scale;
+        if (norm > limit && relative > 1e-7) return false;
+        double even = 0.0, odd = 0.0;
+        for (Index i = 0; i + 1 < n; i += 2) {
+            even += std::abs(r[i]);
+            odd += std::abs(r[i + 1]);
+        }
+        const double sum = even + odd + (n % 2 != 0 ? std::abs(r[n - 1]) : 0.0);
         if (sum <= limit) return true;
         double terms = 0.0;
         for (Index i = 0; i < n; ++i) terms += std::abs(matrix.diagonal(i) * x[i]);
-        return sum <= 8.0 * std::numeric_limits<double>::epsilon() * terms;
+        return sum <= rounding * terms;
     };
+}
+
+inline double euclidean_norm(const double* b, Index n) noexcept {
+    return std::sqrt(dot_product(b, b, n));
 }
 
 } // namespace detail
@@ -52,12 +64,12 @@ TEPOR_INLINE bool Engine::factor_line() {
     return fine;
 }
 
-TEPOR_INLINE bool Engine::factor(Purpose purpose) {
+TEPOR_INLINE bool Engine::factor(Index solves) {
     singular_ = -1;
+    solves_ = 0;
     const Index n = model_->free;
     if (n == 0) return true;
     if (model_->mesh->dim == 1) return factor_line();
-    const bool iterate = choose_solver(n, 2, purpose == Purpose::one_solve ? 1 : 1000) == SolverKind::multigrid;
     // an unsymmetric slope is preconditioned by its symmetric part
     if (!matrix.symmetric()) {
         symmetric_part_.rows = matrix.rows;
@@ -68,14 +80,19 @@ TEPOR_INLINE bool Engine::factor(Purpose purpose) {
             symmetric_part_.lower[e] = 0.5 * (matrix.lower[e] + matrix.upper[e]);
     }
     const SparseMatrix& definite = matrix.symmetric() ? matrix : symmetric_part_;
-    if (iterate) {
+    if (choose_solver(n, 2, solves) == SolverKind::multigrid) {
         method_ = Method::multigrid;
-        const bool fine = multigrid_.setup(definite, n);
+        thinned_ = without_zeros(definite, n, thin_);
+        const bool fine = multigrid_.setup(thinned_ ? thin_ : definite, n);
         singular_ = fine ? -1 : detail::as_id(multigrid_.singular_row());
         if (fine) return true;
     }
+    return factor_direct(definite);
+}
+
+TEPOR_INLINE bool Engine::factor_direct(const SparseMatrix& definite) {
     method_ = Method::cholesky;
-    if (!analyzed_) cholesky_.analyze(definite, n, model_->places.data());
+    if (!analyzed_) cholesky_.analyze(definite, model_->free, model_->places.data());
     analyzed_ = true;
     const bool fine = cholesky_.factor(definite);
     singular_ = fine ? -1 : detail::as_id(cholesky_.singular_row());
@@ -105,14 +122,23 @@ TEPOR_INLINE bool Engine::solve(double* b, double limit) {
     case Method::multigrid: break;
     }
     if (!matrix.symmetric()) return solve_unsymmetric(b, limit, false);
-    if (method_ == Method::cholesky) {
-        cholesky_.solve(b);
-        return true;
+    ++solves_;
+    if (method_ == Method::multigrid && choose_solver(n, 2, solves_) == SolverKind::cholesky) {
+        if (!factor_direct(matrix)) method_ = Method::multigrid; // which has managed until now
     }
+    if (method_ == Method::multigrid) return iterate(b, limit);
+    cholesky_.solve(b);
+    return true;
+}
+
+TEPOR_INLINE bool Engine::iterate(double* b, double limit) {
+    const Index n = model_->free;
     cg_x_.assign(detail::as_size(n), 0.0);
-    const auto cycle = [this](const double* r, double* z) { multigrid_.cycle(r, z); };
-    const IterationReport report = conjugate_gradient(matrix, n, b, cg_x_.data(), cycle, IterationLimits{}, cg_work_,
-                                                      detail::stop_below(matrix, n, limit, cg_x_.data()));
+    const SparseMatrix& a = thinned_ ? thin_ : matrix;
+    const auto cycle = [this](const double* r, double* z) { return multigrid_.cycle(r, z); };
+    const IterationReport report =
+        conjugate_gradient(a, n, b, cg_x_.data(), cycle, IterationLimits{}, cg_work_,
+                           detail::stop_below(a, n, limit, cg_x_.data(), detail::euclidean_norm(b, n)));
     iterations_ = report.iterations;
     for (Index i = 0; i < n; ++i) b[i] = cg_x_[detail::as_size(i)];
     return report.converged || report.residual < 1e-6; // the caller measures what is left and may come again
@@ -135,7 +161,7 @@ TEPOR_INLINE bool Engine::solve_unsymmetric(double* b, double limit, bool transp
     };
     const IterationReport report = bicgstab(
         apply, n, b, cg_x_.data(), [this](const double* r, double* z) { precondition(r, z); }, IterationLimits{},
-        krylov_work_, detail::stop_below(matrix, n, limit, cg_x_.data()));
+        krylov_work_, detail::stop_below(matrix, n, limit, cg_x_.data(), detail::euclidean_norm(b, n)));
     iterations_ = report.iterations;
     for (Index i = 0; i < n; ++i) b[i] = cg_x_[detail::as_size(i)];
     return report.converged || report.residual < 1e-6;

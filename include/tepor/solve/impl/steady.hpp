@@ -91,7 +91,7 @@ class SteadySolve {
 
     /// How far an iterative linear solve has to go: Newton's own progress tells (Eisenstat & Walker 1996, choice 2).
     [[nodiscard]] double linear_limit(double now, double limit) const {
-        if (!model_.nonlinear) return 0.1 * limit;
+        if (!model_.nonlinear) return 0.5 * limit;
         double forcing = 0.01;
         if (history_.size() > 1) {
             const double drop = now / history_[history_.size() - 2].residual;

@@ -1,0 +1,104 @@
+// Which solver a body gets by itself, and that the roads agree.
+#include <cmath>
+#include <doctest/doctest.h>
+#include <tepor/element/triangle.hpp>
+#include <tepor/mesh/tiles.hpp>
+#include <tepor/solve/engine.hpp>
+#include <tepor/solve/steady.hpp>
+#include <vector>
+
+using namespace tepor;
+
+namespace {
+
+/// More unknowns than a direct solver is chosen for: 161 x 151 nodes, the left ones held.
+Body plate() {
+    Tiles drawing;
+    drawing.add("plate", {0.0, 0.0}, {0.3, 0.2});
+    drawing.split_x({.from = 0.0, .to = 0.3, .cells = 160}).split_y({.from = 0.0, .to = 0.2, .cells = 150});
+    Body body{tiles<Triangle<1>>(drawing)};
+    body.in("plate", Material{.conductivity = of_place([](const auto& p) { return 20.0 + 50.0 * p.x; })});
+    body.in("plate", Generation{.per_volume = 4e4});
+    body.on("left", FixedTemperature{20.0});
+    body.on("top", Film{.coefficient = 30.0, .fluid = 60.0});
+    return body;
+}
+
+/// The matrix of the body and the residual of `T` in the engine.
+void evaluate(const Body& body, Engine& engine, const std::vector<double>& T) {
+    Pass pass;
+    pass.T = T.data();
+    pass.matrix = &engine.matrix;
+    pass.residual = engine.residual.data();
+    assemble(*body.model(), body.values(), engine.work, pass);
+}
+
+} // namespace
+
+TEST_CASE("one solve of a large body iterates, many make a factor, and both find the same temperatures") {
+    const Body body = plate();
+    const Model& model = *body.model();
+    REQUIRE(model.free == 160 * 151);
+    Engine engine(body.model());
+    const std::vector<double> start(static_cast<std::size_t>(model.unknowns), 20.0);
+    evaluate(body, engine, start);
+
+    REQUIRE(engine.factor(Purpose::one_solve));
+    CHECK_FALSE(engine.direct());
+    std::vector<double> iterated = engine.residual;
+    REQUIRE(engine.solve(iterated.data(), 1e-9));
+    CHECK(engine.iterations() > 0);
+    CHECK(engine.iterations() <= 25);
+
+    REQUIRE(engine.factor(Purpose::many_solves));
+    CHECK(engine.direct());
+    std::vector<double> direct = engine.residual;
+    REQUIRE(engine.solve(direct.data(), 0.0));
+    CHECK(engine.iterations() == 0);
+    double largest = 0.0;
+    double apart = 0.0;
+    for (Index u = 0; u < model.free; ++u) {
+        const auto i = static_cast<std::size_t>(u);
+        largest = std::max(largest, std::abs(direct[i]));
+        apart = std::max(apart, std::abs(direct[i] - iterated[i]));
+    }
+    CHECK(largest > 10.0);
+    CHECK(apart <= 1e-9 * largest);
+
+    const Field field = steady(body);
+    double worst = 0.0;
+    for (Index u = 0; u < model.free; ++u) {
+        const auto i = static_cast<std::size_t>(u);
+        worst = std::max(worst, std::abs(field.temperature()[i] - (start[i] - direct[i])));
+    }
+    CHECK(worst <= 1e-8 * largest);
+}
+
+TEST_CASE("an iterative solver that is asked again and again gives way to a factor") {
+    const Body body = plate();
+    Engine engine(body.model());
+    evaluate(body, engine, std::vector<double>(static_cast<std::size_t>(body.model()->unknowns), 20.0));
+    REQUIRE(engine.factor(Index{1}));
+    std::vector<double> first = engine.residual;
+    REQUIRE(engine.solve(first.data(), 1e-9));
+    CHECK_FALSE(engine.direct());
+    std::vector<double> last;
+    for (int k = 0; k < 4; ++k) {
+        last = engine.residual;
+        REQUIRE(engine.solve(last.data(), 1e-9));
+    }
+    CHECK(engine.direct());
+    double apart = 0.0;
+    for (std::size_t i = 0; i < first.size(); ++i) apart = std::max(apart, std::abs(first[i] - last[i]));
+    CHECK(apart <= 1e-7);
+}
+
+TEST_CASE("a limit below rounding ends an iteration instead of keeping it busy") {
+    const Body body = plate();
+    Engine engine(body.model());
+    evaluate(body, engine, std::vector<double>(static_cast<std::size_t>(body.model()->unknowns), 20.0));
+    REQUIRE(engine.factor(Purpose::one_solve));
+    std::vector<double> b = engine.residual;
+    CHECK(engine.solve(b.data(), 0.0));
+    CHECK(engine.iterations() <= 40);
+}
