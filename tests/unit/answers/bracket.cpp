@@ -343,7 +343,8 @@ TEST_CASE("what has no bound is refused by name") {
         Body body = base();
         body.in("solid", Material{.conductivity = 1.0});
         body.on("edge", Radiation{.emissivity = 0.5, .surroundings = 25.0});
-        CHECK(says(asked(body, heat_out_through("edge")), "radiation"));
+        body.in("solid", Generation{.per_volume = 100.0});
+        CHECK(says(asked(body, heat_out_through("edge")), "radiates"));
     }
     {
         Body body = base();
