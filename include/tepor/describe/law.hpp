@@ -114,12 +114,8 @@ auto call_with(const F& f, const SpotType& spot, [[maybe_unused]] const S* param
     return f(spot, parameters[I]...);
 }
 
-/// Spot types by what the law may use.
-template <class S, bool UsesTemperature>
-using SpotFor = std::conditional_t<UsesTemperature, BasicSpot<S>, BasicPlace<S>>;
-
-/// A generic callable (`const auto&`): values and slopes by dual numbers.
-template <class F, std::size_t P, bool UsesTemperature>
+/// A generic callable (`const auto&`): values and slopes by dual numbers. At<S> is what it is told about its point.
+template <class F, std::size_t P, template <class> class At>
 class DualLaw final : public LawFunction {
   public:
     explicit DualLaw(F f) : f_(std::move(f)) {}
@@ -129,11 +125,11 @@ class DualLaw final : public LawFunction {
         std::array<S, P + 1> parameters{};
         for (std::size_t j = 0; j < P; ++j) parameters[j] = S(points.parameters[j]);
         for (Index i = 0; i < points.count; ++i) {
-            SpotFor<S, UsesTemperature> spot;
+            At<S> spot;
             spot.x = S(points.x[i]);
             spot.y = S(points.y[i]);
-            spot.time = points.time;
-            if constexpr (UsesTemperature) {
+            if constexpr (uses_time) spot.time = points.time;
+            if constexpr (uses_temperature) {
                 spot.temperature = S::variable(points.temperature[i], 0);
                 spot.fluid = S(points.fluid ? points.fluid[i] : 0.0);
             }
@@ -151,11 +147,11 @@ class DualLaw final : public LawFunction {
         for (std::size_t j = 0; j < P; ++j)
             parameters[j] = S::variable(points.parameters[j], law_parameter_lane + static_cast<int>(j));
         for (Index i = 0; i < points.count; ++i) {
-            SpotFor<S, UsesTemperature> spot;
+            At<S> spot;
             spot.x = S::variable(points.x[i], law_x_lane);
             spot.y = S::variable(points.y[i], law_y_lane);
-            spot.time = points.time;
-            if constexpr (UsesTemperature) {
+            if constexpr (uses_time) spot.time = points.time;
+            if constexpr (uses_temperature) {
                 spot.temperature = S::variable(points.temperature[i], law_temperature_lane);
                 spot.fluid = S::variable(points.fluid ? points.fluid[i] : 0.0, law_fluid_lane);
             }
@@ -167,6 +163,8 @@ class DualLaw final : public LawFunction {
     }
 
   private:
+    static constexpr bool uses_temperature = std::is_same_v<At<double>, Spot>;
+    static constexpr bool uses_time = !std::is_same_v<At<double>, PlaceWithoutTime<double>>;
     F f_;
 };
 
@@ -250,7 +248,7 @@ template <std::size_t P, class F>
 Law make_law(std::vector<Parameter> parameters, F f) {
     constexpr Law::Uses uses{true, true, true};
     if constexpr (takes<F, BasicSpot<Dual<1>>, Dual<1>, P>) {
-        return Law(std::make_shared<const DualLaw<F, P, true>>(std::move(f)), std::move(parameters), uses, true);
+        return Law(std::make_shared<const DualLaw<F, P, BasicSpot>>(std::move(f)), std::move(parameters), uses, true);
     } else {
         static_assert(takes<F, Spot, double, P>, "tepor law: the callable must take a spot (`const auto&` or `const "
                                                  "tepor::Spot&`) and then one argument for each listed parameter");
@@ -258,20 +256,24 @@ Law make_law(std::vector<Parameter> parameters, F f) {
     }
 }
 
-template <std::size_t P, class F>
+/// `Timed`: generic callables get the time too.
+template <std::size_t P, bool Timed, class F>
 Law make_place_law(std::vector<Parameter> parameters, F f) {
-    constexpr Law::Uses uses{false, true, true};
-    // a generic callable is never tried with a Point, which has no time
-    if constexpr (takes<F, BasicPlace<Dual<1>>, Dual<1>, P>) {
-        return Law(std::make_shared<const DualLaw<F, P, false>>(std::move(f)), std::move(parameters), uses, true);
+    constexpr Law::Uses timed{false, true, true};
+    constexpr Law::Uses untimed{false, true, false};
+    // a generic callable is never tried with a Point, whose coordinates are plain doubles
+    if constexpr (Timed && takes<F, BasicPlace<Dual<1>>, Dual<1>, P>) {
+        return Law(std::make_shared<const DualLaw<F, P, BasicPlace>>(std::move(f)), std::move(parameters), timed, true);
+    } else if constexpr (!Timed && takes<F, PlaceWithoutTime<Dual<1>>, Dual<1>, P>) {
+        return Law(std::make_shared<const DualLaw<F, P, PlaceWithoutTime>>(std::move(f)), std::move(parameters),
+                   untimed, true);
     } else if constexpr (takes<F, Point, double, P>) {
-        return Law(std::make_shared<const PlainLaw<F, P, Point>>(std::move(f)), std::move(parameters),
-                   Law::Uses{false, true, false}, false);
+        return Law(std::make_shared<const PlainLaw<F, P, Point>>(std::move(f)), std::move(parameters), untimed, false);
     } else {
         static_assert(takes<F, Place, double, P>,
                       "tepor of_place: the callable must take a place (`const auto&`, `const tepor::Place&` or "
                       "`tepor::Point`) and then one argument for each listed parameter");
-        return Law(std::make_shared<const PlainLaw<F, P, Place>>(std::move(f)), std::move(parameters), uses, false);
+        return Law(std::make_shared<const PlainLaw<F, P, Place>>(std::move(f)), std::move(parameters), timed, false);
     }
 }
 
@@ -294,14 +296,25 @@ Law law(const Parameter (&parameters)[P], F f) {
     return detail::make_law<P>(detail::listed(parameters), std::move(f));
 }
 
-/// A law of place (and time) alone: `of_place([](const auto& p) { return 5e4 * exp(-p.x / 0.02); })`; also of a `Point`.
+/// A law of place alone: `of_place([](const auto& p) { return 5e4 * exp(-p.x / 0.02); })`; also of a `Point`. It is integrated
+/// once, also when marching. A callable that takes a `const Place&` may read the time as well, and is sampled step by step.
 template <class F>
 Law of_place(F f) {
-    return detail::make_place_law<0>({}, std::move(f));
+    return detail::make_place_law<0, false>({}, std::move(f));
 }
 template <std::size_t P, class F>
 Law of_place(const Parameter (&parameters)[P], F f) {
-    return detail::make_place_law<P>(detail::listed(parameters), std::move(f));
+    return detail::make_place_law<P, false>(detail::listed(parameters), std::move(f));
+}
+
+/// A law of place and time with exact slopes: `of_place_and_time([](const auto& p) { return p.x * std::exp(-p.time); })`.
+template <class F>
+Law of_place_and_time(F f) {
+    return detail::make_place_law<0, true>({}, std::move(f));
+}
+template <std::size_t P, class F>
+Law of_place_and_time(const Parameter (&parameters)[P], F f) {
+    return detail::make_place_law<P, true>(detail::listed(parameters), std::move(f));
 }
 
 /// A function of time alone, sampled where a step needs it: `of_time([](double t) { return 20.0 + 5.0 * std::sin(t); })`.

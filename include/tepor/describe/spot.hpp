@@ -26,6 +26,14 @@ struct BasicPlace {
 
 using Place = BasicPlace<double>;
 
+/// Where alone: what generic laws of place get, so that no one has to ask whether they mind the time. For the time too, see
+/// of_place_and_time.
+template <class S>
+struct PlaceWithoutTime {
+    S x{}; ///< x or r [m]
+    S y{}; ///< y or z [m]
+};
+
 /// May be returned by a law with plain doubles that knows its own slope by temperature.
 struct Sloped {
     double value = 0.0;

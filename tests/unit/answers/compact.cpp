@@ -478,8 +478,8 @@ TEST_CASE("compact refuses what has no small linear model and names it") {
     timed.also_in("steel", Generation{.per_volume = schedule({{0, 1.0}, {10, 2.0}})});
     refuse(timed, ErrorCode::not_supported, "time", "depend on time");
     Body clocked = plate(0.02);
-    clocked.also_in(
-        "steel", Generation{.per_volume = of_place([](const auto& p) { return 10.0 + std::sin(p.time) + 0.0 * p.x; })});
+    clocked.also_in("steel", Generation{.per_volume = of_place_and_time(
+                                            [](const auto& p) { return 10.0 + std::sin(p.time) + 0.0 * p.x; })});
     refuse(clocked, ErrorCode::not_supported, "time", "depend on time");
     Body bare = plate(0.02);
     bare.replace("steel", Material{.conductivity = 16.0});

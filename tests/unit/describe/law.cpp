@@ -127,7 +127,8 @@ TEST_CASE("a law of place keeps the body linear, whether it takes a place or a p
         CHECK(!l->uses().temperature);
         CHECK(l->uses().place);
     }
-    CHECK(generic.uses().time);
+    CHECK(!generic.uses().time); // integrated once, also when marching
+    CHECK(place.uses().time);
     CHECK(!point.uses().time);
     CHECK(std::abs(ask(generic, Batch{}).value[0] - 5e4 * std::exp(-5.0)) <= 1e-9);
     CHECK(ask(place, Batch{}).value[0] == 4.1);
@@ -157,11 +158,16 @@ TEST_CASE("an unqualified abs in a generic law is never the integer one") {
     CHECK(std::abs(ask(l, Batch{}).value[0] - 0.4) <= 1e-12);
 }
 
-TEST_CASE("a generic law of place may read the time") {
-    const Law l =
-        of_place([](const auto& p) { return p.x + 2.0 * p.time; }); // did not compile: it was tried with a Point
+TEST_CASE("a generic law of place and time reads both, with slopes by place") {
+    const Law l = of_place_and_time([](const auto& p) { return p.x + 2.0 * p.time; });
     CHECK(l.uses().time);
+    CHECK(l.uses().place);
+    CHECK(!l.uses().temperature);
     CHECK(std::abs(ask(l, Batch{}).value[0] - (ask(of_place([](const auto& p) { return p.x; }), Batch{}).value[0] +
                                                ask(of_time([](double t) { return 2.0 * t; }), Batch{}).value[0])) <=
           1e-12);
+    Batch batch;
+    batch.parameters = {2.0};
+    check_lanes(of_place_and_time({scale}, [](const auto& p, auto f) { return f * p.x * p.y * (1.0 + p.time); }), batch,
+                1e-8);
 }

@@ -161,7 +161,7 @@ class TermCompiler {
         if (c.depends_on_temperature())
             throw Error(ErrorCode::not_supported, c.label(),
                         c.label() + " depends on the temperature of the body; use a number, a Parameter, a schedule, "
-                                    "of_place or of_time");
+                                    "of_place, of_place_and_time or of_time");
     }
 
     /// What the fluid or surroundings may be; on a radiating face of a kelvin body low numbers must be said with kelvin().
