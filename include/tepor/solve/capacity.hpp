@@ -14,7 +14,7 @@ namespace tepor {
 ///
 /// Lumped, it acts at the nodes alone: the maximum principle holds for backward Euler steps of any size on meshes without
 /// obtuse angles. Consistent, it is integrated like everything else, and a step below `h^2 / (6 theta a)` (1D, a the
-/// diffusivity) undershoots after a jump. Half of each is of order 4 at the nodes of uniform 1D meshes of order 1.
+/// diffusivity; March::sensible_step for any mesh) undershoots after a jump. Half of each is of order 4 at the nodes of uniform 1D meshes of order 1.
 /// Latent heat always acts at the nodes.
 enum class Capacity {
     automatic, ///< lumped for elements of order 1, consistent above

@@ -108,6 +108,14 @@ class March {
     [[nodiscard]] TEPOR_INLINE double value(const Parameter& parameter) const;
     /// Size of the last step [s].
     [[nodiscard]] TEPOR_INLINE double last_step() const noexcept;
+    /// The smallest step [s] that makes sense on this mesh: below it a consistent (or blended) capacity lets temperatures swing beyond
+    /// their neighbours after a jump. 0 for lumped capacity, which knows no such limit. Taken at the start temperatures, and anew
+    /// when a driven conductivity, density or specific heat changes.
+    ///
+    /// max over the nodes i of sum |M_ij| / sum max(-K_ij, 0), j not i, divided by theta: h^2 / (6 theta a) on 1D cells of order 1,
+    /// h^2 / (8 theta a) on equilateral triangles (a the diffusivity), where it is sharp; an estimate on other cells. TR-BDF2 has 0.29 in
+    /// place of theta. Source: the sign condition of M + theta dt K, derived.
+    [[nodiscard]] TEPOR_INLINE double sensible_step() const noexcept;
     /// Factorisations so far; constant while a loop only sets loads.
     [[nodiscard]] TEPOR_INLINE Index factorisations() const noexcept;
     /// Steps that Adaptive tried again with half their size.

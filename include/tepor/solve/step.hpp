@@ -52,6 +52,9 @@ class [[nodiscard]] Step {
     [[nodiscard]] TEPOR_INLINE double residual() const;
     /// What the step's balance leaves over [W]; computed when asked.
     [[nodiscard]] TEPOR_INLINE double left_over() const;
+    /// The step, or a piece of it between events, was shorter than March::sensible_step(): with consistent capacity temperatures
+    /// may have swung beyond their neighbours after a jump.
+    [[nodiscard]] TEPOR_INLINE bool below_minimum() const noexcept;
     /// Newton passes of the step (0 for linear bodies).
     [[nodiscard]] TEPOR_INLINE Index passes() const noexcept;
     /// Throws the Error a step that was not completed stands for, with name, cell, place and time; else does nothing.

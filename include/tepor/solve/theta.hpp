@@ -11,6 +11,8 @@ namespace tepor {
 /// With `damped_start` the first two steps, and the first two after a declared event (a jump of a schedule), are each replaced by
 /// two backward Euler half steps (Rannacher 1984), which share the matrix of theta = 1/2: without them theta = 1/2 rings after a
 /// jump. Setting an input never starts them. Nothing is damped at theta = 1.
+///
+/// Steps can be too short as well as too long: see March::sensible_step and Step::below_minimum.
 struct Theta {
     double theta = 0.5; ///< 1/2 to 1
     double step = 0.0;  ///< [s], > 0

@@ -6,6 +6,7 @@
 #include <tepor/base/text.hpp>
 #include <tepor/solve/impl/marcher_adaptive.hpp>
 #include <tepor/solve/impl/marcher_books.hpp>
+#include <tepor/solve/impl/marcher_minimum.hpp>
 #include <tepor/solve/impl/marcher_newton.hpp>
 #include <tepor/solve/impl/marcher_run.hpp>
 #include <tepor/solve/impl/marcher_setup.hpp>
@@ -146,6 +147,9 @@ TEPOR_INLINE double March::value(const Parameter& parameter) const {
 TEPOR_INLINE double March::last_step() const noexcept {
     return marcher_->last_step;
 }
+TEPOR_INLINE double March::sensible_step() const noexcept {
+    return marcher_->sensible_step();
+}
 TEPOR_INLINE Index March::factorisations() const noexcept {
     return marcher_->factorisations;
 }
@@ -185,6 +189,9 @@ TEPOR_INLINE double Step::residual() const {
 }
 TEPOR_INLINE double Step::left_over() const {
     return marcher_->balance_of(false).left_over;
+}
+TEPOR_INLINE bool Step::below_minimum() const noexcept {
+    return marcher_->below_minimum();
 }
 TEPOR_INLINE Index Step::passes() const noexcept {
     return marcher_->passes;

@@ -68,6 +68,8 @@ class Marcher {
     [[nodiscard]] Balance balance_of(bool whole_run);
     [[nodiscard]] double residual();
     [[nodiscard]] double molten_in(std::string_view region) const;
+    [[nodiscard]] double sensible_step() const noexcept;
+    [[nodiscard]] bool below_minimum() const noexcept { return least_leg_ < minimum_leg_ * (1.0 - 1e-9); }
     [[nodiscard]] const std::vector<double>& temperatures() const noexcept { return T_; }
     [[nodiscard]] const Storage& storage() const noexcept { return *storage_; }
     /// Prescribed temperatures just before a time, in an array over all unknowns.
@@ -153,9 +155,11 @@ class Marcher {
     void prepare_linear();
     void prepare_line();
     void start_latent(Phase phase);
+    void measure_minimum();
     Lane* lane_for(double a);
 
     // values
+    void remake_storage();
     Verdict take_inputs();
     [[nodiscard]] bool prescribe_ends(TimeSpan from, TimeSpan to);
     [[nodiscard]] double next_event(double after) const noexcept;
@@ -259,8 +263,10 @@ class Marcher {
     std::vector<double> molten_, start_molten_, piece_molten_, try_molten_; ///< latent heat held by each LatentNode [J]
     std::vector<double> latent_slope_, capacity_;
     std::vector<double> r0_, rg_, r1_, stage_T_, explicit_;
-    double step_ = 0.0;  ///< Adaptive: the step to try next
-    double birth_ = 0.0; ///< time at the start
+    double minimum_leg_ = 0.0; ///< implicit share of the smallest sensible step [s]
+    double least_leg_ = 0.0;   ///< the smallest of the last step's substeps [s]
+    double step_ = 0.0;        ///< Adaptive: the step to try next
+    double birth_ = 0.0;       ///< time at the start
     Accounts pass_accounts_;
     std::vector<double> instant_book_;
     Ledger step_book_, run_book_;

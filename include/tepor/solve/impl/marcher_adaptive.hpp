@@ -45,6 +45,7 @@ TEPOR_INLINE Verdict Marcher::advance_adaptive(double end) noexcept {
                 if (tape) tape->add({time, to, 1.0, true, 0, T_, stage_T_}, values);
                 time = to;
                 last_step = dt;
+                least_leg_ = tr_bdf2_numbers::implicit * dt;
                 const double factor = 0.9 * std::cbrt(scheme.error / std::max(error, 1e-30));
                 if (factor >= 2.0 && dt >= step_) step_ = std::min(2.0 * step_, std::max(scheme.largest, step_));
                 end_books(start_time_, dt);

@@ -44,6 +44,7 @@ TEPOR_INLINE void Marcher::add(Ledger& to, const Ledger& what) const {
 TEPOR_INLINE void Marcher::begin_books(double dt) noexcept {
     whole_ = dt;
     passes = 0;
+    least_leg_ = std::numeric_limits<double>::infinity();
     instant_fresh_ = false;
     for (Summed& one : integrals) one.pending = 0.0;
     std::fill(mean_.begin(), mean_.end(), 0.0);

@@ -55,6 +55,7 @@ TEPOR_INLINE Marcher::Marcher(const Body& body, const Initial& start, const Sche
         for (std::vector<double>* array : {&piece_T_, &try_T_, &stored_rise_, &capacity_}) array->assign(n, 0.0);
     }
     start_latent(start.phase());
+    measure_minimum();
     clear(step_book_);
     clear(run_book_);
     if (scheme.adaptive) {
@@ -218,6 +219,15 @@ TEPOR_INLINE void Marcher::set(Index input, double value) noexcept {
         input_kept_ = true;
 }
 
+/// The capacity at new values. What is molten keeps its share.
+TEPOR_INLINE void Marcher::remake_storage() {
+    std::unique_ptr<Storage> next = std::make_unique<Storage>(model, values, scheme.capacity, work_);
+    for (std::size_t i = 0; i < molten_.size(); ++i)
+        start_molten_[i] = molten_[i] *= next->latent()[i].full / storage_->latent()[i].full;
+    storage_ = std::move(next);
+    rate_engine_.reset();
+}
+
 TEPOR_INLINE Verdict Marcher::take_inputs() {
     bool remake = false;
     bool capacity = false;
@@ -234,10 +244,12 @@ TEPOR_INLINE Verdict Marcher::take_inputs() {
         slope_fresh_ = false;
     }
     if (!remake) return Verdict::ok;
-    if (capacity) storage_ = std::make_unique<Storage>(model, values, scheme.capacity, work_);
-    if (!linear_) return Verdict::ok;
-    loads_->rebuild(values, work_);
-    prepare_linear();
+    if (capacity) remake_storage();
+    if (linear_) {
+        loads_->rebuild(values, work_);
+        prepare_linear();
+    }
+    measure_minimum();
     return Verdict::ok;
 }
 

@@ -111,12 +111,17 @@ TEPOR_INLINE void Marcher::restore(const Checkpoint& checkpoint) {
     events_.clear();
     event_jumps_.clear();
     collect_events();
-    if (values.slots == slots) return;
+    if (values.slots == slots) {
+        measure_minimum();
+        return;
+    }
     model->update_geometry(values);
     storage_ = std::make_unique<Storage>(model, values, scheme.capacity, work_);
-    if (!linear_) return;
-    loads_->rebuild(values, work_);
-    prepare_linear();
+    if (linear_) {
+        loads_->rebuild(values, work_);
+        prepare_linear();
+    }
+    measure_minimum();
 }
 
 /// Stands at `at` with other temperatures, as if newly made.
