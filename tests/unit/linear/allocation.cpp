@@ -1,56 +1,24 @@
-// Solves allocate nothing: operator new is counted (and kept out of line, or the compiler takes malloc and delete for a mismatch).
+// Solves allocate nothing: operator new is counted.
+#include "../../support/counted_new.hpp"
 #include "../../support/square.hpp"
-#include <cstdlib>
 #include <doctest/doctest.h>
-#include <new>
 #include <tepor/linear/banded.hpp>
 #include <tepor/linear/cholesky.hpp>
 #include <tepor/linear/krylov.hpp>
 #include <tepor/linear/multigrid_solver.hpp>
 #include <tepor/linear/tridiagonal.hpp>
 
-namespace {
-long allocations = 0;
-int* volatile escape = nullptr; // or the compiler drops a pair of new and delete
-} // namespace
-
-[[gnu::noinline]] void* operator new(std::size_t size) {
-    ++allocations;
-    if (void* p = std::malloc(size > 0 ? size : 1)) return p;
-    throw std::bad_alloc();
-}
-[[gnu::noinline]] void* operator new(std::size_t size, const std::nothrow_t&) noexcept {
-    ++allocations;
-    return std::malloc(size > 0 ? size : 1);
-}
-[[gnu::noinline]] void* operator new(std::size_t size, std::align_val_t alignment) {
-    ++allocations;
-    const std::size_t a = static_cast<std::size_t>(alignment);
-    if (void* p = std::aligned_alloc(a, (size + a - 1) / a * a)) return p;
-    throw std::bad_alloc();
-}
-[[gnu::noinline]] void operator delete(void* p) noexcept {
-    std::free(p);
-}
-[[gnu::noinline]] void operator delete(void* p, std::size_t) noexcept {
-    std::free(p);
-}
-[[gnu::noinline]] void operator delete(void* p, std::align_val_t) noexcept {
-    std::free(p);
-}
-[[gnu::noinline]] void operator delete(void* p, std::size_t, std::align_val_t) noexcept {
-    std::free(p);
-}
-
 using namespace tepor;
 
 namespace {
 
+int* volatile escape = nullptr; // or the compiler drops a pair of new and delete
+
 template <class Work>
 long allocations_of(const Work& work) {
-    const long before = allocations;
+    const long before = test::allocations;
     work();
-    return allocations - before;
+    return test::allocations - before;
 }
 
 } // namespace

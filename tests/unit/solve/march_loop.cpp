@@ -1,49 +1,16 @@
-// The control loop of a march: probes, inputs, verdicts, what a step costs. operator new is counted here.
+// The control loop of a march: probes, inputs, verdicts, what a step costs.
+#include "../../support/counted_new.hpp"
 #include "../../support/refused.hpp"
 #include "../../support/scale.hpp"
 #include <cmath>
-#include <cstdlib>
 #include <doctest/doctest.h>
 #include <limits>
-#include <new>
 #include <tepor/element/segment.hpp>
 #include <tepor/element/triangle.hpp>
 #include <tepor/mesh/layers.hpp>
 #include <tepor/mesh/tiles.hpp>
 #include <tepor/solve/march.hpp>
 #include <tepor/solve/steady.hpp>
-
-namespace {
-long allocations = 0;
-} // namespace
-
-[[gnu::noinline]] void* operator new(std::size_t size) {
-    ++allocations;
-    if (void* p = std::malloc(size > 0 ? size : 1)) return p;
-    throw std::bad_alloc();
-}
-[[gnu::noinline]] void* operator new(std::size_t size, const std::nothrow_t&) noexcept {
-    ++allocations;
-    return std::malloc(size > 0 ? size : 1);
-}
-[[gnu::noinline]] void* operator new(std::size_t size, std::align_val_t alignment) {
-    ++allocations;
-    const std::size_t a = static_cast<std::size_t>(alignment);
-    if (void* p = std::aligned_alloc(a, (size + a - 1) / a * a)) return p;
-    throw std::bad_alloc();
-}
-[[gnu::noinline]] void operator delete(void* p) noexcept {
-    std::free(p);
-}
-[[gnu::noinline]] void operator delete(void* p, std::size_t) noexcept {
-    std::free(p);
-}
-[[gnu::noinline]] void operator delete(void* p, std::align_val_t) noexcept {
-    std::free(p);
-}
-[[gnu::noinline]] void operator delete(void* p, std::size_t, std::align_val_t) noexcept {
-    std::free(p);
-}
 
 using namespace tepor;
 
@@ -96,7 +63,7 @@ TEST_CASE("a step of a linear body allocates nothing and factors nothing while l
         const Input heater = march.drive(power);
         const Input outside = march.drive(air);
         const long turns = test::scaled(dim == 1 ? 1000000 : 4000, 2000);
-        const long before = allocations;
+        const long before = test::allocations;
         const Index factors = march.factorisations();
         double sum = 0.0;
         bool fine = true;
@@ -107,7 +74,7 @@ TEST_CASE("a step of a linear body allocates nothing and factors nothing while l
             fine = fine && step.ok();
             sum += march[loss];
         }
-        CHECK(allocations == before);
+        CHECK(test::allocations == before);
         CHECK(march.factorisations() == factors);
         CHECK(fine);
         CHECK(std::isfinite(sum));
@@ -179,32 +146,6 @@ TEST_CASE("a driven film coefficient is factored once per value") {
     // the loss follows the coefficient at once
     const double surface = march[mean_on("outer")];
     CHECK(std::abs(march[heat_out_through("outer")] - 40.0 * (surface - 20.0)) <= 1e-9 * 40.0 * surface);
-}
-
-TEST_CASE("bad input of a march is refused by name") {
-    const Body body = wall();
-    const auto with = [&](const Theta& theta) { return [&body, theta] { March march(body, initial(20.0), theta); }; };
-    test::check_refused(with({.theta = 0.4, .step = 1.0}), ErrorCode::bad_value, "theta", "theta = 0.4");
-    test::check_refused(with({.theta = 1.4, .step = 1.0}), ErrorCode::bad_value, "theta", "0.5 <= theta <= 1");
-    test::check_refused(with({.theta = 0.5, .step = -2.0}), ErrorCode::bad_value, "step", "step = -2");
-    test::check_refused(with({.theta = 0.5}), ErrorCode::bad_value, "step", "expected a finite step > 0");
-    test::check_refused(with({.theta = 0.5, .step = std::nan("")}), ErrorCode::bad_value, "step", "step = nan");
-    test::check_refused(with({.theta = 0.5, .step = 1.0, .newton_passes = -1}), ErrorCode::bad_value, "newton_passes",
-                        "-1");
-    test::check_refused([&] { March m(body, initial(std::nan("")), Theta{.step = 1.0}); }, ErrorCode::bad_value,
-                        "initial", "temperature = nan");
-    test::check_refused([&] { March m(body, initial(-300.0), Theta{.step = 1.0}); }, ErrorCode::bad_value, "initial",
-                        "absolute zero");
-    test::check_refused([&] { March m(body, initial(20.0), Adaptive{.tolerance = 0.0}); }, ErrorCode::bad_value,
-                        "tolerance", "Adaptive: tolerance = 0");
-    March march(body, initial(20.0), Theta{.step = 1.0});
-    test::check_refused([&] { (void)march.watch(mean_in("cork")); }, ErrorCode::bad_name, "cork", "the regions are");
-    test::check_refused([&] { (void)march.drive(Parameter("load", 1.0)); }, ErrorCode::unused, "load", "drive");
-    test::check_refused([&] { march.advance_to(-1.0); }, ErrorCode::bad_value, "advance_to", "t = -1");
-    Body bare{layers<Segment<1>>({{.region = "core", .thickness = 0.03, .cells = 2}})};
-    bare.in("core", Material{.conductivity = 1.0, .density = 1000.0});
-    test::check_refused([&] { March m(bare, initial(20.0), Theta{.step = 1.0}); }, ErrorCode::missing, "core",
-                        "specific heat");
 }
 
 TEST_CASE("advance_to lands on the asked time, calls observers on theirs, and stops when told") {
