@@ -8,7 +8,8 @@
 
 namespace tepor {
 
-/// A field as the bytes of a VTU file: temperatures at the nodes, region and mean heat flux of the cells, the time value.
+/// A field as the bytes of a VTU file: temperatures at the nodes, region and mean heat flux of the cells, the names of the
+/// regions by their number, the time value.
 ///
 /// Nodes come in the mesh's numbering; the second and further copies of nodes at contacts follow, so that jumps are kept.
 /// Cells of order 1 and 2 are the linear and quadratic VTK cells, those of order 3 Lagrange cells.

@@ -37,6 +37,16 @@ inline std::vector<int> vtk_node_order(const MeshData& mesh) {
     return order;
 }
 
+/// Words in an ASCII array of VTK strings: the bytes as numbers, each word ended by 0.
+inline std::string vtk_strings(const std::vector<std::string>& words) {
+    std::string out;
+    for (const std::string& word : words) {
+        for (const char c : word) out += fmt::format("{} ", static_cast<int>(static_cast<unsigned char>(c)));
+        out += "0 ";
+    }
+    return out;
+}
+
 /// Appended blocks: a 64-bit size, then the numbers.
 class VtuBlocks {
   public:
@@ -120,6 +130,9 @@ TEPOR_INLINE std::string vtu_bytes(const Field& field) {
     out += fmt::format("    <FieldData>\n      <DataArray type=\"Float64\" Name=\"TimeValue\" NumberOfTuples=\"1\" "
                        "format=\"ascii\">{:.17g}</DataArray>\n",
                        field.time());
+    out += fmt::format("      <Array type=\"String\" Name=\"region names\" NumberOfTuples=\"{}\" format=\"ascii\">{}"
+                       "</Array>\n",
+                       mesh.region_names.size(), detail::vtk_strings(mesh.region_names));
     out += "    </FieldData>\n";
     out += fmt::format("    <Piece NumberOfPoints=\"{}\" NumberOfCells=\"{}\">\n", places.size(), cells);
     const auto array = [&out](const char* number, const std::string& name, int components, std::size_t offset) {
