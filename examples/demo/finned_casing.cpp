@@ -2,6 +2,7 @@
 // with guaranteed lower and upper bounds: the exact value for this drawing lies between them, mesh, solver and rounding included.
 
 #include "inputs.hpp"
+#include "pictures.hpp"
 #include <cmath>
 #include <tepor/output/text.hpp>
 #include <tepor/tepor.hpp>
@@ -35,6 +36,7 @@ int main() {
     body.between("steel", "aluminium", Contact{.conductance = 3000.0});
     body.on("oil", Film{.coefficient = 400.0, .fluid = 180.0}).on("air", Film{.coefficient = 12.0, .fluid = 25.0});
 
+    demo::picture("finned_casing", map_svg(steady(body), {.title = "Finned profile on a block heated by oil"}));
     const Bracket heat = bracket(body, heat_out_through("air"), {.relative_width = 0.01});
     fmt::print("\nHeat to the air: {:.3f} .. {:.3f} W, to 1 %\n", heat.lower, heat.upper);
     fmt::print("  {:>8}  {:>10}  {:>12}  {:>12}\n", "cells", "unknowns", "lower [W]", "upper [W]");

@@ -2,6 +2,7 @@
 // linings, and film and radiation on the casing. Heat loss and casing temperature, and what a thicker backing brings.
 
 #include "inputs.hpp"
+#include "pictures.hpp"
 #include <cmath>
 #include <tepor/output/text.hpp>
 #include <tepor/tepor.hpp>
@@ -40,6 +41,7 @@ int main() {
 
     const Field field = steady(wall);
     fmt::print("\n{}\n", report(wall, field));
+    demo::picture("furnace_wall", profile_svg(field, {.title = "Furnace wall, 1 m2"}));
 
     const Quantity loss = heat_out_through("outer");
     const Quantity shell = mean_on("outer");

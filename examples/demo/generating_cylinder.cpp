@@ -2,6 +2,7 @@
 // dioxide in its metal tube. Temperatures, and the conductivity integral as a check that needs no finite elements.
 
 #include "inputs.hpp"
+#include "pictures.hpp"
 #include <cmath>
 #include <tepor/output/text.hpp>
 #include <tepor/tepor.hpp>
@@ -58,6 +59,8 @@ int main() {
     rod.on("outer", Film{.coefficient = 35000.0, .fluid = 583.0});
 
     const Field field = steady(rod);
+    demo::picture("generating_cylinder",
+                  profile_svg(field, {.title = "Ceramic cylinder in its tube, 20 kW per metre"}));
     fmt::print("\n{}\n", report(rod, field));
 
     const double centre = field.at(0.0);

@@ -2,6 +2,7 @@
 // The body is described in <tepor/check/iso_10211.hpp>, with its drawing; the tests use the same one.
 
 #include "inputs.hpp"
+#include "pictures.hpp"
 #include <cmath>
 #include <tepor/check/iso_10211.hpp>
 #include <tepor/output/text.hpp>
@@ -26,6 +27,7 @@ int main() {
     const Body detail = iso_10211_case_2();
     const Field field = steady(detail);
     fmt::print("\n{}\n", report(detail, field));
+    demo::picture("iso_10211", map_svg(field, {.title = "EN ISO 10211, Annex A, case 2"}));
 
     fmt::print("Beside the standard, which asks for 0.1 K and 0.1 W/m\n");
     fmt::print("  {:<5}  {:>22}  {:>9}  {:>9}  {:>10}\n", "point", "place [m]", "standard", "computed", "difference");

@@ -2,6 +2,7 @@
 // used, the balance of the run, and a strip of the temperatures over time.
 
 #include "inputs.hpp"
+#include "pictures.hpp"
 #include <algorithm>
 #include <cmath>
 #include <string>
@@ -83,6 +84,8 @@ int main() {
     const double before = march[stored_in("platen")] + march[stored_in("heater")];
 
     fmt::print("\n{:>8}  {:>9}  {:>9}  {:>6}   22 degC{:>52} degC\n", "time [s]", "sensor", "coldest", "power", 200);
+    Record record({at({0.30, 0.055}).named("sensor"), coldest_on("working face").named("coldest of the face"),
+                   generated_in("heater").named("heater power")});
     Thermostat thermostat(set_point, band, full_power);
     double reached = 0.0;
     double uneven = 0.0;
@@ -103,10 +106,13 @@ int main() {
             reached = march.time();
             uneven = march[sensor] - march[coldest];
         }
+        record.add(march.time(), {march[sensor], march[coldest], now});
         if (std::fmod(march.time(), 180.0) == 0.0)
             fmt::print("{:>8.0f}  {:>9.1f}  {:>9.1f}  {:>6.0f}   {}\n", march.time(), march[sensor], march[coldest],
                        now, strip(march[sensor], march[coldest], set_point, 22.0, 200.0));
     }
+    demo::picture("platen_warm_up", strip_svg(record, {.title = "Platen under an on/off thermostat at 180 degC"}));
+    demo::picture("platen_after_an_hour", map_svg(march.field(), {.title = "Platen after an hour, depth 0.4 m"}));
     const double stored = march[stored_in("platen")] + march[stored_in("heater")] - before;
     fmt::print("\nset point reached after {:.0f} s, the coldest place of the working face then {:.1f} K behind\n",
                reached, uneven);

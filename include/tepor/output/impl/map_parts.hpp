@@ -176,7 +176,7 @@ inline void append_outlines(const Field& field, const MapFrame& frame, std::stri
     }
 }
 
-/// Arrows along the heat flux on a coarse grid; their length grows with the root of it.
+/// Arrows along the heat flux on a coarse grid; their length grows with the root of it. None crosses the edge of the body.
 inline std::string map_arrows(const Field& field, const MapFrame& frame) {
     const Model& model = field.model();
     const double spacing = 34.0 / frame.scale;
@@ -185,8 +185,12 @@ inline std::string map_arrows(const Field& field, const MapFrame& frame) {
     };
     std::vector<Arrow> arrows;
     double most = 0.0;
-    for (double y = frame.low.y + 0.5 * spacing; y < frame.high.y; y += spacing)
-        for (double x = frame.low.x + 0.5 * spacing; x < frame.high.x; x += spacing) {
+    // a grid with its middle in the middle of the body, so that symmetric bodies look it
+    const auto first = [spacing](double low, double high) {
+        return 0.5 * (low + high) - 0.5 * spacing * (std::max(1.0, std::floor((high - low) / spacing)) - 1.0);
+    };
+    for (double y = first(frame.low.y, frame.high.y); y < frame.high.y; y += spacing)
+        for (double x = first(frame.low.x, frame.high.x); x < frame.high.x; x += spacing) {
             const Location cell = model.locator().find({x, y});
             if (!cell) continue;
             const Point q = field.cell_heat_flux(cell.cell);
@@ -203,6 +207,9 @@ inline std::string map_arrows(const Field& field, const MapFrame& frame) {
         const double uy = -a.flux.y / size;
         const double x = frame.x(a.at.x) - 0.5 * length * ux;
         const double y = frame.y(a.at.y) - 0.5 * length * uy;
+        // an arrow that leaves the body would point at nothing
+        const Point half{0.5 * length / frame.scale * ux, -0.5 * length / frame.scale * uy};
+        if (!model.locator().find(a.at + half) || !model.locator().find(a.at - half)) continue;
         const double head = std::min(6.0, 0.4 * length);
         const double ex = x + length * ux;
         const double ey = y + length * uy;

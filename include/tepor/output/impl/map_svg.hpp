@@ -63,22 +63,28 @@ TEPOR_INLINE std::string map_svg(const Field& field, const PictureOptions& optio
 
     for (std::size_t f = 0; f < mesh.faces.size(); ++f) detail::label_face(field, frame, f, svg);
 
+    const int decimals = std::clamp(2 - static_cast<int>(std::floor(std::log10(high - low))), 0, 6);
+    double label_y = -HUGE_VAL;
     const auto spot = [&](const Spotted& at, const char* words, bool hot) {
         const double x = frame.x(at.place.x);
         const double y = frame.y(at.place.y);
         svg.raw(fmt::format(
             "<circle cx=\"{:.1f}\" cy=\"{:.1f}\" r=\"5\" fill=\"{}\" stroke=\"#111\" stroke-width=\"1.5\"/>\n", x, y,
             hot ? "#fcf0cb" : "#1f2646"));
-        const std::string text = fmt::format("{} {:.5g} {}", words, at.temperature, unit);
-        const bool right = x < frame.width - 150.0;
+        const std::string text = fmt::format("{} {:.{}f} {}", words, at.temperature, decimals, unit);
+        // beside the body where there is room, else towards the roomier side
+        const double room = 9.0 + 7.2 * static_cast<double>(text.size());
+        const bool right = x < 0.5 * frame.width ? x < room : x + room < frame.width;
         if (frame.thin) {
             const double below = frame.bottom + (hot ? 30.0 : 48.0);
             svg.line(x, y + 5, x, below - 12.0, "#111", 0.8, "2 3");
             svg.text(right ? x - 4 : x + 4, below, text, right ? "start" : "end", 13);
             return;
         }
-        const double lift = y < frame.top + 24.0 ? 18.0 : -8.0;
-        svg.label(right ? x + 9 : x - 9, y + lift, text, right ? "start" : "end", 13);
+        double at_y = y + (y < frame.top + 24.0 ? 18.0 : -8.0);
+        if (std::abs(at_y - label_y) < 16.0) at_y = label_y + 16.0; // the two do not run into each other
+        label_y = at_y;
+        svg.label(right ? x + 9 : x - 9, at_y, text, right ? "start" : "end", 13);
     };
     spot(hottest, "hottest", true);
     spot(coldest, "coldest", false);
@@ -90,10 +96,18 @@ TEPOR_INLINE std::string map_svg(const Field& field, const PictureOptions& optio
     for (int b = 0; b < bands; ++b)
         svg.rect(x0 + bar * b / bands, y0, bar / bands + 0.5, 12.0,
                  detail::hex_of(detail::heat_colour((b + 0.5) / bands)));
-    for (const double T : detail::round_ticks(low, high, 5)) {
+    // the isotherms again, so that each line of the map can be read; numbers no closer than they are wide
+    const std::vector<double> marks = levels.size() > 1 ? levels : detail::round_ticks(low, high, 5);
+    double taken = -HUGE_VAL;
+    for (const double T : marks) {
         const double x = x0 + bar * (T - low) / (high - low);
+        if (!levels.empty()) svg.line(x, y0, x, y0 + 12, "#ffffff", 0.9);
         svg.line(x, y0 + 12, x, y0 + 17, "#444", 1);
-        svg.text(x, y0 + 31, detail::tick_text(T), "middle", 13);
+        const std::string number = detail::tick_text(T);
+        const double half = 4.2 * static_cast<double>(number.size());
+        if (x - half < taken) continue;
+        svg.text(x, y0 + 31, number, "middle", 13);
+        taken = x + half + 4.0;
     }
     std::string words = fmt::format("temperature [{}]", unit);
     if (levels.size() > 1) words += fmt::format(", isotherms every {:.4g}", levels[1] - levels[0]);

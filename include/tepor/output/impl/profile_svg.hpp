@@ -22,8 +22,7 @@ inline Beyond beyond_face(const Field& field, const std::string& name) {
     for (const FaceModel& face : model.faces) {
         if (face.name != name) continue;
         const auto number = [&](const Coefficient& c) {
-            return c.uniform() ? fmt::format("{:.4g}", c.uniform_value(field.values().slots.data(), now))
-                               : std::string("by law");
+            return c.uniform() ? tick_text(c.uniform_value(field.values().slots.data(), now)) : std::string("by law");
         };
         if (face.fixed.given()) out.words.push_back(fmt::format("held at {} {}", number(face.fixed), unit));
         for (const FaceTerm& term : face.terms) {
@@ -35,7 +34,7 @@ inline Beyond beyond_face(const Field& field, const std::string& name) {
                 out.words.push_back(fmt::format("flux {} W/m2 {}", number(term.amount), term.sign < 0 ? "in" : "out"));
             if (term.kind == FaceTerm::Kind::flux || !term.outside.uniform()) continue;
             const double outside = term.outside.uniform_value(field.values().slots.data(), now);
-            if (!(out.temperature == outside)) out.words.push_back(fmt::format("to {:.4g} {}", outside, unit));
+            if (!(out.temperature == outside)) out.words.push_back(fmt::format("to {} {}", tick_text(outside), unit));
             out.temperature = outside;
         }
         if (out.words.empty()) out.words.push_back("adiabatic");
@@ -150,7 +149,8 @@ TEPOR_INLINE std::string profile_svg(const Field& field, const PictureOptions& o
         d += fmt::format("{}{:.2f} {:.2f} ", i == 0 ? 'M' : 'L', px(curve[i].x), py(curve[i].T));
     svg.path(d, "none", "#1f2646", 2.5);
 
-    const auto mark = [&](const detail::Beyond& side, double edge, double away, const char* anchor, double surface) {
+    const auto mark = [&](const detail::Beyond& side, double edge, double away, const char* anchor, double surface,
+                          double surface_shift) {
         const double end = edge + away;
         if (!std::isnan(side.temperature)) {
             svg.line(edge + 0.25 * away, py(side.temperature), end, py(side.temperature), "#b4562a", 2.0, "6 4");
@@ -158,21 +158,25 @@ TEPOR_INLINE std::string profile_svg(const Field& field, const PictureOptions& o
                                  py(side.temperature), edge + 0.25 * away, py(side.temperature)),
                      "none", "#b4562a", 1.4, "3 3");
         }
-        // words stand where the marked line is not
-        const bool above = std::isnan(side.temperature) || py(side.temperature) > 0.5 * (y0 + y1);
-        double y = above ? y1 + 16 : y0 - 10 - 16 * static_cast<double>(side.words.size() - 1);
+        // words stand on the inner side of the picture, clear of the marked line and of the number at the surface
+        const double number_at = py(surface) + surface_shift;
+        const bool downward = py(std::isnan(side.temperature) ? surface : side.temperature) < 0.5 * (y0 + y1);
+        const double line = std::isnan(side.temperature) ? number_at : py(side.temperature);
+        double y = downward ? std::max(line, number_at) + 20
+                            : std::min(line, number_at) - 20 - 16 * (static_cast<double>(side.words.size()) - 1);
         for (const std::string& words : side.words) {
             svg.label(edge + 0.06 * away, y, words, anchor, 12);
             y += 16;
         }
     };
-    mark(left, x0, -beyond, "end", curve.front().T);
-    mark(right, x1, beyond, "start", curve.back().T);
     // surface temperatures beside the faces, on the side the curve does not run to
     const bool rising = curve.back().T > curve.front().T;
-    svg.label(px(from) - 6, py(curve.front().T) + (rising ? -8 : 18), fmt::format("{:.4g}", curve.front().T), "end",
-              13);
-    svg.label(px(to) + 6, py(curve.back().T) + (rising ? 18 : -8), fmt::format("{:.4g}", curve.back().T), "start", 13);
+    const double left_shift = rising ? -8 : 18;
+    const double right_shift = rising ? 18 : -8;
+    mark(left, x0, -beyond, "end", curve.front().T, left_shift);
+    mark(right, x1, beyond, "start", curve.back().T, right_shift);
+    svg.label(px(from) - 6, py(curve.front().T) + left_shift, fmt::format("{:.4g}", curve.front().T), "end", 13);
+    svg.label(px(to) + 6, py(curve.back().T) + right_shift, fmt::format("{:.4g}", curve.back().T), "start", 13);
     return std::move(svg).done();
 }
 
