@@ -241,9 +241,9 @@ class Body(Handle):
     def text(self):
         return text("body_text", self).decode()
 
-    def report(self, field):
-        """Description, temperatures, balance and cautions."""
-        return text("report", self, field).decode()
+    def report(self, field, *quantities):
+        """Description, temperatures, balance, quantities and cautions."""
+        return text("report", self, field, handles(quantities), c_size_t(len(quantities))).decode()
 
     def set(self, parameter, value):
         call("body_set", self, parameter, float(value))

@@ -17,11 +17,12 @@ TEPOR_C_API size_t tepor_text_size(const tepor_text* text);
 TEPOR_C_API tepor_status tepor_text_write(tepor_session* session, const tepor_text* text, const char* path);
 TEPOR_C_API void tepor_text_free(tepor_text* text);
 
-/* For people: a body as described, a field, both together with the cautions, a heat balance, slopes, a fit, a model. */
+/* For people: a body as described, a field, all of it with `count` quantities (NULL and 0: none) and the cautions, a heat
+ * balance, slopes, a fit, a model. */
 TEPOR_C_API tepor_status tepor_body_text(tepor_session* session, const tepor_body* body, tepor_text** out);
 TEPOR_C_API tepor_status tepor_field_text(tepor_session* session, const tepor_field* field, tepor_text** out);
 TEPOR_C_API tepor_status tepor_report(tepor_session* session, const tepor_body* body, const tepor_field* field,
-                                      tepor_text** out);
+                                      const tepor_quantity* const* quantities, size_t count, tepor_text** out);
 TEPOR_C_API tepor_status tepor_balance_text(tepor_session* session, const tepor_field* field, tepor_text** out);
 TEPOR_C_API tepor_status tepor_slopes_text(tepor_session* session, const tepor_slopes* slopes, tepor_text** out);
 TEPOR_C_API tepor_status tepor_fitted_text(tepor_session* session, const tepor_fitted* fitted, tepor_text** out);

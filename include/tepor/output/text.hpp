@@ -8,6 +8,7 @@
 #include <tepor/body/body.hpp>
 #include <tepor/check/self_check.hpp>
 #include <tepor/field/field.hpp>
+#include <vector>
 
 namespace tepor {
 
@@ -28,9 +29,16 @@ enum class Detail {
 /// A field: temperatures by region and face, how the solve ended, and the heat balance.
 [[nodiscard]] TEPOR_INLINE std::string to_text(const Field& field);
 
-/// Both: the body as described, with the parameter values of the field, and the field.
+/// What a result asks to keep in mind: faces within reach that burn or could set fire, round walls that may bear pressure,
+/// the worth of the data.
+[[nodiscard]] TEPOR_INLINE std::string cautions(const Field& field);
+
+/// All in one: the body as described with the parameter values of the field, its temperatures and heat balance, the
+/// quantities asked for, the cautions.
 /// @throws Error bad_value  the field belongs to another mesh
-[[nodiscard]] TEPOR_INLINE std::string report(const Body& body, const Field& field);
+///               as Field::operator[] for a quantity
+[[nodiscard]] TEPOR_INLINE std::string report(const Body& body, const Field& field,
+                                              const std::vector<Quantity>& quantities = {});
 
 /// A self-check: build, cases, verdicts.
 [[nodiscard]] TEPOR_INLINE std::string to_text(const SelfCheck& check, Detail detail = Detail::brief);
@@ -72,6 +80,7 @@ template <>
 struct fmt::formatter<tepor::SelfCheck> : tepor::detail::TextFormatter {};
 /// @endcond
 #ifndef TEPOR_COMPILED
+#include <tepor/output/impl/cautions.hpp>
 #include <tepor/output/impl/text_balance.hpp>
 #include <tepor/output/impl/text_body.hpp>
 #include <tepor/output/impl/text_check.hpp>

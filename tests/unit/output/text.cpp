@@ -137,3 +137,38 @@ TEST_CASE("a self-check is printed with build, verdicts, sources on request, and
     CHECK(holds(text, "fast-math"));
     CHECK(holds(text, "SELF-CHECK FAILED"));
 }
+
+TEST_CASE("a report ends with the quantities asked for and the cautions that the result asks for") {
+    Body hot = wall();
+    const Field field = steady(hot);
+    const Quantity loss = heat_out_through("outer");
+    const std::string text = report(hot, field, {loss, mean_on("outer").named("casing")});
+    CHECK(holds(text, "Quantities\n"));
+    CHECK(holds(text, "heat out through \"outer\""));
+    CHECK(holds(text, fmt::format("{:.6g}", field[loss])));
+    CHECK(holds(text, "casing"));
+    CHECK(text.find("Heat balance") < text.find("Quantities"));
+    CHECK(text.find("Quantities") < text.find("Cautions"));
+    CHECK(field[hottest_on("outer")] > 80.0);
+    CHECK(holds(text, fmt::format("\"outer\" reaches {:.1f} degC: it can burn", field[hottest_on("outer")])));
+    CHECK(holds(text, "fire resistance are never decided"));
+    CHECK(text.find("\"inner\" reaches") == std::string::npos); // nobody stands in gas of 900 degC
+    CHECK(holds(text, "no better than 20 percent"));
+    CHECK(text.find("pressure") == std::string::npos);
+    hot.set(gas, 60.0);
+    CHECK(cautions(steady(hot)).find("burn") == std::string::npos);
+    CHECK_THROWS_AS((void)report(hot, field, {mean_on("nowhere")}), Error);
+}
+
+TEST_CASE("a hot pipe in kelvin is told to bear pressure perhaps, and its surface is judged in degrees Celsius") {
+    Body pipe{layers<Segment<2>>({{.region = "steel", .thickness = 0.01}}, Cylindrical{}, {.start = 0.05}),
+              TemperatureScale::kelvin};
+    pipe.in("steel", Material{.conductivity = 40.0});
+    pipe.on("inner", Film{.coefficient = 500.0, .fluid = 473.15})
+        .on("outer", Film{.coefficient = 8.0, .fluid = 293.15});
+    const std::string text = cautions(steady(pipe));
+    CHECK(holds(text, "bear pressure"));
+    CHECK(holds(text, "K: it can burn"));
+    pipe.replace("inner", Film{.coefficient = 500.0, .fluid = 310.0});
+    CHECK(cautions(steady(pipe)).find("burn") == std::string::npos); // 310 K is 37 degC
+}

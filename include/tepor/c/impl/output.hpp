@@ -35,6 +35,15 @@ inline PictureOptions picture_options_of(const tepor_picture_options* options) {
     return how;
 }
 
+inline std::vector<Quantity> quantities_of(const tepor_quantity* const* quantities, std::size_t count) {
+    std::vector<Quantity> list;
+    for (std::size_t i = 0; i < count; ++i) {
+        if (!quantities[i]) misuse("a quantity of the list is NULL");
+        list.push_back(quantities[i]->quantity);
+    }
+    return list;
+}
+
 } // namespace tepor::c
 
 extern "C" {
@@ -58,9 +67,11 @@ tepor_status tepor_body_text(tepor_session* session, const tepor_body* body, tep
 tepor_status tepor_field_text(tepor_session* session, const tepor_field* field, tepor_text** out) {
     return tepor::c::run(session, field && out, [&] { *out = new tepor_text{tepor::to_text(field->field)}; });
 }
-tepor_status tepor_report(tepor_session* session, const tepor_body* body, const tepor_field* field, tepor_text** out) {
-    return tepor::c::run(session, body && field && out,
-                         [&] { *out = new tepor_text{tepor::report(body->body, field->field)}; });
+tepor_status tepor_report(tepor_session* session, const tepor_body* body, const tepor_field* field,
+                          const tepor_quantity* const* quantities, size_t count, tepor_text** out) {
+    return tepor::c::run(session, body && field && out && (quantities || count == 0), [&] {
+        *out = new tepor_text{tepor::report(body->body, field->field, tepor::c::quantities_of(quantities, count))};
+    });
 }
 tepor_status tepor_balance_text(tepor_session* session, const tepor_field* field, tepor_text** out) {
     return tepor::c::run(session, field && out, [&] { *out = new tepor_text{tepor::to_text(field->field.balance())}; });
@@ -113,14 +124,8 @@ tepor_status tepor_field_csv(tepor_session* session, const tepor_field* field, t
 
 tepor_status tepor_record_create(tepor_session* session, const tepor_quantity* const* quantities, size_t count,
                                  tepor_record** out) {
-    return tepor::c::run(session, quantities && out, [&] {
-        std::vector<tepor::Quantity> list;
-        for (size_t i = 0; i < count; ++i) {
-            if (!quantities[i]) tepor::c::misuse("a quantity of the record is NULL");
-            list.push_back(quantities[i]->quantity);
-        }
-        *out = new tepor_record{tepor::Record(std::move(list))};
-    });
+    return tepor::c::run(session, quantities && out,
+                         [&] { *out = new tepor_record{tepor::Record(tepor::c::quantities_of(quantities, count))}; });
 }
 tepor_status tepor_record_add(tepor_session* session, tepor_record* record, double time, const double* values,
                               size_t entries) {

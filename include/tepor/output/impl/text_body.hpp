@@ -162,11 +162,20 @@ TEPOR_INLINE std::string to_text(const Body& body) {
     return out;
 }
 
-TEPOR_INLINE std::string report(const Body& body, const Field& field) {
+TEPOR_INLINE std::string report(const Body& body, const Field& field, const std::vector<Quantity>& quantities) {
     if (&body.mesh() != &field.mesh())
         throw Error(ErrorCode::bad_value, "report",
                     "report: the field belongs to another mesh than the body; give the body it was solved for");
-    return detail::BodyWriter(body, [&](const Parameter& p) { return field.value(p); }).write() + to_text(field);
+    std::string out = detail::BodyWriter(body, [&](const Parameter& p) { return field.value(p); }).write();
+    out += to_text(field);
+    if (!quantities.empty()) {
+        const bool kelvin = field.model().scale == TemperatureScale::kelvin;
+        detail::TextTable table({"quantity", "value", "unit"});
+        for (const Quantity& q : quantities)
+            table.row({q.label(), detail::significant(field[q]), q.is_temperature() && kelvin ? "K" : q.unit()});
+        out += "Quantities\n" + table.text();
+    }
+    return out + cautions(field);
 }
 
 } // namespace tepor
