@@ -1,5 +1,6 @@
 // From a drawing to a guaranteed interval: the heat a floor heating pipe gives to the room, whatever the mesh.
 
+#include "numbers.hpp"
 #include <fmt/core.h>
 #include <tepor/tepor.hpp>
 
@@ -27,6 +28,12 @@ int main() {
 
     const Bracket surface = bracket(body, at({0.075, 0.095 - 0.001}), {.absolute_width = 0.01});
     fmt::print("1 mm under the surface above the pipe: between {:.3f} and {:.3f} degC\n", surface.lower, surface.upper);
+
+    example::number("heat, lower", heat.lower);
+    example::number("heat, upper", heat.upper);
+    example::number("cells", static_cast<double>(heat.cells));
+    example::number("surface, lower", surface.lower);
+    example::number("surface, upper", surface.upper);
 
     // By hand: what the water gives leaves upwards or downwards.
     const Bracket water = bracket(body, heat_in_through("water"), {.relative_width = 0.001});

@@ -1,5 +1,6 @@
 // A copper bar carrying current: laws of one's own for its heat and its film, with exact slopes.
 
+#include "numbers.hpp"
 #include <cmath>
 #include <fmt/core.h>
 #include <tepor/output/answers.hpp>
@@ -30,6 +31,10 @@ int main() {
     Sized rating = size_for(bar, current, surface, at_most(90.0), {.from = 100.0, .to = 3000.0});
     fmt::print("{}\n", rating);
     fmt::print("Bars at such temperatures burn the skin: guard them, and let local codes rate them.\n");
+
+    example::number("surface", field[surface]);
+    example::number("slope", gradient(field, surface)[current]);
+    example::number("rating", rating.value);
 
     // By hand: the heat of the whole resistance at the surface temperature leaves through the film (the bar is all but even).
     const double t = field[surface], amps = 800.0;

@@ -1,5 +1,6 @@
 // A furnace wall: heat loss, casing temperature, their slopes, the backing that meets a limit, another gas temperature.
 
+#include "numbers.hpp"
 #include <cmath>
 #include <fmt/core.h>
 #include <tepor/output/text.hpp> // printing with fmt
@@ -37,9 +38,18 @@ int main() {
     Sized sized = size_for(wall, backing_thickness, loss, 900.0); // value, field, or the reason there is none
     fmt::print("{:.0f} W needs a backing of {:.3f} m: {}\n", sized.reached, sized.value, sized.message);
 
+    example::number("loss", field[loss]);
+    example::number("casing", field[shell]);
+    example::number("inside", field.at(0.1));
+    example::number("slope", slope[k_backing]);
+    example::number("backing for 900 W", sized.value);
+    example::number("reached", sized.reached);
+
     wall.set(gas, 1180.0); // steady(wall) again redoes only what depends on it
     field = steady(wall);
     fmt::print("{:.1f} W, {:.1f} degC at 1180 degC\n", field[loss], field[shell]);
+
+    example::number("loss at 1180 degC", field[loss]);
 
     // by hand: what leaves the casing by film and radiation is the loss
     const double by_hand =

@@ -1,5 +1,6 @@
 // A heated platen: a plane section marched under control, its useful heat bracketed, a small model of it for the controller.
 
+#include "numbers.hpp"
 #include <algorithm>
 #include <cmath>
 #include <fmt/core.h>
@@ -53,6 +54,12 @@ int main() {
     fmt::print("at 500 W between {:.1f} and {:.1f} W leave through the working face\n", certain.lower, certain.upper);
     StateSpace plant = compact(platen, {.inputs = {power}, .outputs = {sensor}, .sample_time = 1.0, .tolerance = 1e-3});
     fmt::print("{} states follow the sensor within {:.2g} degC of the largest gain\n", plant.order, plant.error_bound);
+
+    example::number("after half an hour", held);
+    example::number("lower", certain.lower);
+    example::number("upper", certain.upper);
+    example::number("states", static_cast<double>(plant.order));
+    example::number("error bound", plant.error_bound);
 
     // The march against its own heat account, and the interval against the steady heat of a mesh with round bores, which
     // differs from that of the bracket's polygons by far less than the width asked for.

@@ -1,6 +1,8 @@
 """Runs the sizing scripts and holds the numbers they print against closed forms and solves of another kind."""
 import math
+import os
 import re
+import shutil
 import subprocess
 import sys
 from pathlib import Path
@@ -8,6 +10,20 @@ from pathlib import Path
 SCRIPTS = Path(__file__).resolve().parents[2] / "examples" / "scripts"
 SIGMA = 5.670374419e-8  # W/(m2 K4), CODATA 2018
 failures = 0
+told = set()  # languages that were heard
+
+
+def others(name):
+    """The same question asked from C, built into the folder TEPOR_C_EXAMPLES, and from Perl where it can call C."""
+    program = Path(os.environ.get("TEPOR_C_EXAMPLES", "")) / f"example-c-{name}"
+    if name in ("touch_temperature", "lining_heat_up") and program.is_file():
+        yield "C", [str(program)]
+    perl = shutil.which("perl")
+    if (SCRIPTS / f"{name}.pl").is_file():
+        if perl and subprocess.run([perl, "-MFFI::Platypus=2.00", "-e", "1"], capture_output=True).returncode == 0:
+            yield "Perl", [perl, str(SCRIPTS / f"{name}.pl")]
+        else:
+            print(f"skipped: {name}.pl, Perl has no FFI::Platypus (Debian: libffi-platypus-perl)")
 
 
 def run(name):
@@ -21,6 +37,13 @@ def run(name):
     expect(f"{name}: lines of the script", len(lines), 20, 19)
     if name != "fin_spacing" and "Caution" not in out.stdout:
         raise SystemExit(f"{name} shows no caution:\n{out.stdout}")
+    numbers = [line for line in out.stdout.splitlines() if re.match(r"[a-z].*\d", line) and "balanced" not in line]
+    for language, command in others(name):
+        other = subprocess.run(command, capture_output=True, text=True, timeout=300)
+        same = [line for line in numbers if line in other.stdout.splitlines()]
+        expect(f"{name} in {language}: lines as in Python", len(same), max(2, len(numbers) - (name == "lining_heat_up")), 0)
+        expect(f"{name} in {language}: balanced", "balanced" in other.stdout and "NOT" not in other.stdout, True, 0)
+        told.add(language)
     return out.stdout
 
 
@@ -195,4 +218,6 @@ scripts = {path.stem for path in SCRIPTS.glob("*.py") if not path.stem.startswit
 expect("scripts without a check", len(scripts ^ {check.__name__ for check in checks}), 0, 0)
 for check in checks:
     check()
+if os.environ.get("TEPOR_C_EXAMPLES"):
+    expect("C was asked too", "C" in told, True, 0)
 raise SystemExit(1 if failures else 0)

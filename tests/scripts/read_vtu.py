@@ -1,23 +1,13 @@
 """VTU files read back with the VTK of the distribution: cells of every element order give, through VTK's own shape functions,
-the places and temperatures the library gives; regions, heat fluxes, time values, and the index of a series.
-
-Skipped (exit 77) where no Python has VTK."""
+the places and temperatures the library gives; regions, heat fluxes, time values, and the index of a series."""
 import csv
 import ctypes
-import os
 import sys
 import tempfile
 from pathlib import Path
 
-try:
-    from vtkmodules.vtkIOXML import vtkXMLUnstructuredGridReader
-    from vtkmodules.vtkCommonCore import mutable, vtkPoints
-except ImportError:
-    system = "/usr/bin/python3"
-    if os.path.exists(system) and os.path.realpath(sys.executable) != os.path.realpath(system):
-        os.execv(system, [system, *sys.argv])
-    print("skipped: VTK for Python is not installed (Debian: python3-vtk9)")
-    raise SystemExit(77)
+from vtkmodules.vtkIOXML import vtkXMLUnstructuredGridReader
+from vtkmodules.vtkCommonCore import mutable
 
 sys.path.insert(0, str(Path(__file__).resolve().parents[2] / "examples" / "scripts"))
 import tepor  # noqa: E402

@@ -51,9 +51,16 @@ typedef struct tepor_points {
     size_t parameter_count;
 } tepor_points;
 
-/* An own law: fills value[0 .. count) and, when `slope` is not NULL and it knows them, derivatives by temperature [per K].
- * It is called once per batch of points. Returns 0, or any other number to stop the solve: TEPOR_BAD_LAW shows it. A law
- * that does not fill slopes is created with `own_slope` 0, and slopes are taken by differences. */
+/* Which slopes a law fills itself; the others are taken by differences, good to about six digits. */
+typedef enum tepor_own_slope {
+    TEPOR_SLOPE_BY_DIFFERENCES = 0,
+    TEPOR_SLOPE_BY_TEMPERATURE = 1, /* slope[0 .. count) [per K] */
+    TEPOR_SLOPE_BY_ALL =
+        2 /* one row of `count` after another, zeros at first: by temperature, fluid, x, y, each parameter */
+} tepor_own_slope;
+
+/* An own law: fills value[0 .. count) and, when `slope` is not NULL, the slopes it was created to know. It is called once
+ * per batch of points. Returns 0, or any other number to stop the solve: TEPOR_BAD_LAW shows it. */
 typedef int32_t (*tepor_law_callback)(const tepor_points* points, double* value, double* slope, void* user_data);
 
 /* What a law depends on. */
@@ -68,7 +75,7 @@ typedef enum tepor_law_kind {
  * given NULL for it. */
 TEPOR_C_API tepor_status tepor_law_create(tepor_session* session, const char* name, tepor_law_callback callback,
                                           void* user_data, const tepor_parameter* const* parameters,
-                                          size_t parameter_count, tepor_law_kind kind, int32_t own_slope,
+                                          size_t parameter_count, tepor_law_kind kind, tepor_own_slope own_slope,
                                           tepor_function** out);
 TEPOR_C_API void tepor_function_free(tepor_function* function);
 

@@ -11,13 +11,7 @@ struct MeshOf final : tepor_mesh {
     [[nodiscard]] const MeshData& data() const override { return mesh; }
     [[nodiscard]] Body body(const BodyOptions& options) const override { return Body(mesh, options); }
     [[nodiscard]] Body body(const Body& like) const override { return like.on_mesh(mesh); }
-    [[nodiscard]] tepor_mesh* finer() const override {
-        if constexpr (Element<E>)
-            return new MeshOf<E>(refined(mesh));
-        else
-            misuse(
-                "a mesh of TEPOR_EXACT_SEGMENT is exact at its nodes and is not refined; give its layers more cells");
-    }
+    [[nodiscard]] tepor_mesh* finer() const override { return new MeshOf<E>(refined(mesh)); }
     Mesh<E> mesh;
 };
 
@@ -134,11 +128,8 @@ tepor_status tepor_mesh_from_arrays(tepor_session* session, tepor_element elemen
         tepor::c::take(arrays, given);
         const tepor::Frame in = tepor::c::frame_of(frame);
         const auto make = [&]<class E>() -> tepor_mesh* {
-            if constexpr (tepor::Element<E>)
-                return new tepor::c::MeshOf<E>(
-                    tepor::mesh_from_arrays<E>(tepor::c::arrays_of(given, in, static_cast<std::size_t>(E::nodes))));
-            else
-                tepor::c::misuse("TEPOR_EXACT_SEGMENT comes in layers, not in arrays");
+            return new tepor::c::MeshOf<E>(
+                tepor::mesh_from_arrays<E>(tepor::c::arrays_of(given, in, static_cast<std::size_t>(E::nodes))));
         };
         *out = element < TEPOR_TRIANGLE_1 ? tepor::c::for_line(element, make) : tepor::c::for_plane(element, make);
     });

@@ -1,6 +1,7 @@
 #pragma once
 // Parameters, tables, schedules and laws by callback.
 
+#include <algorithm>
 #include <tepor/c/impl/handles.hpp>
 
 namespace tepor::c {
@@ -8,25 +9,42 @@ namespace tepor::c {
 /// A law of a C program: one callback per batch, slopes its own or by differences.
 class CallbackLaw final : public LawFunction {
   public:
-    CallbackLaw(tepor_law_callback callback, void* user_data, std::size_t parameters, bool temperature, bool own_slope)
+    CallbackLaw(tepor_law_callback callback, void* user_data, std::size_t parameters, bool temperature,
+                int32_t own_slope)
         : callback_(callback), user_data_(user_data), parameters_(parameters), temperature_(temperature),
           own_slope_(own_slope) {}
 
     int evaluate(const LawPoints& points, double* value, double* slope) const override {
-        const int status = call(points, value, own_slope_ ? slope : nullptr);
-        if (status != 0 || !slope || own_slope_) return status;
+        if (!slope) return call(points, value, nullptr);
+        if (own_slope_ == TEPOR_SLOPE_BY_TEMPERATURE) return call(points, value, slope);
+        const auto n = tepor::detail::as_size(points.count);
+        if (own_slope_ == TEPOR_SLOPE_BY_ALL) {
+            std::vector<double> all(lanes() * n);
+            const int status = call(points, value, all.data());
+            std::copy_n(all.begin(), n, slope);
+            return status;
+        }
+        if (const int status = call(points, value, nullptr)) return status;
         if (temperature_) return difference(points, law_temperature_lane, slope);
-        for (Index i = 0; i < points.count; ++i) slope[i] = 0.0;
+        std::fill_n(slope, n, 0.0);
         return 0;
     }
 
     int derivatives(const LawPoints& points, double* derivative) const override {
-        for (int lane = 0; lane < law_parameter_lane + static_cast<int>(parameters_); ++lane)
+        if (own_slope_ == TEPOR_SLOPE_BY_ALL) {
+            const auto n = tepor::detail::as_size(points.count);
+            std::vector<double> value(n);
+            std::fill_n(derivative, lanes() * n, 0.0);
+            return call(points, value.data(), derivative);
+        }
+        for (int lane = 0; lane < static_cast<int>(lanes()); ++lane)
             if (const int status = difference(points, lane, derivative + lane * points.count)) return status;
         return 0;
     }
 
   private:
+    [[nodiscard]] std::size_t lanes() const { return law_parameter_lane + parameters_; }
+
     int call(const LawPoints& p, double* value, double* slope) const {
         const tepor_points points{static_cast<std::size_t>(p.count),
                                   temperature_ ? p.temperature : nullptr,
@@ -84,7 +102,7 @@ class CallbackLaw final : public LawFunction {
     void* user_data_;
     std::size_t parameters_;
     bool temperature_;
-    bool own_slope_;
+    int32_t own_slope_;
 };
 
 } // namespace tepor::c
@@ -136,7 +154,7 @@ tepor_status tepor_schedule_create(tepor_session* session, const double* time, c
 
 tepor_status tepor_law_create(tepor_session* session, const char* name, tepor_law_callback callback, void* user_data,
                               const tepor_parameter* const* parameters, size_t parameter_count, tepor_law_kind kind,
-                              int32_t own_slope, tepor_function** out) {
+                              tepor_own_slope own_slope, tepor_function** out) {
     return tepor::c::run(session, name && callback && out && (parameters || parameter_count == 0), [&] {
         std::vector<tepor::Parameter> list;
         for (size_t i = 0; i < parameter_count; ++i) {
@@ -145,11 +163,13 @@ tepor_status tepor_law_create(tepor_session* session, const char* name, tepor_la
         }
         if (kind != TEPOR_LAW_OF_PLACE && kind != TEPOR_LAW_OF_TEMPERATURE && kind != TEPOR_LAW_OF_TIME)
             tepor::c::misuse("the kind of the law is no tepor_law_kind");
+        if (own_slope < TEPOR_SLOPE_BY_DIFFERENCES || own_slope > TEPOR_SLOPE_BY_ALL)
+            tepor::c::misuse("own_slope is no tepor_own_slope");
         const bool temperature = kind == TEPOR_LAW_OF_TEMPERATURE;
-        auto function = std::make_shared<const tepor::c::CallbackLaw>(callback, user_data, parameter_count, temperature,
-                                                                      own_slope != 0);
+        auto function =
+            std::make_shared<const tepor::c::CallbackLaw>(callback, user_data, parameter_count, temperature, own_slope);
         const tepor::Law law(std::move(function), std::move(list), {temperature, kind != TEPOR_LAW_OF_TIME, true},
-                             own_slope != 0);
+                             own_slope == TEPOR_SLOPE_BY_ALL);
         *out = new tepor_function{law.named(name)};
     });
 }

@@ -1,0 +1,21 @@
+# An example in C++ and its twin in C give the same numbers to the last bit.
+#   CPP, C   the programs;   WORK  a folder;   LEAST  at least so many numbers
+foreach(which IN ITEMS CPP C)
+    set(file "${WORK}/${which}.numbers")
+    file(MAKE_DIRECTORY "${WORK}")
+    file(REMOVE "${file}")
+    execute_process(COMMAND "${CMAKE_COMMAND}" -E env "TEPOR_NUMBERS=${file}" "${${which}}" RESULT_VARIABLE code
+        OUTPUT_VARIABLE out ERROR_VARIABLE out)
+    if(NOT code EQUAL 0)
+        message(FATAL_ERROR "${${which}} ended with ${code}\n${out}")
+    endif()
+    file(STRINGS "${file}" ${which}_lines)
+endforeach()
+list(LENGTH CPP_lines count)
+if(count LESS LEAST)
+    message(FATAL_ERROR "${count} numbers, expected at least ${LEAST}")
+endif()
+if(NOT CPP_lines STREQUAL C_lines)
+    message(FATAL_ERROR "C++ and C differ\n  C++: ${CPP_lines}\n  C:   ${C_lines}")
+endif()
+message(STATUS "${count} numbers, the same to the last bit")
