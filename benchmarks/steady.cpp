@@ -80,25 +80,140 @@ void line_by_hand(benchmark::State& state) {
 }
 BENCHMARK(line_by_hand)->Unit(benchmark::kMillisecond);
 
-void line_steady(benchmark::State& state) {
-    const Parameter scale{"scale", 1.0};
+/// The same eliminated from both ends at once, so that two chains hide each other's latency.
+void line_by_hand_two_ended(benchmark::State& state) {
+    const Index n = line_cells;
+    std::vector<double> x(detail::as_size(n + 1));
+    for (Index i = 0; i <= n; ++i) x[detail::as_size(i)] = static_cast<double>(i) / static_cast<double>(n);
+    std::vector<double> ratio(detail::as_size(n + 1));
+    std::vector<double> T(detail::as_size(n + 1));
+    double scale = 1.0;
+    const double g[2] = {0.21132486540518712, 0.78867513459481288};
+    for (auto _ : state) {
+        scale += 0.001;
+        const auto cell = [&](std::size_t i, double& conductance, double& to_left, double& to_right) {
+            const auto k = [scale](double at) { return scale * (1.0 + 0.5 * at); };
+            const auto f = [](double at) { return 100.0 * at * (1.0 - at); };
+            const double h = x[i + 1] - x[i];
+            const double a = x[i] + g[0] * h;
+            const double b = x[i] + g[1] * h;
+            conductance = 0.5 * (k(a) + k(b)) / h;
+            const double fa = 0.5 * h * f(a);
+            const double fb = 0.5 * h * f(b);
+            to_left = g[1] * fa + g[0] * fb;
+            to_right = g[0] * fa + g[1] * fb;
+        };
+        double c = 0.0;
+        double l = 0.0;
+        double r = 0.0;
+        cell(0, c, l, r); // the first node is held at 0
+        double pivot_left = c;
+        double load_left = r;
+        cell(detail::as_size(n - 1), c, l, r);
+        double inverse = 1.0 / (10.0 + c);
+        ratio[detail::as_size(n)] = c * inverse;
+        T[detail::as_size(n)] = r * inverse;
+        double pivot_right = c - c * c * inverse;
+        double load_right = l + c * inverse * r;
+        const Index m = n / 2;
+        Index i = 1;
+        Index j = n - 1;
+        while (true) {
+            // nodes i and j hold all but their inner cell's share
+            if (i < m) {
+                cell(detail::as_size(i), c, l, r);
+                const double p = 1.0 / (pivot_left + c);
+                const double y = load_left + l;
+                ratio[detail::as_size(i)] = c * p;
+                T[detail::as_size(i)] = y * p;
+                pivot_left = c - c * (c * p);
+                load_left = r + c * p * y;
+                ++i;
+            }
+            if (j > m) {
+                cell(detail::as_size(j - 1), c, l, r);
+                const double p = 1.0 / (pivot_right + c);
+                const double y = load_right + r;
+                ratio[detail::as_size(j)] = c * p;
+                T[detail::as_size(j)] = y * p;
+                pivot_right = c - c * (c * p);
+                load_right = l + c * p * y;
+                --j;
+            }
+            if (i >= m && j <= m) break;
+        }
+        double up = (load_left + load_right) / (pivot_left + pivot_right);
+        double down = up;
+        T[detail::as_size(m)] = up;
+        Index a = m - 1;
+        Index b = m + 1;
+        for (; a > 0 && b <= n; --a, ++b) {
+            up = T[detail::as_size(a)] += ratio[detail::as_size(a)] * up;
+            down = T[detail::as_size(b)] += ratio[detail::as_size(b)] * down;
+        }
+        for (; a > 0; --a) up = T[detail::as_size(a)] += ratio[detail::as_size(a)] * up;
+        for (; b <= n; ++b) down = T[detail::as_size(b)] += ratio[detail::as_size(b)] * down;
+        benchmark::DoNotOptimize(T.data());
+    }
+    state.counters["ns/cell"] = benchmark::Counter(
+        1e-9 * static_cast<double>(n), benchmark::Counter::kIsIterationInvariantRate | benchmark::Counter::kInvert);
+}
+BENCHMARK(line_by_hand_two_ended)->Unit(benchmark::kMillisecond);
+
+Body line_body(const Parameter& scale) {
     Body body{layers<Segment<1>>({{.region = "slab", .thickness = 1.0, .cells = line_cells}})};
     body.in("slab",
             Material{.conductivity = of_place({scale}, [](const auto& p, auto s) { return s * (1.0 + 0.5 * p.x); })});
     body.in("slab", Generation{.per_volume = of_place([](const auto& p) { return 100.0 * p.x * (1.0 - p.x); })});
     body.on("inner", FixedTemperature{0.0}).on("outer", Film{.coefficient = 10.0, .fluid = 0.0});
+    return body;
+}
+
+/// A changed parameter, then the field: a new one each time, or one that is used again.
+void line_steady(benchmark::State& state, bool again) {
+    const Parameter scale{"scale", 1.0};
+    Body body = line_body(scale);
     double value = 1.0;
+    Field kept;
     for (auto _ : state) {
         value += 0.001;
         body.set(scale, value);
-        const Field field = steady(body);
-        benchmark::DoNotOptimize(field.temperature().data());
+        if (again) {
+            steady(body, kept);
+            benchmark::DoNotOptimize(kept.temperature().data());
+        } else {
+            const Field field = steady(body);
+            benchmark::DoNotOptimize(field.temperature().data());
+        }
     }
     state.counters["ns/cell"] =
         benchmark::Counter(1e-9 * static_cast<double>(line_cells),
                            benchmark::Counter::kIsIterationInvariantRate | benchmark::Counter::kInvert);
 }
-BENCHMARK(line_steady)->Unit(benchmark::kMillisecond);
+BENCHMARK_CAPTURE(line_steady, new_field, false)->Unit(benchmark::kMillisecond);
+BENCHMARK_CAPTURE(line_steady, same_field, true)->Unit(benchmark::kMillisecond);
+
+/// A wall of three layers of one cell each, constant conductivity: a changed value, then the field.
+void wall_of_three(benchmark::State& state) {
+    const Parameter gas{"gas", 1200.0};
+    const Parameter backing{"backing", 0.2};
+    const bool load = state.range(0) == 0;
+    Body wall{layers<Segment<1>>({{.region = "brick", .thickness = 0.23},
+                                  {.region = "backing", .thickness = 0.1},
+                                  {.region = "casing", .thickness = 0.006}})};
+    wall.in("brick", Material{.conductivity = 1.3}).in("backing", Material{.conductivity = backing});
+    wall.in("casing", Material{.conductivity = 48.0});
+    wall.on("inner", Film{.coefficient = 90.0, .fluid = gas}).on("outer", Film{.coefficient = 12.0, .fluid = 25.0});
+    Field kept;
+    double value = 0.0;
+    for (auto _ : state) {
+        value += 1e-6;
+        load ? wall.set(gas, 1200.0 + value) : wall.set(backing, 0.2 + value);
+        steady(wall, kept);
+        benchmark::DoNotOptimize(kept.temperature().data());
+    }
+}
+BENCHMARK(wall_of_three)->Arg(0)->Arg(1);
 
 const Mesh<Triangle<1>>& plane() {
     static const Mesh<Triangle<1>> mesh = [] {

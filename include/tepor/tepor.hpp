@@ -7,6 +7,7 @@
 #include <tepor/base/dual.hpp>
 #include <tepor/base/error.hpp>
 #include <tepor/base/frame.hpp>
+#include <tepor/base/memory.hpp>
 #include <tepor/base/numbers.hpp>
 #include <tepor/base/point.hpp>
 #include <tepor/base/text.hpp>
@@ -66,13 +67,16 @@
 #include <tepor/assembly/block.hpp>
 #include <tepor/assembly/cell_kernels.hpp>
 #include <tepor/assembly/cell_law.hpp>
+#include <tepor/assembly/chain_block.hpp>
 #include <tepor/assembly/element_matrices.hpp>
 #include <tepor/assembly/exact_kernels.hpp>
 #include <tepor/assembly/kernels.hpp>
 #include <tepor/assembly/kernels_cells.hpp>
+#include <tepor/assembly/kernels_chain.hpp>
 #include <tepor/assembly/kernels_sides.hpp>
 
 #include <tepor/linear/banded.hpp>
+#include <tepor/linear/chain_sweep.hpp>
 #include <tepor/linear/cholesky.hpp>
 #include <tepor/linear/choose.hpp>
 #include <tepor/linear/concept.hpp>
@@ -89,6 +93,7 @@
 #include <tepor/body/coefficient.hpp>
 #include <tepor/body/enthalpy.hpp>
 #include <tepor/body/gather.hpp>
+#include <tepor/body/line.hpp>
 #include <tepor/body/model.hpp>
 #include <tepor/body/pattern.hpp>
 #include <tepor/body/residual_slope.hpp>
@@ -128,6 +133,7 @@
 #include <tepor/solve/checkpoint.hpp>
 #include <tepor/solve/engine.hpp>
 #include <tepor/solve/initial.hpp>
+#include <tepor/solve/line_sweep.hpp>
 #include <tepor/solve/loads.hpp>
 #include <tepor/solve/march.hpp>
 #include <tepor/solve/march_handles.hpp>

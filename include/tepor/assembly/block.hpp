@@ -1,14 +1,9 @@
 #pragma once
 // Work arrays of a block of cells or sides: entry (i, c) of every array is at [i * block_width + c].
 
+#include <tepor/base/memory.hpp>
 #include <tepor/base/numbers.hpp>
 #include <vector>
-
-#if defined(__GNUC__)
-#define TEPOR_RESTRICT __restrict__
-#else
-#define TEPOR_RESTRICT __restrict
-#endif
 
 namespace tepor {
 

@@ -3,6 +3,7 @@
 
 #include <memory>
 #include <tepor/assembly/block.hpp>
+#include <tepor/assembly/chain_block.hpp>
 #include <tepor/base/frame.hpp>
 #include <tepor/base/numbers.hpp>
 
@@ -26,6 +27,8 @@ class CellKernels {
     int side_points = 0;
     /// Steady nodal values are exact for any conductivity of place and any source (the exact segment).
     bool exact = false;
+    /// Cells of two nodes with the matrix (1 / R) [1 -1; -1 1]: open_chain() and form_chain() serve them.
+    bool chain = false;
 
     /// Local cell node that is node j of side s.
     [[nodiscard]] virtual int side_node(int s, int j) const = 0;
@@ -45,6 +48,10 @@ class CellKernels {
     /// nodes) the weight of each node's temperature in it. What open() has put there is that already for every Element; an
     /// exact cell law needs the coefficients, and with k_mean it gives the integral of k from the first node's temperature.
     virtual void profile(CellBlock& block, double* shape) const = 0;
+
+    /// As open and form, for a run of two-node cells with conductivity and source of place alone; see `chain`.
+    virtual void open_chain(ChainBlock& block) const { static_cast<void>(block); }
+    virtual void form_chain(ChainBlock& block) const { static_cast<void>(block); }
 
     /// As open and form, for sides. `lumped` puts the quadrature points on the nodes.
     virtual void open_side(SideBlock& block, bool lumped) const = 0;

@@ -32,6 +32,7 @@ class Kernels final : public CellKernels {
         nodes = E::nodes;
         sides = E::sides;
         side_nodes = Side::nodes;
+        chain = E::dim == 1 && constant_gradient;
         points = static_cast<int>(rule.size());
         for (Index q = 0; q < rule.size(); ++q) {
             const typename E::point xi = rule.point(q);
@@ -86,6 +87,8 @@ class Kernels final : public CellKernels {
     void form(CellBlock& block, Wanted wanted) const override;
     void form_capacity(CellBlock& block, const double* amount, bool lumped) const override;
     void profile(CellBlock& block, double* shape) const override;
+    void open_chain(ChainBlock& block) const override;
+    void form_chain(ChainBlock& block) const override;
     void open_side(SideBlock& block, bool lumped) const override;
     void form_side(SideBlock& block, Wanted wanted, bool lumped) const override;
 
@@ -143,9 +146,13 @@ class Kernels final : public CellKernels {
         return power_ == 0 ? factor_ : (power_ == 1 ? factor_ * r : factor_ * r * r);
     }
 
+    void map_segment_point(int q, int count, const double* left, const double* right, double* place,
+                           double* weight) const;
     void map_segments(CellBlock& block) const;
     void map_plane(CellBlock& block) const;
     void add_conduction(CellBlock& block, Wanted wanted) const;
+    void sum_conductivity(int count, const double* weight, int stride, const double* k, double k_value,
+                          double* total) const;
     void add_uniform_conduction(CellBlock& block, Wanted wanted) const;
     void add_source(CellBlock& block, Wanted wanted) const;
 
@@ -159,4 +166,5 @@ class Kernels final : public CellKernels {
 
 #include <tepor/assembly/exact_kernels.hpp>
 #include <tepor/assembly/kernels_cells.hpp>
+#include <tepor/assembly/kernels_chain.hpp>
 #include <tepor/assembly/kernels_sides.hpp>

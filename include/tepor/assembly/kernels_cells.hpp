@@ -5,6 +5,28 @@
 
 namespace tepor {
 
+/// Place and weight of quadrature point q of straight two-node segments.
+template <Element E>
+void Kernels<E>::map_segment_point(int q, int count, const double* TEPOR_RESTRICT left,
+                                   const double* TEPOR_RESTRICT right, double* TEPOR_RESTRICT place,
+                                   double* TEPOR_RESTRICT weight) const {
+    const double n0 = shape_[detail::as_size(q * N)];
+    const double n1 = shape_[detail::as_size(q * N + 1)];
+    const double w = rule_weight_[detail::as_size(q)];
+    if (power_ == 0) {
+        const double size = w * factor_;
+        for (int c = 0; c < count; ++c) {
+            place[c] = n0 * left[c] + n1 * right[c];
+            weight[c] = size * (right[c] - left[c]);
+        }
+        return;
+    }
+    for (int c = 0; c < count; ++c) {
+        place[c] = n0 * left[c] + n1 * right[c];
+        weight[c] = w * (right[c] - left[c]) * measure(place[c]);
+    }
+}
+
 template <Element E>
 void Kernels<E>::map_segments(CellBlock& block) const {
     const double* TEPOR_RESTRICT x = block.x;
@@ -17,20 +39,7 @@ void Kernels<E>::map_segments(CellBlock& block) const {
             left[c] = -right[c];
         }
         for (int q = 0; q < points; ++q) {
-            const double* n = shape_.data() + static_cast<Index>(q) * N;
-            const double w = rule_weight_[detail::as_size(q)];
-            double* TEPOR_RESTRICT px = block.point_x + q * W;
-            double* TEPOR_RESTRICT weight = block.weight + q * W;
-            if (power_ == 0)
-                for (int c = 0; c < W; ++c) {
-                    px[c] = n[0] * x[c] + n[1] * x[W + c];
-                    weight[c] = (w * factor_) * (x[W + c] - x[c]);
-                }
-            else
-                for (int c = 0; c < W; ++c) {
-                    px[c] = n[0] * x[c] + n[1] * x[W + c];
-                    weight[c] = w * (x[W + c] - x[c]) * measure(px[c]);
-                }
+            map_segment_point(q, W, x, x + W, block.point_x + q * W, block.weight + q * W);
             if (q > 0)
                 for (int i = 0; i < 2 * W; ++i) block.gradient_x[q * 2 * W + i] = block.gradient_x[i];
         }
@@ -137,18 +146,29 @@ void Kernels<E>::form(CellBlock& block, Wanted wanted) const {
     if (block.source) add_source(block, wanted);
 }
 
+/// Integral of k over each of `count` cells; point q of cell c stands at [q * stride + c], a null k is k_value everywhere.
+template <Element E>
+void Kernels<E>::sum_conductivity(int count, const double* weight, int stride, const double* k, double k_value,
+                                  double* TEPOR_RESTRICT total) const {
+    for (int q = 0; q < points; ++q) {
+        const double* TEPOR_RESTRICT w = weight + q * stride;
+        const double* TEPOR_RESTRICT at = k + (k ? q * stride : 0);
+        if (k && q == 0)
+            for (int c = 0; c < count; ++c) total[c] = w[c] * at[c];
+        else if (k)
+            for (int c = 0; c < count; ++c) total[c] += w[c] * at[c];
+        else if (q == 0)
+            for (int c = 0; c < count; ++c) total[c] = w[c] * k_value;
+        else
+            for (int c = 0; c < count; ++c) total[c] += w[c] * k_value;
+    }
+}
+
 template <Element E>
 void Kernels<E>::add_uniform_conduction(CellBlock& block, Wanted wanted) const {
     // constant gradients: the point weights add up first
     double total[W];
-    for (int c = 0; c < W; ++c) total[c] = 0.0;
-    for (int q = 0; q < points; ++q) {
-        const double* TEPOR_RESTRICT weight = block.weight + q * W;
-        if (block.k_uniform)
-            for (int c = 0; c < W; ++c) total[c] += weight[c] * block.k[0][0];
-        else
-            for (int c = 0; c < W; ++c) total[c] += weight[c] * block.k[0][q * W + c];
-    }
+    sum_conductivity(W, block.weight, W, block.k_uniform ? nullptr : block.k[0], block.k[0][0], total);
     const double* TEPOR_RESTRICT gx = block.gradient_x;
     const double* TEPOR_RESTRICT gy = block.gradient_y;
     if (wanted.matrix) {

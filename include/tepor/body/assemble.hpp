@@ -50,9 +50,10 @@ struct Pass {
     /// positive definite where the full derivative is not, because a source grows faster than what carries its heat away.
     bool restoring_only = false;
 
-    double* residual =
-        nullptr; ///< all unknowns, set (not added to); null: not wanted. Heat into the body that T would need [W]
-    SparseMatrix* matrix = nullptr;  ///< lower (and upper when the model has a slope) set; null: not wanted
+    double* residual = nullptr;     ///< all unknowns, set; null: not wanted. Heat into the body that T would need [W]
+    SparseMatrix* matrix = nullptr; ///< lower (and upper when the model has a slope) set; null: not wanted
+    double* diagonal = nullptr; ///< 1D, cells off: what faces and contacts give to the matrix's diagonal, all unknowns
+    bool added = false;         ///< `residual` and `diagonal` are added to, not set
     Accounts* accounts = nullptr;    ///< null: not wanted
     double* content = nullptr;       ///< per region: integral of T over its volume [K m3], set; null: not wanted
     double* content_slope = nullptr; ///< all unknowns: derivative of the sum of `content` by T, added to; may be null

@@ -98,6 +98,14 @@ class Field {
     [[nodiscard]] const std::vector<SolvePass>& passes() const noexcept { return passes_; }
 
     // for the solvers
+    /// Becomes the field of another solve; vectors keep their memory.
+    void begin(std::shared_ptr<const Model> model, const Values& values, double time) {
+        model_ = std::move(model);
+        values_ = values;
+        storage_.clear();
+        passes_.clear();
+        time_ = time;
+    }
     std::vector<double>& temperature() noexcept { return temperature_; }
     std::vector<double>& reaction() noexcept { return reaction_; }
     std::vector<double>& storage() noexcept { return storage_; }

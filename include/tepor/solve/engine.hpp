@@ -14,6 +14,7 @@
 #include <tepor/linear/krylov.hpp>
 #include <tepor/linear/multigrid.hpp>
 #include <tepor/linear/tridiagonal.hpp>
+#include <tepor/solve/line_sweep.hpp>
 #include <vector>
 
 namespace tepor {
@@ -100,10 +101,17 @@ class EnginePool final : public Body::Store {
     /// Gives it back for reuse.
     TEPOR_INLINE void give_back(std::unique_ptr<Engine> engine);
 
+    /// A sweep for a model that is a line; null for others.
+    [[nodiscard]] TEPOR_INLINE std::unique_ptr<LineSweep> borrow_sweep(const std::shared_ptr<const Model>& model);
+    TEPOR_INLINE void give_back(std::unique_ptr<LineSweep> sweep);
+
   private:
     static constexpr std::size_t most = 4;
     std::mutex guard_;
     std::vector<std::unique_ptr<Engine>> idle_; // most recent last
+    std::vector<std::unique_ptr<LineSweep>> idle_sweeps_;
+    std::shared_ptr<const LinePlan> plan_;
+    bool planned_ = false;
 };
 
 } // namespace tepor

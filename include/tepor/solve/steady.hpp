@@ -24,10 +24,14 @@ struct SteadyOptions {
 /// Linear bodies take one solve; where conductivity, films, sources or radiation depend on temperature, Newton's method with
 /// the exact slope and a line search. Converged means: the sum of |r| over the free unknowns is below tolerance times the
 /// gross heat traffic plus what rounding leaves. A factor is kept by the body and used again while no value in the matrix
-/// changes. Safe from many threads on a const Body.
+/// changes; linear bodies of Segment<1> need none and are solved in one sweep. Safe from many threads on a const Body.
 /// @throws Error no_level (nothing sets the temperature level of a part), not_converged (with the history and the worst place),
 ///         singular, outside_table, bad_law, missing (data over time and no instant), and whatever the description gets wrong
 [[nodiscard]] TEPOR_INLINE Field steady(const Body& body, const SteadyOptions& options = {});
+
+/// The same into a field of one's own, whose memory is used again: for loops that solve over and over. `options.from` may be
+/// that field. After an Error the field is empty.
+TEPOR_INLINE void steady(const Body& body, Field& into, const SteadyOptions& options = {});
 
 } // namespace tepor
 

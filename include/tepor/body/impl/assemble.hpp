@@ -59,7 +59,7 @@ class Assembler {
     static constexpr int W = block_width;
 
     void start() {
-        if (pass_.residual)
+        if (pass_.residual && !pass_.added)
             for (Index u = 0; u < model_.unknowns; ++u) pass_.residual[u] = 0.0;
         if (pass_.matrix) {
             for (double& v : pass_.matrix->lower) v = 0.0;
@@ -88,7 +88,9 @@ class Assembler {
     }
 
     [[nodiscard]] bool wants_residual() const { return pass_.residual || pass_.weights; }
-    [[nodiscard]] bool wants_matrix() const { return pass_.matrix || (pass_.weights && pass_.transposed); }
+    [[nodiscard]] bool wants_matrix() const {
+        return pass_.matrix || pass_.diagonal || (pass_.weights && pass_.transposed);
+    }
 
     /// A coefficient on the points of the block into `value` (and `slope`); faults are kept with their cell.
     bool evaluate(const Coefficient& c, const Points& at, double* value, double* slope, const Id* cells, int count) {

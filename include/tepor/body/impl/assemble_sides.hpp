@@ -88,6 +88,7 @@ inline void Assembler::scatter_sides(const SideList& sides, Index first, int cou
             for (int i = 0; i < m; ++i) pass_.residual[ids[i]] += sign * block.residual[i * W + b];
         if (pass_.weights) weigh_side(ids, ids, b, sign);
         if (pass_.matrix) add_side_matrix(sides.side[as_size(first + b)].cell, ids, b);
+        if (pass_.diagonal) pass_.diagonal[ids[0]] += block.matrix[b];
     }
 }
 

@@ -1,7 +1,10 @@
 #pragma once
 // Evaluation of coefficients.
 
+#include <bit>
 #include <cmath>
+#include <cstdint>
+#include <limits>
 #include <tepor/base/text.hpp>
 #include <tepor/body/coefficient.hpp>
 
@@ -208,17 +211,27 @@ TEPOR_INLINE Fault Coefficient::evaluate(const double* slot_values, TimeSpan tim
 }
 
 TEPOR_INLINE Fault Coefficient::check(const Points& points, TimeSpan time, const double* value) const noexcept {
-    // one pass without branches or long chains tells whether a closer look is needed
-    unsigned strange = 0;
-    if (range_ == Range::any)
-        for (Index i = 0; i < points.count; ++i) strange |= static_cast<unsigned>(!(value[i] - value[i] == 0.0));
-    else if (range_ == Range::fraction || range_ == Range::celsius_temperature)
-        strange = 1;
-    else
-        for (Index i = 0; i < points.count; ++i)
-            strange |=
-                static_cast<unsigned>(!(value[i] > 0.0)) | static_cast<unsigned>(!(value[i] <= 1.7976931348623157e308));
-    if (strange == 0) return {};
+    // One pass over the bits tells whether a closer look is needed, and vectorises where comparisons of doubles do not: the top
+    // bit is the sign, one more in the exponent carries into it when the value is infinite or no number, and the bits of
+    // zero less one have it.
+    static_assert(std::numeric_limits<double>::is_iec559);
+    constexpr std::uint64_t top = std::uint64_t{1} << 63U;
+    constexpr std::uint64_t one_exponent = std::uint64_t{1} << 52U;
+    const auto bits = [value](Index i) { return std::bit_cast<std::uint64_t>(value[i]); };
+    std::uint64_t strange = 0;
+    switch (range_) {
+    case Range::any:
+        for (Index i = 0; i < points.count; ++i) strange |= (bits(i) & ~top) + one_exponent;
+        break;
+    case Range::positive:
+        for (Index i = 0; i < points.count; ++i) strange |= bits(i) | (bits(i) + one_exponent) | (bits(i) - 1);
+        break;
+    case Range::not_negative:
+        for (Index i = 0; i < points.count; ++i) strange |= bits(i) | (bits(i) + one_exponent);
+        break;
+    default: strange = top;
+    }
+    if ((strange & top) == 0) return {};
     for (Index i = 0; i < points.count; ++i) {
         if (allows(value[i])) continue;
         Fault fault;

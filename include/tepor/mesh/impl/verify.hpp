@@ -105,7 +105,7 @@ TEPOR_INLINE MeshReport verify_nodes(const MeshData& mesh, double size) {
     const double width = 1e-12 * size;
     const double reach = 0.05 * width;
     std::size_t slots = 16;
-    while (slots < 3 * mesh.nodes.size()) slots *= 2;
+    while (slots < 8 * mesh.nodes.size()) slots *= 2; // up to four entries a node, and half of the slots stay free
     std::vector<Id> table(slots, -1);
     for (Index n = 0; n < mesh.node_count(); ++n) {
         const Point p = mesh.nodes[as_size(n)];

@@ -201,4 +201,21 @@ TEPOR_INLINE void EnginePool::give_back(std::unique_ptr<Engine> engine) {
     if (idle_.size() < most) idle_.push_back(std::move(engine));
 }
 
+TEPOR_INLINE std::unique_ptr<LineSweep> EnginePool::borrow_sweep(const std::shared_ptr<const Model>& model) {
+    if (model->mesh->dim != 1) return nullptr;
+    const std::lock_guard<std::mutex> lock(guard_);
+    if (!planned_) plan_ = plan_line(*model);
+    planned_ = true;
+    if (!plan_) return nullptr;
+    if (idle_sweeps_.empty()) return std::make_unique<LineSweep>(model, plan_);
+    std::unique_ptr<LineSweep> found = std::move(idle_sweeps_.back());
+    idle_sweeps_.pop_back();
+    return found;
+}
+
+TEPOR_INLINE void EnginePool::give_back(std::unique_ptr<LineSweep> sweep) {
+    const std::lock_guard<std::mutex> lock(guard_);
+    if (idle_sweeps_.size() < most) idle_sweeps_.push_back(std::move(sweep));
+}
+
 } // namespace tepor

@@ -198,44 +198,96 @@ inline void validate(const SteadyOptions& options) {
 
 } // namespace detail
 
-TEPOR_INLINE Field steady(const Body& body, const SteadyOptions& options) {
-    detail::validate(options);
-    const std::shared_ptr<const Model> model = body.model();
+namespace detail {
+
+/// Solves a body that is a line by a sweep; false when it is none, or when the plain way has to tell what is wrong.
+inline bool steady_sweep(const std::shared_ptr<const Model>& model, EnginePool& pool, const SteadyOptions& options,
+                         Field& into) {
+    std::unique_ptr<LineSweep> sweep = pool.borrow_sweep(model);
+    if (!sweep) return false;
+    const TimeSpan at = instant(options);
+    LineSweep::Report report;
+    Pass faces;
+    std::vector<double>& T = into.temperature();
+    bool fine = sweep->run(into.values(), at, T.data(), into.reaction().data(), report);
+    if (fine) {
+        faces.T = T.data();
+        faces.time = at;
+        faces.cells = false;
+        assemble(*model, into.values(), sweep->work(), faces);
+        faces.source_traffic = report.source_traffic;
+        const double limit = options.tolerance * gross_traffic(*model, faces, into.reaction().data()) + report.rounding;
+        into.passes().push_back({report.given, limit, report.hottest, 1.0});
+        into.passes().push_back({report.residual, limit, 0.0, 1.0});
+        fine = !faces.fault && report.residual <= limit;
+    }
+    pool.give_back(std::move(sweep));
+    if (!fine) into.passes().clear();
+    return fine;
+}
+
+/// The plain way: a matrix, a factor, and Newton's method where it is needed.
+inline void steady_solve(const std::shared_ptr<const Model>& model, EnginePool& pool, const SteadyOptions& options,
+                         Field& into) {
+    std::vector<double>& T = into.temperature();
+    const std::vector<double> key = matrix_key(*model, into.values());
+    std::unique_ptr<Engine> engine = pool.borrow(model, key);
+    const bool factored = !model->nonlinear && engine->key == key;
+    engine->key.clear();
+    SteadySolve solve(*engine, into.values(), options);
+    solve.run(T.data(), factored);
+    check_tables(*model, into.values(), engine->work, T.data());
+    into.reaction() = engine->residual;
+    into.passes() = solve.take_history();
+    if (!model->nonlinear) engine->key = key;
+    pool.give_back(std::move(engine));
+}
+
+inline void steady_into(const Body& body, const SteadyOptions& options, Field& into) {
+    validate(options);
+    const std::shared_ptr<const Model>& model = body.model();
     if (model->scheduled && !options.time)
         throw Error(
             ErrorCode::missing, "time",
             "steady: the data of this body change with time (a schedule or of_time); say at which instant the steady "
             "state is asked for with SteadyOptions{.time = ...}, or march");
-    Values values = body.values();
-    detail::require_level(*model, values);
-    std::vector<double> T(detail::as_size(model->unknowns));
-    if (options.from) {
-        if (options.from->temperature().size() != T.size())
-            throw Error(
-                ErrorCode::bad_value, "from",
-                "SteadyOptions: the field to start from belongs to another mesh; start from a field of this body");
+    const TimeSpan at = instant(options);
+    if (options.from && options.from->temperature().size() != as_size(model->unknowns))
+        throw Error(ErrorCode::bad_value, "from",
+                    "SteadyOptions: the field to start from belongs to another mesh; start from a field of this body");
+    into.begin(model, body.values(), at.to);
+    const Values& values = into.values();
+    require_level(*model, values);
+    std::vector<double>& T = into.temperature();
+    T.resize(as_size(model->unknowns));
+    into.reaction().resize(as_size(model->unknowns));
+    const std::shared_ptr<EnginePool> pool = body.shared_kept<EnginePool>();
+    into.keep(pool);
+    model->prescribe(values, at, T.data());
+    if (steady_sweep(model, *pool, options, into)) return;
+    if (options.from && options.from != &into)
         T = options.from->temperature();
-    } else {
-        const double start =
-            options.start ? *options.start : detail::start_temperature(*model, values, detail::instant(options));
-        std::fill(T.begin(), T.end(), start);
-    }
-    model->prescribe(values, detail::instant(options), T.data());
+    else if (!options.from || !model->nonlinear) // a sweep has left nothing to start from
+        std::fill(T.begin(), T.end(), options.start ? *options.start : start_temperature(*model, values, at));
+    model->prescribe(values, at, T.data());
+    steady_solve(model, *pool, options, into);
+}
 
-    EnginePool& pool = body.kept<EnginePool>();
-    const std::vector<double> key = matrix_key(*model, values);
-    std::unique_ptr<Engine> engine = pool.borrow(model, key);
-    const bool factored = !model->nonlinear && engine->key == key;
-    engine->key.clear();
-    detail::SteadySolve solve(*engine, values, options);
-    solve.run(T.data(), factored);
-    detail::check_tables(*model, values, engine->work, T.data());
-    Field field(model, std::move(values), std::move(T), engine->residual, detail::instant(options).to);
-    field.passes() = solve.take_history();
-    field.keep(body.shared_kept<EnginePool>());
-    if (!model->nonlinear) engine->key = key;
-    pool.give_back(std::move(engine));
+} // namespace detail
+
+TEPOR_INLINE Field steady(const Body& body, const SteadyOptions& options) {
+    Field field;
+    detail::steady_into(body, options, field);
     return field;
+}
+
+TEPOR_INLINE void steady(const Body& body, Field& into, const SteadyOptions& options) {
+    try {
+        detail::steady_into(body, options, into);
+    } catch (...) {
+        into = Field{};
+        throw;
+    }
 }
 
 } // namespace tepor
