@@ -49,8 +49,9 @@ class March {
     /// Highest value of a quantity from now on, at step ends (Adaptive: along the parabola of each step).
     [[nodiscard]] TEPOR_INLINE Peak peak(const Quantity& quantity);
 
-    /// Keeps every state from now on, for gradient(march, ...): 8 bytes per unknown and substep, twice that with Adaptive, up to
-    /// `megabytes` in all (states that do not fit are given up, and gradient says so). A recording loop allocates.
+    /// Keeps the states from now on, for gradient(march, ...): 8 bytes per unknown and substep, twice that with Adaptive, up to
+    /// `megabytes` in all. When they no longer fit, every second state stays, then every fourth and so on, and the gradient goes
+    /// through the steps between again; n states of memory are enough for n^2 / 4 substeps. A recording loop allocates.
     /// @throws Error bad_value
     TEPOR_INLINE void record(double megabytes = 1024.0);
 

@@ -52,14 +52,14 @@ class MarchFitModel final : public FitModel {
         y.assign(readings_.size(), 0.0);
         slope.assign(readings_.size() * m, 0.0);
         std::vector<double> here(m);
-        MarchForward forward(march->shared_model(), tape, march->capacity(), slots_);
+        MarchForward forward(*march, slots_);
         const double begin = tape.legs.front().from;
         forward.run([&](Index leg) {
             const double t = leg < 0 ? begin : tape.legs[as_size(leg)].to;
             const double before = leg < 0 ? t : tape.legs[as_size(leg)].from;
             const double after =
                 static_cast<std::size_t>(leg + 1) < tape.legs.size() ? tape.legs[as_size(leg + 1)].to : t;
-            const std::vector<double>& T = leg < 0 ? tape.start : tape.legs[as_size(leg)].T;
+            const std::vector<double>& T = leg < 0 ? tape.start.T : tape.kept[as_size(leg)].T;
             for (std::size_t i = 0; i < readings_.size(); ++i) {
                 // weight of this instant on the straight lines between step ends
                 const double at = readings_[i].time;

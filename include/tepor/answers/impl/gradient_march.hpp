@@ -17,14 +17,14 @@ inline const MarchTape& recorded(const March& march) {
                     "gradient: the march has not been recorded; say march.record() before the run");
     if (tape->full)
         throw Error(ErrorCode::too_large, "record",
-                    text("gradient: the states need more than the ", tape->most_bytes / 1048576,
+                    text("gradient: not even checkpoints of the run fit the ", static_cast<double>(tape->most_bytes) / 1048576.0,
                          " MB stated in march.record(); state more, or take fewer steps"));
     return *tape;
 }
 
 inline Gradient gradient_to(const March& march, const Quantity& quantity, std::size_t leg) {
-    const MarchTape& tape = recorded(march);
-    MarchAdjoint adjoint(march.shared_model(), tape, march.capacity(), quantity);
+    (void)recorded(march);
+    MarchAdjoint adjoint(march, quantity);
     const double value = adjoint.run_to(leg);
     return finish_gradient(quantity, value, *march.shared_model(), adjoint.values(), adjoint.sums());
 }
@@ -47,28 +47,20 @@ TEPOR_INLINE Gradient gradient(const March& march, const Quantity& quantity, dou
 }
 
 TEPOR_INLINE Gradient gradient_of_integral(const March& march, const Quantity& quantity) {
-    const detail::MarchTape& tape = detail::recorded(march);
-    detail::MarchAdjoint adjoint(march.shared_model(), tape, march.capacity(), quantity);
+    (void)detail::recorded(march);
+    detail::MarchAdjoint adjoint(march, quantity);
     const double value = adjoint.run_integral();
     return detail::finish_gradient(quantity, value, *march.shared_model(), adjoint.values(), adjoint.sums());
 }
 
 TEPOR_INLINE PeakGradient gradient_of_peak(const March& march, const Quantity& quantity) {
     const detail::MarchTape& tape = detail::recorded(march);
-    const Model& model = *march.shared_model();
-    Workspace work = model.kernels->workspace();
+    detail::MarchAdjoint adjoint(march, quantity);
     std::size_t best = 0;
     double highest = -HUGE_VAL;
     double second = -HUGE_VAL;
     for (std::size_t i = 0; i < tape.legs.size(); ++i) {
-        const detail::MarchTape::Leg& leg = tape.legs[i];
-        const Values& values = tape.values[leg.values];
-        const Functional f = compile(model, values, quantity);
-        if (!f.reaction.unknown.empty())
-            throw Error(ErrorCode::not_supported, quantity.label(),
-                        detail::text("gradient: ", quantity.label(),
-                                     " at an instant of a march holds a rate of change; ask gradient_of_integral"));
-        const double value = evaluate(f, model, values, work, leg.T.data(), nullptr, {leg.to, leg.to, 1.0});
+        const double value = adjoint.value_at(i);
         if (value > highest) {
             second = highest;
             highest = value;

@@ -8,9 +8,8 @@ namespace tepor::detail {
 
 class MarchForward : public MarchReplay {
   public:
-    MarchForward(std::shared_ptr<const Model> model, const MarchTape& tape, Capacity capacity, std::vector<Id> slots)
-        : MarchReplay(std::move(model), tape, capacity), slots_(std::move(slots)),
-          S_(slots_.size(), std::vector<double>(all_, 0.0)) {}
+    MarchForward(const March& march, std::vector<Id> slots)
+        : MarchReplay(march), slots_(std::move(slots)), S_(slots_.size(), std::vector<double>(all_, 0.0)) {}
 
     /// Runs over all legs; `visit(leg)` after each, with sensitivities at its end in S(). Leg -1 is the start.
     template <class Visit>
@@ -18,7 +17,7 @@ class MarchForward : public MarchReplay {
         use(tape_.legs.front().values);
         visit(Index{-1});
         for (std::size_t i = 0; i < tape_.legs.size(); ++i) {
-            advance(tape_.legs[i], i > 0 ? tape_.legs[i - 1].T : tape_.start);
+            advance(tape_.legs[i], states_.start_of(i).T, states_.end_of(i).T);
             visit(static_cast<Index>(i));
         }
     }
@@ -40,17 +39,17 @@ class MarchForward : public MarchReplay {
     }
 
   private:
-    void advance(const MarchTape::Leg& leg, const std::vector<double>& T0) {
+    void advance(const MarchTape::Leg& leg, const std::vector<double>& T0, const std::vector<double>& T1) {
         use(leg.values);
-        const double dt = leg.to - leg.from;
+        const double dt = leg.dt;
         const double theta = leg.theta;
         std::vector<double> from = T0;
         prescribed(leg.from, false, from);
         LegPoint at{std::vector<double>(all_), {leg.from, leg.to, theta}, dt};
         std::vector<double> rise(all_);
         for (std::size_t u = 0; u < all_; ++u) {
-            at.T[u] = theta * leg.T[u] + (1.0 - theta) * from[u];
-            rise[u] = leg.T[u] - T0[u];
+            at.T[u] = theta * T1[u] + (1.0 - theta) * from[u];
+            rise[u] = T1[u] - T0[u];
         }
         std::vector<double> by_r(all_);
         std::vector<double> by_M(all_);
@@ -60,6 +59,7 @@ class MarchForward : public MarchReplay {
         std::vector<double> held_to(all_, 0.0);
         std::vector<double> b(all_);
         std::vector<double> product(all_);
+        Engine* engine = nullptr;
         for (std::size_t j = 0; j < slots_.size(); ++j) {
             residual_by_slot(*model_, values(), work_, at.T.data(), at.span, slots_[j], by_r.data());
             capacity_by_slot(*model_, values(), work_, rise.data(), slots_[j], storage_->lumped_share(), by_M.data());
@@ -73,24 +73,24 @@ class MarchForward : public MarchReplay {
                 grown[u] = late - S_[j][u];
                 seen[u] = theta * late + (1.0 - theta) * early;
             }
-            if (!constant_) assemble_K(at.T.data(), at.span);
+            if (!linear_ && j == 0) assemble_K(at.T.data(), at.span);
             multiply(K_, model_->unknowns, seen.data(), product.data());
             storage_->multiply(grown.data(), b.data());
             for (std::size_t u = 0; u < all_; ++u) b[u] += by_M[u] + dt * (by_r[u] + product[u]);
-            if (j == 0 || constant_) factor(at, theta * dt);
-            solve_factored(b);
+            if (j == 0) engine = &factor(at, theta * dt, HeatSlope{});
+            solve_factored(*engine, b);
             for (std::size_t u = 0; u < all_; ++u) S_[j][u] = as_id(u) < model_->free ? S_[j][u] + b[u] : held_to[u];
         }
     }
 
     /// b := -A^-1 b on the free unknowns with the factor in hand.
-    void solve_factored(std::vector<double>& b) {
+    void solve_factored(Engine& engine, std::vector<double>& b) const {
         double size = 0.0;
         for (std::size_t u = 0; u < all_; ++u) {
             b[u] = as_id(u) < model_->free ? -b[u] : 0.0;
             size += std::abs(b[u]);
         }
-        if (size > 0.0 && !engine_.solve(b.data(), 1e-13 * size))
+        if (size > 0.0 && !engine.solve(b.data(), 1e-13 * size))
             throw Error(ErrorCode::not_converged, "", "fit: a linear solve stalled");
     }
 

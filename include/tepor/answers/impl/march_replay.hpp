@@ -1,13 +1,13 @@
 #pragma once
-// A recorded march gone through again: values, matrices and factors of its legs.
+// A recorded march gone through for derivatives: values, matrices, slopes of the stored heat and factors of its legs.
 
 #include <cmath>
 #include <memory>
+#include <tepor/answers/impl/march_states.hpp>
 #include <tepor/base/text.hpp>
 #include <tepor/body/residual_slope.hpp>
 #include <tepor/solve/capacity.hpp>
 #include <tepor/solve/engine.hpp>
-#include <tepor/solve/tape.hpp>
 
 namespace tepor::detail {
 
@@ -18,12 +18,23 @@ struct LegPoint {
     double weight = 0.0;
 };
 
+/// Slope of the heat content at a state, where it depends on temperature. A node that is held at a melting temperature without
+/// width has its molten heat for an unknown in place of its temperature.
+struct HeatSlope {
+    SparseMatrix C;
+    std::vector<unsigned char> held; ///< all unknowns; empty: none
+    [[nodiscard]] bool holds(std::size_t u) const noexcept { return !held.empty() && held[u] != 0; }
+};
+
 class MarchReplay {
   public:
-    MarchReplay(std::shared_ptr<const Model> model, const MarchTape& tape, Capacity capacity)
-        : model_(std::move(model)), tape_(tape), capacity_(capacity), all_(as_size(model_->unknowns)),
-          work_(model_->kernels->workspace()), engine_(model_) {
+    explicit MarchReplay(const March& march)
+        : model_(march.shared_model()), states_(march), tape_(states_.tape()), linear_(states_.marcher().linear()),
+          all_(as_size(model_->unknowns)), work_(model_->kernels->workspace()) {
         prepare_matrix(*model_, K_);
+        group_of_.reserve(tape_.values.size());
+        for (std::size_t v = 0; v < tape_.values.size(); ++v)
+            group_of_.push_back(v > 0 && same_matrices(v - 1, v) ? group_of_.back() : v);
     }
     MarchReplay(const MarchReplay&) = delete;
     MarchReplay& operator=(const MarchReplay&) = delete;
@@ -32,27 +43,25 @@ class MarchReplay {
     [[nodiscard]] const Values& values() const { return tape_.values[now_]; }
 
   protected:
-    /// Called when a leg has other values than the one before.
-    virtual void values_changed() {}
+    /// Called when a leg has other values than the one before; `matrices`: in a matrix, too.
+    virtual void values_changed(bool matrices) { (void)matrices; }
+    /// Called before matrices change.
+    virtual void leave_group() {}
 
     /// Values of a leg: capacity and, where nothing depends on temperature or time, K.
     void use(std::size_t which) {
         if (ready_ && which == now_) return;
+        const bool other = !ready_ || group_of_[which] != group_of_[now_];
+        if (ready_ && other) leave_group();
         now_ = which;
         ready_ = true;
-        storage_ = std::make_unique<Storage>(model_, values(), capacity_, work_);
-        if (!storage_->latent().empty())
-            throw Error(ErrorCode::not_supported, "latent heat",
-                        "gradient: a march with latent heat has kinks at its nodes; derivatives are not offered");
-        if (!storage_->linear())
-            throw Error(
-                ErrorCode::not_supported, "specific heat",
-                "gradient: a density or specific heat that depends on temperature is not offered in marches yet; give "
-                "numbers, Parameters or laws of place");
-        constant_ = !model_->nonlinear && !model_->time_dependent;
-        shift_ = -1.0;
-        if (constant_) assemble_K(tape_.start.data(), {});
-        values_changed();
+        if (other) {
+            storage_ = std::make_unique<Storage>(model_, values(), states_.marcher().scheme.capacity, work_);
+            for (const LatentNode& node : storage_->latent()) refuse_moving_melting_point(node);
+            lanes_.clear();
+            if (linear_) assemble_K(tape_.start.T.data(), {});
+        }
+        values_changed(other);
     }
 
     void assemble_K(const double* T, TimeSpan span) {
@@ -64,30 +73,84 @@ class MarchReplay {
         if (pass.fault) raise(pass.fault);
     }
 
-    /// b := -(M + a K(at))^-1 b (or its transpose) on the free unknowns, 0 on the rest.
-    void solve_leg(const LegPoint& at, double a, std::vector<double>& b, bool transposed) {
-        factor(at, a);
+    /// Slope of the heat content at T; nothing to do where it is constant.
+    void slope_of_heat(const std::vector<double>& T, HeatSlope& slope) {
+        if (storage_->linear()) return;
+        if (slope.C.lower.empty()) prepare_matrix(*model_, slope.C);
+        std::fill(slope.C.lower.begin(), slope.C.lower.end(), 0.0);
+        std::fill(slope.C.upper.begin(), slope.C.upper.end(), 0.0);
+        nothing_.assign(all_, 0.0);
+        if (const Fault fault =
+                storage_->rise(values(), work_, T.data(), T.data(), nothing_.data(), &slope.C, nullptr))
+            raise(fault);
+        slope.held.assign(storage_->latent().empty() ? 0 : all_, 0);
+        for (const LatentNode& node : storage_->latent()) {
+            const auto u = as_size(node.unknown);
+            const double width = node.liquidus - node.solidus;
+            if (!(width > 0.0)) {
+                if (T[u] == node.solidus && node.unknown < model_->free) slope.held[u] = 1;
+            } else if (T[u] > node.solidus && T[u] < node.liquidus) {
+                const auto diagonal = as_size(slope.C.start[u + 1] - 1);
+                slope.C.lower[diagonal] += node.full / width;
+                if (!slope.C.upper.empty()) slope.C.upper[diagonal] += node.full / width;
+            }
+        }
+    }
+    void through_heat(const HeatSlope& slope, const double* x, double* y) const {
+        if (storage_->linear())
+            storage_->multiply(x, y);
+        else
+            multiply(slope.C, model_->unknowns, x, y);
+    }
+
+    /// b := -(C + a K(at))^-1 b (or its transpose) on the free unknowns, 0 on the rest; held unknowns take -b themselves.
+    void solve_leg(const LegPoint& at, double a, const HeatSlope& heat, std::vector<double>& b, bool transposed) {
+        Engine& engine = factor(at, a, heat);
         double size = 0.0;
         for (std::size_t u = 0; u < all_; ++u) {
             b[u] = as_id(u) < model_->free ? -b[u] : 0.0;
             size += std::abs(b[u]);
+            if (heat.holds(u)) b[u] *= holding_[u];
         }
         if (size == 0.0) return;
         const double limit = 1e-13 * size;
-        if (!(transposed ? engine_.solve_transposed(b.data(), limit) : engine_.solve(b.data(), limit)))
+        if (!(transposed ? engine.solve_transposed(b.data(), limit) : engine.solve(b.data(), limit)))
             throw Error(ErrorCode::not_converged, "", "gradient: a linear solve stalled");
     }
 
-    /// Factors M + a K(at), unless that is what is factored.
-    void factor(const LegPoint& at, double a) {
-        if (constant_ && shift_ == a) return;
-        if (!constant_) assemble_K(at.T.data(), at.span);
-        for (std::size_t e = 0; e < K_.lower.size(); ++e) engine_.matrix.lower[e] = a * K_.lower[e];
-        for (std::size_t e = 0; e < K_.upper.size(); ++e) engine_.matrix.upper[e] = a * K_.upper[e];
-        storage_->add_to(engine_.matrix);
-        if (!engine_.factor(Purpose::many_solves))
+    /// C + a K(at) factored; a linear run keeps its factors, those of the march itself included.
+    Engine& factor(const LegPoint& at, double a, const HeatSlope& heat) {
+        if (linear_) {
+            for (const Lane& lane : lanes_)
+                if (std::abs(lane.a - a) <= 1e-12 * a) return *lane.engine;
+            if (Engine* lent = states_.marcher().factored(a, values())) {
+                lanes_.push_back({a, lent, nullptr});
+                return *lent;
+            }
+        } else {
+            assemble_K(at.T.data(), at.span);
+            lanes_.clear();
+        }
+        std::unique_ptr<Engine> engine = spare_ ? std::move(spare_) : std::make_unique<Engine>(model_);
+        for (std::size_t e = 0; e < K_.lower.size(); ++e) engine->matrix.lower[e] = a * K_.lower[e];
+        for (std::size_t e = 0; e < K_.upper.size(); ++e) engine->matrix.upper[e] = a * K_.upper[e];
+        if (storage_->linear()) {
+            storage_->add_to(engine->matrix);
+        } else {
+            for (std::size_t e = 0; e < heat.C.lower.size(); ++e) engine->matrix.lower[e] += heat.C.lower[e];
+            for (std::size_t e = 0; e < heat.C.upper.size(); ++e) engine->matrix.upper[e] += heat.C.upper[e];
+            hold(heat, engine->matrix);
+        }
+        if (!engine->factor(linear_ ? Purpose::many_solves : Purpose::one_solve))
             throw Error(ErrorCode::singular, "", "gradient: a step of the march has no inverse");
-        shift_ = a;
+        constexpr std::size_t most = 8;
+        if (lanes_.size() == most) lanes_.erase(lanes_.begin());
+        Engine* raw = engine.get();
+        if (linear_)
+            lanes_.push_back({a, raw, std::move(engine)});
+        else
+            spare_ = std::move(engine);
+        return *raw;
     }
 
     void prescribed(double at, bool before, std::vector<double>& T) const {
@@ -95,15 +158,58 @@ class MarchReplay {
     }
 
     std::shared_ptr<const Model> model_;
+    MarchStates states_;
     const MarchTape& tape_;
-    Capacity capacity_;
+    bool linear_; ///< matrices change with the values alone
     std::size_t all_;
     Workspace work_;
-    Engine engine_;
     std::unique_ptr<Storage> storage_;
     SparseMatrix K_;
-    double shift_ = -1.0;
-    bool constant_ = false;
+    std::vector<std::size_t> group_of_; ///< per values: the first of those before it with the same matrices
+
+  private:
+    struct Lane {
+        double a;
+        Engine* engine;
+        std::unique_ptr<Engine> own;
+    };
+
+    [[nodiscard]] bool same_matrices(std::size_t a, std::size_t b) const {
+        for (std::size_t s = 0; s < model_->roles.size(); ++s) {
+            const SlotRole& role = model_->roles[s];
+            if ((role.matrix || role.capacity || role.place) && tape_.values[a].slots[s] != tape_.values[b].slots[s])
+                return false;
+        }
+        return true;
+    }
+
+    /// A weight that outdoes everything else in the row of a held unknown.
+    void hold(const HeatSlope& heat, SparseMatrix& matrix) {
+        holding_.assign(heat.held.size(), 0.0);
+        for (std::size_t u = 0; u < heat.held.size(); ++u) {
+            if (heat.held[u] == 0) continue;
+            const auto diagonal = as_size(matrix.start[u + 1] - 1);
+            holding_[u] = 1e15 * matrix.lower[diagonal];
+            matrix.lower[diagonal] += holding_[u];
+            if (!matrix.upper.empty()) matrix.upper[diagonal] += holding_[u];
+        }
+    }
+
+    void refuse_moving_melting_point(const LatentNode& node) const {
+        const RegionModel& region = model_->regions[as_size(node.region)];
+        if (node.liquidus > node.solidus) return;
+        for (const Coefficient* c : {&region.solidus, &region.liquidus})
+            if (c->value().kind() == Value::Kind::parameter)
+                throw Error(ErrorCode::not_supported, region.name,
+                            text("gradient: the ", c->label(),
+                                 " is a Parameter, and the material melts at one temperature, where the march has a kink; "
+                                 "give numbers, or a solidus below the liquidus"));
+    }
+
+    std::vector<Lane> lanes_;
+    std::unique_ptr<Engine> spare_;
+    std::vector<double> holding_;
+    std::vector<double> nothing_;
     bool ready_ = false;
     std::size_t now_ = 0;
 };

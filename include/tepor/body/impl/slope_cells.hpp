@@ -202,7 +202,6 @@ class CellSlopes : public SlopeCollector {
         move_cells(cells, 1);
     }
 
-  private:
     /// Weights, their gradient and that of the temperature at the points.
     void at_points(const double* TEPOR_RESTRICT l) {
         const CellBlock& block = work_.cells;

@@ -2,6 +2,7 @@
 // Derivatives of quantities by slots and places at fixed temperature.
 
 #include <cmath>
+#include <tepor/base/text.hpp>
 #include <tepor/body/gather.hpp>
 #include <tepor/body/side_tangent.hpp>
 #include <tepor/field/functional_slope.hpp>
@@ -27,6 +28,7 @@ class FunctionalSlope {
             contract_slopes(model_, values_, work_, {T_, weights.data(), time_, &heat.part, factor_}, sums_);
         }
         for (const Functional::EdgeFlux& edge : functional_.edges) edge_flux_slope(edge);
+        if (quantity_.kind() == Kind::stored_in) return stored();
         if (kernel_.exact && (!functional_.inner.empty() || !functional_.contents.empty() || functional_.extreme))
             return inner_by_differences();
         if (sums_.places.empty()) return;
@@ -57,6 +59,20 @@ class FunctionalSlope {
 
   private:
     static constexpr int W = block_width;
+
+    /// Density, specific heat and the region's shape.
+    void stored() {
+        const Index r = model_.mesh->find_region(quantity_.first());
+        const Enthalpy enthalpy(model_.regions[as_size(r)], values_);
+        if (enthalpy.latent())
+            throw Error(ErrorCode::not_supported, quantity_.label(),
+                        text(quantity_.label(), " is in part latent, which has kinks; derivatives are offered of the heat that "
+                                                "enters in its place"));
+        const std::vector<double> cold(as_size(model_.unknowns), 0.0);
+        const std::vector<double> weights(cold.size(), factor_);
+        const double lumped = enthalpy.constant() || kernel_.order > 1 ? 0.0 : 1.0;
+        contract_enthalpy(model_, values_, work_, cold.data(), T_, weights.data(), lumped, sums_, as_id(r));
+    }
 
     void give(Id unknown, double x, double y) {
         Point& sum = sums_.places[as_size(unknown)];

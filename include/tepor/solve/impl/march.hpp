@@ -8,6 +8,7 @@
 #include <tepor/solve/impl/marcher_books.hpp>
 #include <tepor/solve/impl/marcher_minimum.hpp>
 #include <tepor/solve/impl/marcher_newton.hpp>
+#include <tepor/solve/impl/marcher_repeat.hpp>
 #include <tepor/solve/impl/marcher_run.hpp>
 #include <tepor/solve/impl/marcher_setup.hpp>
 #include <tepor/solve/impl/marcher_state.hpp>

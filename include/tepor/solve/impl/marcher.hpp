@@ -43,7 +43,9 @@ struct Ledger {
 
 class Marcher {
   public:
-    Marcher(const Body& body, const Initial& start, const Scheme& scheme);
+    Marcher(const Body& body, const Initial& start, const Scheme& options)
+        : Marcher(body.model(), body.values(), start, options) {}
+    Marcher(std::shared_ptr<const Model> of, const Values& with, const Initial& start, const Scheme& options);
 
     // ---- handles
     Index watch(const Quantity& quantity);
@@ -99,9 +101,15 @@ class Marcher {
     std::unique_ptr<MarchTape> tape; ///< states of the run, when they are recorded
     void record(double megabytes) {
         tape = std::make_unique<MarchTape>();
-        tape->start = T_;
+        tape->start = {T_, molten_, {}, {}};
         tape->most_bytes = static_cast<std::size_t>(megabytes * 1048576.0);
     }
+    /// Goes through a recorded leg again from the state at its start; `end` receives the state at its end, as it was.
+    void repeat(const MarchTape::Leg& leg, const Values& with, const MarchTape::State& start, MarchTape::State& end);
+    /// The factor of M + a K that the march holds; null when it has none, or was driven away from these values.
+    [[nodiscard]] Engine* factored(double a, const Values& with) noexcept;
+    /// Nothing depends on temperature and no matrix on time.
+    [[nodiscard]] bool linear() const noexcept { return linear_; }
     struct Summed {
         Index reading = 0;
         double sum = 0.0;
@@ -161,6 +169,7 @@ class Marcher {
     // values
     void remake_storage();
     Verdict take_inputs();
+    void remade(bool capacity);
     [[nodiscard]] bool prescribe_ends(TimeSpan from, TimeSpan to);
     [[nodiscard]] double next_event(double after) const noexcept;
     [[nodiscard]] bool jumps_at(double event) const noexcept;
@@ -260,7 +269,8 @@ class Marcher {
     bool slope_fresh_ = false; ///< factored_ belongs to the present values
     Id singular_ = -1;
     std::unique_ptr<Engine> rate_engine_;
-    std::vector<double> molten_, start_molten_, piece_molten_, try_molten_; ///< latent heat held by each LatentNode [J]
+    /// Latent heat held by each LatentNode [J].
+    std::vector<double> molten_, start_molten_, piece_molten_, try_molten_, stage_molten_;
     std::vector<double> latent_slope_, capacity_;
     std::vector<double> r0_, rg_, r1_, stage_T_, explicit_;
     double minimum_leg_ = 0.0; ///< implicit share of the smallest sensible step [s]

@@ -42,7 +42,7 @@ TEPOR_INLINE Verdict Marcher::advance_adaptive(double end) noexcept {
             verdict = tr_bdf2(to, dt, error);
             const bool fine = verdict == Verdict::ok && error <= scheme.error;
             if (fine) {
-                if (tape) tape->add({time, to, 1.0, true, 0, T_, stage_T_}, values);
+                if (tape) tape->add({time, to, dt, 1.0, true, 0}, {T_, molten_, stage_T_, stage_molten_}, values);
                 time = to;
                 last_step = dt;
                 least_leg_ = tr_bdf2_numbers::implicit * dt;
@@ -141,6 +141,7 @@ TEPOR_INLINE Verdict Marcher::tr_bdf2(double end, double dt, double& error) {
     Verdict verdict = adaptive_stage(scale, second, explicit_.data());
     if (verdict != Verdict::ok) return verdict;
     stage_T_ = T_;
+    stage_molten_ = molten_;
     if (!residual_at(stage_T_.data(), second, rg_.data())) return Verdict::bad_law;
     for (std::size_t u = 0; u < all; ++u) explicit_[u] = dt * weight * (r0_[u] + rg_[u]);
     if (!prescribe_stage(first, third)) return Verdict::bad_law;

@@ -27,9 +27,9 @@ void for_each_in_matrix(const Model& model, const Visit& visit) {
     for (const ContactModel& contact : model.contacts) visit(contact.amount);
 }
 
-TEPOR_INLINE Marcher::Marcher(const Body& body, const Initial& start, const Scheme& options)
-    : time(start.time()), values(body.values()), model(body.model()), scheme(options),
-      work_(model->kernels->workspace()) {
+TEPOR_INLINE Marcher::Marcher(std::shared_ptr<const Model> of, const Values& with, const Initial& start,
+                              const Scheme& options)
+    : time(start.time()), values(with), model(std::move(of)), scheme(options), work_(model->kernels->workspace()) {
     const std::size_t n = as_size(model->unknowns);
     storage_ = std::make_unique<Storage>(model, values, scheme.capacity, work_);
     linear_ = !model->nonlinear && storage_->linear() && !matrix_depends_on_time();
@@ -243,14 +243,18 @@ TEPOR_INLINE Verdict Marcher::take_inputs() {
         instant_fresh_ = false;
         slope_fresh_ = false;
     }
-    if (!remake) return Verdict::ok;
+    if (remake) remade(capacity);
+    return Verdict::ok;
+}
+
+/// A value in a matrix has changed.
+TEPOR_INLINE void Marcher::remade(bool capacity) {
     if (capacity) remake_storage();
     if (linear_) {
         loads_->rebuild(values, work_);
         prepare_linear();
     }
     measure_minimum();
-    return Verdict::ok;
 }
 
 } // namespace tepor::detail

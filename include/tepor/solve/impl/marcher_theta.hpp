@@ -118,7 +118,7 @@ TEPOR_INLINE Verdict Marcher::substep(double end, double dt, double theta) {
     const Verdict verdict = linear_ ? linear_substep(end, dt, theta) : newton_substep(end, dt, theta);
     if (verdict == Verdict::ok) {
         least_leg_ = std::min(least_leg_, theta * dt);
-        if (tape) tape->add({time, end, theta, false, 0, T_, {}}, values);
+        if (tape) tape->add({time, end, dt, theta, false, 0}, {T_, molten_, {}, {}}, values);
         time = end;
         last_step = dt;
     }
