@@ -273,7 +273,8 @@ TEST_CASE("gradients of marches refuse what was not recorded or has no derivativ
     march.advance().require();
     march.advance().require();
     march.advance().require();
-    test::check_refused([&] { (void)gradient(march, at(0.05)); }, ErrorCode::too_large, "record", "not even checkpoints");
+    test::check_refused([&] { (void)gradient(march, at(0.05)); }, ErrorCode::too_large, "record",
+                        "not even checkpoints");
     march.record();
     march.advance().require();
     test::check_refused([&] { (void)gradient(march, at(0.05), 7.0); }, ErrorCode::no_answer, at(0.05).label(),

@@ -13,8 +13,8 @@ using namespace tepor;
 namespace {
 
 const Parameter k{"k", 2.0}, thick{"thick", 0.03}, h{"h", 60.0}, hot{"hot", 150.0}, rho{"rho", 2000.0},
-    c_cold{"c cold", 800.0}, c_warm{"c warm", 1500.0}, rise{"rise", 4e-4}, melting{"melting", 9e4}, solidus{"solidus", 70.0},
-    liquidus{"liquidus", 95.0}, wall_T{"wall T", 120.0};
+    c_cold{"c cold", 800.0}, c_warm{"c warm", 1500.0}, rise{"rise", 4e-4}, melting{"melting", 9e4},
+    solidus{"solidus", 70.0}, liquidus{"liquidus", 95.0}, wall_T{"wall T", 120.0};
 
 struct Case {
     Body body;
@@ -44,8 +44,9 @@ void against_differences(const Body& body, const std::vector<Parameter>& paramet
 /// Specific heat by a table with Parameters in one part, by a law in the other.
 template <class E>
 Case warming() {
-    Body body{layers<E>({{.region = "a", .thickness = thick, .cells = 4}, {.region = "b", .thickness = 0.02, .cells = 3}},
-                        Cylindrical{}, {.start = 0.02})};
+    Body body{
+        layers<E>({{.region = "a", .thickness = thick, .cells = 4}, {.region = "b", .thickness = 0.02, .cells = 3}},
+                  Cylindrical{}, {.start = 0.02})};
     body.in("a", Material{.conductivity = k,
                           .density = rho,
                           .specific_heat = table({{0.0, 700.0}, {60.0, c_cold}, {90.0, c_warm}, {400.0, 900.0}})});
@@ -252,8 +253,8 @@ TEST_CASE("sums of products over a run give what runs at other values and on mov
     const auto make = [&](const Mesh<Triangle<2>>& on) {
         Body body{on};
         body.in("block", Material{.conductivity = tensor(k, 0.4, across), .density = rho, .specific_heat = tall});
-        body.in("plate", Material{.conductivity = of_place(
-                                      {across}, [](const auto& p, auto a) { return a * (1.0 + 20.0 * p.x); }),
+        body.in("plate", Material{.conductivity =
+                                      of_place({across}, [](const auto& p, auto a) { return a * (1.0 + 20.0 * p.x); }),
                                   .density = 4000.0,
                                   .specific_heat = 600.0});
         body.in("block", Generation{.total = power});

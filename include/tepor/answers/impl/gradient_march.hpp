@@ -17,7 +17,8 @@ inline const MarchTape& recorded(const March& march) {
                     "gradient: the march has not been recorded; say march.record() before the run");
     if (tape->full)
         throw Error(ErrorCode::too_large, "record",
-                    text("gradient: not even checkpoints of the run fit the ", static_cast<double>(tape->most_bytes) / 1048576.0,
+                    text("gradient: not even checkpoints of the run fit the ",
+                         static_cast<double>(tape->most_bytes) / 1048576.0,
                          " MB stated in march.record(); state more, or take fewer steps"));
     return *tape;
 }

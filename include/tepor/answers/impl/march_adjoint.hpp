@@ -215,8 +215,7 @@ class MarchAdjoint : public MarchReplay {
                 storage_->rise(values(), work_, start.T.data(), end.T.data(), r.data(), nullptr, nullptr))
             raise(fault);
         const std::vector<LatentNode>& nodes = storage_->latent();
-        for (std::size_t i = 0; i < nodes.size(); ++i)
-            r[as_size(nodes[i].unknown)] += end.molten[i] - start.molten[i];
+        for (std::size_t i = 0; i < nodes.size(); ++i) r[as_size(nodes[i].unknown)] += end.molten[i] - start.molten[i];
         for (std::size_t u = 0; u < all_; ++u) integral_ += w[u] * r[u];
     }
 
@@ -260,7 +259,7 @@ class MarchAdjoint : public MarchReplay {
         // what the weak form's temperature is worth; for free unknowns it follows from the equation just solved
         for (std::size_t u = 0; u < all_; ++u)
             product_[u] = as_id(u) < model_->free && !end_heat_.holds(u) ? -(nu_[u] + stored_[u]) / theta
-                                                                          : by_leg_[u] + dt * product_[u];
+                                                                         : by_leg_[u] + dt * product_[u];
         if (end_held()) { // the rows of held unknowns answer for themselves
             multiply_transposed(K_, model_->unknowns, lambda_.data(), to_.data());
             for (std::size_t u = 0; u < all_; ++u)

@@ -80,8 +80,7 @@ class MarchReplay {
         std::fill(slope.C.lower.begin(), slope.C.lower.end(), 0.0);
         std::fill(slope.C.upper.begin(), slope.C.upper.end(), 0.0);
         nothing_.assign(all_, 0.0);
-        if (const Fault fault =
-                storage_->rise(values(), work_, T.data(), T.data(), nothing_.data(), &slope.C, nullptr))
+        if (const Fault fault = storage_->rise(values(), work_, T.data(), T.data(), nothing_.data(), &slope.C, nullptr))
             raise(fault);
         slope.held.assign(storage_->latent().empty() ? 0 : all_, 0);
         for (const LatentNode& node : storage_->latent()) {
@@ -200,10 +199,11 @@ class MarchReplay {
         if (node.liquidus > node.solidus) return;
         for (const Coefficient* c : {&region.solidus, &region.liquidus})
             if (c->value().kind() == Value::Kind::parameter)
-                throw Error(ErrorCode::not_supported, region.name,
-                            text("gradient: the ", c->label(),
-                                 " is a Parameter, and the material melts at one temperature, where the march has a kink; "
-                                 "give numbers, or a solidus below the liquidus"));
+                throw Error(
+                    ErrorCode::not_supported, region.name,
+                    text("gradient: the ", c->label(),
+                         " is a Parameter, and the material melts at one temperature, where the march has a kink; "
+                         "give numbers, or a solidus below the liquidus"));
     }
 
     std::vector<Lane> lanes_;

@@ -75,8 +75,8 @@ class EnthalpySlopes : public CellSlopes {
         const auto nodes = as_size(kernel_.nodes * W);
         const std::size_t most = std::max(nodes, as_size(kernel_.points * W));
         for (std::vector<double>* v : {&l_nodes_, &from_nodes_, &to_nodes_}) v->assign(nodes, 0.0);
-        for (std::vector<double>* v : {&from_points_, &late_, &low_, &span_, &warm_, &rise_, &place_x_, &place_y_, &by_density_,
-                                       &by_heat_, &p_, &value_, &density_, &by_x_, &by_y_})
+        for (std::vector<double>* v : {&from_points_, &late_, &low_, &span_, &warm_, &rise_, &place_x_, &place_y_,
+                                       &by_density_, &by_heat_, &p_, &value_, &density_, &by_x_, &by_y_})
             v->assign(most, 0.0);
     }
 

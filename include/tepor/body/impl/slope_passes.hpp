@@ -6,7 +6,6 @@
 
 namespace tepor::detail {
 
-
 class SlopePasses : public SideSlopes {
   public:
     using SideSlopes::SideSlopes;
@@ -175,16 +174,23 @@ class SlopePasses : public SideSlopes {
         const double volume = values_.region_volume[r];
         const double grown = sums_ || !with_places_ ? 0.0 : volume_growth(region);
         double generated_all = 0.0;
+        const bool corners = by_corners(region);
         Id cell[W];
         const Id* ids[W];
         for (Id c = region.first_cell; c < region.last_cell; c += W) {
             block.count = gather_cells(model_, place_, T_, work_.nodal_T, c, region.last_cell, block, cell);
             for (int b = 0; b < block.count; ++b) ids[b] = model_.cell(cell[b]);
             with_weights(
-                ids, kernel_.nodes, block.count, block.T, [&] { kernel_.open(block); },
+                ids, kernel_.nodes, block.count, block.T,
+                [&] {
+                    if (!corners) kernel_.open(block);
+                },
                 [&](const double* l) {
                     double generated[W] = {};
-                    cell_block(region, volume, cell, l, generated);
+                    if (corners)
+                        corner_block(region, volume, cell, l, generated);
+                    else
+                        cell_block(region, volume, cell, l, generated);
                     for (int b = 0; b < W; ++b) {
                         generated_all += generated[b];
                         lane_[b] += generated[b] * grown;

@@ -1,15 +1,15 @@
 #pragma once
 // Derivatives of the weak form by slots and places: what acts on faces and across contacts.
 
-#include <tepor/body/impl/slope_cells.hpp>
+#include <tepor/body/impl/slope_corners.hpp>
 #include <tepor/body/side_tangent.hpp>
 
 namespace tepor::detail {
 
 /// One block of sides with the weights at its nodes.
-class SideSlopes : public CellSlopes {
+class SideSlopes : public CornerSlopes {
   public:
-    using CellSlopes::CellSlopes;
+    using CornerSlopes::CornerSlopes;
 
   protected:
     void reserve_sides() {

@@ -66,8 +66,9 @@ class FunctionalSlope {
         const Enthalpy enthalpy(model_.regions[as_size(r)], values_);
         if (enthalpy.latent())
             throw Error(ErrorCode::not_supported, quantity_.label(),
-                        text(quantity_.label(), " is in part latent, which has kinks; derivatives are offered of the heat that "
-                                                "enters in its place"));
+                        text(quantity_.label(),
+                             " is in part latent, which has kinks; derivatives are offered of the heat that "
+                             "enters in its place"));
         const std::vector<double> cold(as_size(model_.unknowns), 0.0);
         const std::vector<double> weights(cold.size(), factor_);
         const double lumped = enthalpy.constant() || kernel_.order > 1 ? 0.0 : 1.0;

@@ -28,8 +28,7 @@ TEPOR_INLINE void Marcher::repeat(const MarchTape::Leg& leg, const Values& with,
     keep_start();
     begin_books(leg.dt);
     double error = 0.0; // known to be small enough
-    const Verdict verdict =
-        leg.two_stages ? tr_bdf2(leg.to, leg.dt, error) : substep(leg.to, leg.dt, leg.theta);
+    const Verdict verdict = leg.two_stages ? tr_bdf2(leg.to, leg.dt, error) : substep(leg.to, leg.dt, leg.theta);
     if (verdict != Verdict::ok) raise_verdict(verdict);
     end.T = T_;
     end.molten = molten_;
