@@ -137,6 +137,7 @@
 #include <tepor/solve/loads.hpp>
 #include <tepor/solve/march.hpp>
 #include <tepor/solve/march_handles.hpp>
+#include <tepor/solve/march_states.hpp>
 #include <tepor/solve/periodic.hpp>
 #include <tepor/solve/steady.hpp>
 #include <tepor/solve/step.hpp>

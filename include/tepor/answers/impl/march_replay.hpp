@@ -3,11 +3,11 @@
 
 #include <cmath>
 #include <memory>
-#include <tepor/answers/impl/march_states.hpp>
 #include <tepor/base/text.hpp>
 #include <tepor/body/residual_slope.hpp>
 #include <tepor/solve/capacity.hpp>
 #include <tepor/solve/engine.hpp>
+#include <tepor/solve/march_states.hpp>
 
 namespace tepor::detail {
 
@@ -29,7 +29,7 @@ struct HeatSlope {
 class MarchReplay {
   public:
     explicit MarchReplay(const March& march)
-        : model_(march.shared_model()), states_(march), tape_(states_.tape()), linear_(states_.marcher().linear()),
+        : model_(march.shared_model()), states_(march), tape_(states_.tape()), linear_(states_.linear()),
           all_(as_size(model_->unknowns)), work_(model_->kernels->workspace()) {
         prepare_matrix(*model_, K_);
         group_of_.reserve(tape_.values.size());
@@ -56,8 +56,10 @@ class MarchReplay {
         now_ = which;
         ready_ = true;
         if (other) {
-            storage_ = std::make_unique<Storage>(model_, values(), states_.marcher().scheme.capacity, work_);
+            const std::unique_ptr<Storage> last = std::move(storage_);
+            storage_ = std::make_unique<Storage>(model_, values(), states_.capacity(), work_);
             for (const LatentNode& node : storage_->latent()) refuse_moving_melting_point(node);
+            if (last) refuse_driven_melting(*last);
             lanes_.clear();
             if (linear_) assemble_K(tape_.start.T.data(), {});
         }
@@ -122,7 +124,7 @@ class MarchReplay {
         if (linear_) {
             for (const Lane& lane : lanes_)
                 if (std::abs(lane.a - a) <= 1e-12 * a) return *lane.engine;
-            if (Engine* lent = states_.marcher().factored(a, values())) {
+            if (Engine* lent = states_.factored(a, values())) {
                 lanes_.push_back({a, lent, nullptr});
                 return *lent;
             }
@@ -192,6 +194,15 @@ class MarchReplay {
             matrix.lower[diagonal] += holding_[u];
             if (!matrix.upper.empty()) matrix.upper[diagonal] += holding_[u];
         }
+    }
+
+    void refuse_driven_melting(const Storage& last) const {
+        for (std::size_t i = 0; i < last.latent().size(); ++i)
+            if (last.latent()[i].full != storage_->latent()[i].full)
+                throw Error(
+                    ErrorCode::not_supported, model_->regions[as_size(last.latent()[i].region)].name,
+                    "gradient: the latent heat or the density of what melts was driven during the march; drive what "
+                    "acts on the body instead");
     }
 
     void refuse_moving_melting_point(const LatentNode& node) const {
