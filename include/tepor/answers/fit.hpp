@@ -56,6 +56,10 @@ struct Estimated {
     double high = 0.0;
 };
 
+namespace detail {
+class FitRun;
+}
+
 /// What a fit found.
 class Fitted {
   public:
@@ -79,13 +83,20 @@ class Fitted {
     [[nodiscard]] const std::vector<Parameter>& on_bounds() const noexcept { return on_bounds_; }
     [[nodiscard]] Index passes() const noexcept { return passes_; }
 
-    /// Any quantity at the fitted parameters with its 95 % interval from their covariance (steady fits), under conditions.
-    /// @throws Error not_supported  a fit of a march
+    /// Any quantity of the steady state at the fitted parameters with its 95 % interval from their covariance, under conditions.
+    /// @throws Error contradiction  a condition on a fitted parameter; else as steady() and gradient()
     [[nodiscard]] TEPOR_INLINE Estimated predict(const Quantity& quantity,
                                                  const std::vector<Condition>& conditions = {}) const;
+    /// The same at a time [s] of the march that was fitted, which may lie beyond the last reading; between steps on the straight
+    /// line between their ends.
+    /// @throws Error not_supported  a fit of steady readings; outside  a time before the start
+    [[nodiscard]] TEPOR_INLINE Estimated predict_at(const Quantity& quantity, double time,
+                                                    const std::vector<Condition>& conditions = {}) const;
 
   private:
     friend struct FitAccess;
+    [[nodiscard]] TEPOR_INLINE Estimated spread(double value, const std::vector<double>& slope) const;
+    [[nodiscard]] TEPOR_INLINE Body body_under(const std::vector<Condition>& conditions) const;
 
     std::vector<Parameter> parameters_;
     std::vector<double> values_;
@@ -95,7 +106,8 @@ class Fitted {
     double chi_square_ = 0.0;
     Index degrees_ = 0;
     Index passes_ = 0;
-    std::shared_ptr<const Body> body_; ///< at the fitted values
+    std::shared_ptr<const Body> body_;          ///< at the fitted values
+    std::shared_ptr<const detail::FitRun> run_; ///< of a fit over time
 };
 
 /// Parameters of a body from steady readings, by least squares weighted with the uncertainties (Levenberg-Marquardt on adjoint

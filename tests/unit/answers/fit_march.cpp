@@ -4,6 +4,7 @@
 #include <doctest/doctest.h>
 #include <tepor/answers/fit_march.hpp>
 #include <tepor/answers/gradient_march.hpp>
+#include <tepor/answers/impl/march_fit_model.hpp>
 #include <tepor/element/triangle.hpp>
 #include <tepor/mesh/layers.hpp>
 #include <tepor/mesh/tiles.hpp>
@@ -57,8 +58,67 @@ TEST_CASE("a slab driven by a known heat flux gives its conductivity and its hea
     CHECK(std::abs(found[c].value - 950.0) <= 1e-3);
     CHECK(found.chi_square() <= 1e-8);
     CHECK(found[k].uncertainty < 0.05);
-    test::check_refused([&] { (void)found.predict(mean_on("outer")); }, ErrorCode::not_supported,
-                        mean_on("outer").label(), "march the body at the fitted values");
+    // what was read is predicted, beyond the readings too, with an interval that grows with what the parameters leave open
+    for (const double t : {300.0, 600.0, 815.0}) {
+        const TimedReading real = read(truth, steps, {{mean_on("outer"), t, 0.0, 0.2}})[0];
+        const Estimated told = found.predict_at(mean_on("outer"), t);
+        CHECK(std::abs(told.value - real.value) <= 1e-5);
+        CHECK(told.uncertainty > 0.0);
+        CHECK(told.uncertainty < 0.2);
+        CHECK(told.low < real.value);
+        CHECK(real.value < told.high);
+    }
+    CHECK(found.predict_at(mean_on("outer"), 815.0).uncertainty >
+          found.predict_at(mean_on("outer"), 300.0).uncertainty);
+    test::check_refused([&] { (void)found.predict_at(mean_on("outer"), -1.0); }, ErrorCode::outside,
+                        mean_on("outer").label(), "before the march starts");
+    test::check_refused(
+        [&] {
+            (void)found.predict_at(mean_on("outer"), 60.0, {{k, 2.0}});
+        },
+        ErrorCode::contradiction, "conductivity", "cannot be a condition");
+    // the same from steps of controlled error, which land on the readings
+    const Fitted adaptive = fit(slab(true), initial(20.0), Adaptive{.tolerance = 1e-4}, {{k}, {c}},
+                                read(truth, Theta{.theta = 0.5, .step = 0.5}, readings));
+    CHECK(std::abs(adaptive[k].value - 1.7) <= 2e-3);
+    CHECK(std::abs(adaptive[c].value - 950.0) <= 0.5);
+}
+
+TEST_CASE("slopes by forward sensitivities and by the adjoint are the same, and what melts takes the adjoint") {
+    const Theta steps{.theta = 0.5, .step = 20.0};
+    const std::vector<FitBy> by = {{k}, {c}, {thick}};
+    const std::vector<TimedReading> readings = {
+        {mean_on("inner"), 55.0, 0.0, 1.0}, {mean_on("outer"), 200.0, 0.0, 1.0}, {at(0.03), 20.0, 20.0, 1.0}};
+    const Initial start = initial(20.0);
+    const Body body = slab(true);
+    using Timed = detail::MarchFitModel;
+    std::vector<double> y[2];
+    std::vector<double> slope[2];
+    const Timed::Way ways[2] = {Timed::Way::forward, Timed::Way::adjoint};
+    for (int w = 0; w < 2; ++w)
+        REQUIRE(Timed(body, start, steps, by, readings, ways[w]).evaluate({1.2, 800.0, 0.05}, y[w], slope[w]));
+    for (std::size_t i = 0; i < 3; ++i) CHECK(std::abs(y[0][i] - y[1][i]) <= 1e-12 * y[0][i]);
+    for (std::size_t i = 0; i < 9; ++i)
+        CHECK(std::abs(slope[0][i] - slope[1][i]) <= 1e-9 * (1e-6 + std::abs(slope[0][i])));
+    CHECK(std::abs(slope[0][0]) > 1e-3);
+    const Parameter latent{"latent", 8e4};
+    Body wax{layers<Segment<1>>({{.region = "wax", .thickness = 0.02, .cells = 8}})};
+    wax.in("wax", Material{.conductivity = 0.4,
+                           .density = 900,
+                           .specific_heat = c,
+                           .latent = {.heat = latent, .solidus = 45.0, .liquidus = 55.0}});
+    wax.on("inner", Film{.coefficient = 150.0, .fluid = 90.0});
+    Body truth = wax;
+    truth.set(latent, 1.5e5).set(c, 2100.0);
+    std::vector<TimedReading> warming;
+    for (int i = 1; i <= 12; ++i) {
+        warming.push_back({at(0.005), 100.0 * i, 0.0, 0.1});
+        warming.push_back({mean_on("outer"), 100.0 * i, 0.0, 0.1});
+    }
+    const Theta fine{.theta = 1.0, .step = 20.0, .tolerance = 1e-12};
+    const Fitted found = fit(wax, initial(20.0), fine, {{latent}, {c}}, read(truth, fine, warming));
+    CHECK(std::abs(found[latent].value - 1.5e5) <= 1.0);
+    CHECK(std::abs(found[c].value - 2100.0) <= 0.1);
 }
 
 TEST_CASE("with temperatures alone conductivity and heat capacity are refused by name") {

@@ -5,6 +5,7 @@
 #include <tepor/answers/gradient.hpp>
 #include <tepor/answers/impl/adjoint.hpp>
 #include <tepor/answers/impl/chi_square.hpp>
+#include <tepor/answers/impl/fit_run.hpp>
 #include <tepor/answers/impl/gradient.hpp>
 #include <tepor/answers/impl/least_squares.hpp>
 #include <tepor/solve/steady.hpp>
@@ -14,7 +15,7 @@ namespace tepor {
 /// Fills a Fitted.
 struct FitAccess {
     static Fitted make(const std::vector<FitBy>& parameters, const detail::LeastSquares& squares, std::size_t readings,
-                       std::shared_ptr<const Body> body) {
+                       std::shared_ptr<const Body> body, std::shared_ptr<const detail::FitRun> run = nullptr) {
         Fitted out;
         for (const FitBy& by : parameters) out.parameters_.push_back(by.parameter);
         out.values_ = squares.p;
@@ -25,6 +26,7 @@ struct FitAccess {
         for (const std::size_t j : squares.on_bounds) out.on_bounds_.push_back(parameters[j].parameter);
         out.passes_ = squares.passes;
         out.body_ = std::move(body);
+        out.run_ = std::move(run);
         return out;
     }
 };
@@ -74,17 +76,6 @@ inline void validate_reading(const Reading& reading, std::size_t i) {
                     text("fit: reading ", i + 1, " of ", reading.quantity.label(), " is ", reading.value,
                          " with the uncertainty ", reading.uncertainty,
                          "; expected a finite value and an uncertainty > 0"));
-}
-
-/// Values outside a parameter's range are refused by the body: a trial there is no solution.
-inline bool set_if_allowed(Body& body, const Parameter& parameter, double value) {
-    try {
-        body.set(parameter, value);
-        return true;
-    } catch (const Error& error) {
-        if (error.code() == ErrorCode::bad_value) return false;
-        throw;
-    }
 }
 
 /// Steady readings, those of equal conditions solved together.
@@ -179,19 +170,41 @@ TEPOR_INLINE double Fitted::goodness() const {
     return degrees_ > 0 ? detail::chi_square_tail(chi_square_, static_cast<double>(degrees_)) : 1.0;
 }
 
-TEPOR_INLINE Estimated Fitted::predict(const Quantity& quantity, const std::vector<Condition>& conditions) const {
-    if (!body_)
-        throw Error(ErrorCode::not_supported, quantity.label(),
-                    "predict: this fit is of a march; march the body at the fitted values");
-    Body body = *body_;
-    for (const Condition& c : conditions) body.set(c.parameter, c.value);
-    const Gradient slope = gradient(steady(body), quantity);
+TEPOR_INLINE Estimated Fitted::spread(double value, const std::vector<double>& slope) const {
     const std::size_t m = parameters_.size();
     double variance = 0.0;
     for (std::size_t j = 0; j < m; ++j)
-        for (std::size_t k = 0; k < m; ++k)
-            variance += slope[parameters_[j]] * covariance_[j * m + k] * slope[parameters_[k]];
-    return detail::estimated(slope.value(), variance);
+        for (std::size_t k = 0; k < m; ++k) variance += slope[j] * covariance_[j * m + k] * slope[k];
+    return detail::estimated(value, variance);
+}
+
+TEPOR_INLINE Body Fitted::body_under(const std::vector<Condition>& conditions) const {
+    Body body = *body_;
+    for (const Condition& c : conditions) {
+        for (const Parameter& p : parameters_)
+            if (p == c.parameter)
+                throw Error(ErrorCode::contradiction, p.name(),
+                            detail::text("predict: \"", p.name(), "\" was fitted and cannot be a condition, too"));
+        body.set(c.parameter, c.value);
+    }
+    return body;
+}
+
+TEPOR_INLINE Estimated Fitted::predict(const Quantity& quantity, const std::vector<Condition>& conditions) const {
+    const Gradient slope = gradient(steady(body_under(conditions)), quantity);
+    std::vector<double> by;
+    for (const Parameter& p : parameters_) by.push_back(slope[p]);
+    return spread(slope.value(), by);
+}
+
+TEPOR_INLINE Estimated Fitted::predict_at(const Quantity& quantity, double time,
+                                          const std::vector<Condition>& conditions) const {
+    if (!run_)
+        throw Error(ErrorCode::not_supported, quantity.label(),
+                    "predict_at: this fit is of steady readings and knows no time; ask predict()");
+    std::vector<double> by;
+    const double value = run_->predict(body_under(conditions), quantity, time, parameters_, by);
+    return spread(value, by);
 }
 
 TEPOR_INLINE Fitted fit(const Body& body, const std::vector<FitBy>& parameters, const std::vector<Reading>& readings,

@@ -11,14 +11,14 @@ class MarchForward : public MarchReplay {
     MarchForward(const March& march, std::vector<Id> slots)
         : MarchReplay(march), slots_(std::move(slots)), S_(slots_.size(), std::vector<double>(all_, 0.0)) {}
 
-    /// Runs over all legs; `visit(leg)` after each, with sensitivities at its end in S(). Leg -1 is the start.
+    /// Runs over all legs; `visit(leg, T)` after each, when read() knows the sensitivities at its end. Leg -1 is the start.
     template <class Visit>
     void run(const Visit& visit) {
         use(tape_.legs.front().values);
-        visit(Index{-1});
+        visit(Index{-1}, tape_.start.T);
         for (std::size_t i = 0; i < tape_.legs.size(); ++i) {
             advance(tape_.legs[i], states_.start_of(i).T, states_.end_of(i).T);
-            visit(static_cast<Index>(i));
+            visit(static_cast<Index>(i), states_.end_of(i).T);
         }
     }
 

@@ -26,7 +26,7 @@ class SlopePasses : public SideSlopes {
         for (std::size_t c = 0; c < model_.contacts.size(); ++c)
             if (!only || listed(only->contacts, as_id(c))) contact(model_.contacts[c]);
         for (std::size_t l = 0; l < model_.locals.size(); ++l)
-            if ((!only || listed(only->locals, as_id(l))) && !pairs_) local(model_.locals[l]);
+            if (!only || listed(only->locals, as_id(l))) local(model_.locals[l]);
     }
 
     /// The sum over all pairs of unknowns of `pairs` times the weak form's matrix, and `scale` times its loads at every unknown.
@@ -324,7 +324,8 @@ class SlopePasses : public SideSlopes {
         with_places_ = false; // heat at a place moves with its cell
         if (sums_) {
             double p = 0.0;
-            for (std::size_t i = 0; i < heat.unknowns.size(); ++i) p -= weights_[heat.unknowns[i]] * heat.share[i];
+            for (std::size_t i = 0; i < heat.unknowns.size(); ++i)
+                p -= (pairs_ ? pair_scale_ : weights_[heat.unknowns[i]]) * heat.share[i];
             back(heat.total, at, &p);
         } else {
             for (double& v : lane_) v = 0.0;
