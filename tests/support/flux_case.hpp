@@ -94,7 +94,7 @@ class FluxCase {
     /// and whether to list it at all.
     template <class Statement>
     void on_boundary(Statement statement) {
-        const auto behind = detail::side_neighbours(mesh, problem.sides);
+        const auto behind = detail::side_neighbours(problem);
         for (Index c = 0; c < mesh.cell_count(); ++c)
             for (int s = 0; s < 3; ++s) {
                 if (behind[as_size(3 * c + s)] != -1) continue;
@@ -107,7 +107,7 @@ class FluxCase {
 
     /// Contact of conductance hc between regions a and b: nodes get one copy on each side.
     void contact(Id a, Id b, double hc) {
-        const auto behind = detail::side_neighbours(mesh, problem.sides);
+        const auto behind = detail::side_neighbours(problem);
         for (Index c = 0; c < mesh.cell_count(); ++c)
             for (int s = 0; s < 3; ++s) {
                 const Id other = behind[as_size(3 * c + s)];
@@ -309,7 +309,7 @@ class FluxCase {
   private:
     /// One dof per node and set of cells joined around it through sides that are not listed.
     void number_dofs() {
-        const auto behind = detail::side_neighbours(mesh, problem.sides);
+        const auto behind = detail::side_neighbours(problem);
         std::vector<Id> parent(mesh.cells.size());
         std::iota(parent.begin(), parent.end(), 0);
         const auto root = [&](Id i) {

@@ -1,6 +1,7 @@
 #pragma once
 // The defect `k grad Th + s` of one cell from side moments: values for order 1, orthonormal coefficients for order 2.
 
+#include <algorithm>
 #include <cmath>
 #include <tepor/flux/equilibrated.hpp>
 #include <tepor/flux/sweep.hpp>
@@ -54,7 +55,7 @@ inline Defect1 defect_order1(const FluxWork& work, const double* outflow, Index 
         const double sy = inverse * (-enter * edge[before].y - leave * edge[i].y);
         d.x[i] = gx + sx;
         d.y[i] = gy + sy;
-        d.size = std::fmax(d.size, std::abs(gx) + std::abs(gy) + std::abs(sx) + std::abs(sy));
+        d.size = std::max(d.size, std::abs(gx) + std::abs(gy) + std::abs(sx) + std::abs(sy));
         leaving += 0.5 * (out[2 * i] + out[2 * i + 1]);
         d.traffic += 0.5 * (std::abs(out[2 * i]) + std::abs(out[2 * i + 1]));
     }

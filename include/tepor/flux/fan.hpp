@@ -1,6 +1,7 @@
 #pragma once
 // The cells around a vertex, and the small system whose solution is the flux of that vertex.
 
+#include <algorithm>
 #include <cstddef>
 #include <tepor/base/numbers.hpp>
 #include <vector>
@@ -24,38 +25,43 @@ class FanWalk {
     /// behind the first and the last edge (negative, see side_neighbours), or the fan is a `ring`.
     bool next(Id cell, Id corner, std::vector<FanCell>& fan, bool& ring, Id& first, Id& last) {
         if (seen_[slot(cell, corner)]) return false;
-        Id c = cell, i = corner;
-        ring = true;
-        for (;;) { // clockwise to the start: across side i, which runs from the vertex; behind it the vertex is the end
-            const Id behind = neighbours_[slot(c, i)];
-            if (behind < 0) {
-                ring = false;
-                first = behind;
-                break;
-            }
-            c = behind / 3;
-            i = next_corner(behind % 3);
-            if (c == cell && i == corner) break;
-        }
         fan.clear();
-        const Id start = c;
-        const Id start_corner = i;
-        for (;;) { // counter-clockwise: across the side that ends at the vertex
+        ring = true;
+        Id c = cell, i = corner;
+        do { // counter-clockwise: across the side that ends at the vertex
             fan.push_back({c, i});
             seen_[slot(c, i)] = 1;
-            const Id behind = neighbours_[slot(c, next_corner(next_corner(i)))];
+            const Id behind = neighbours_[slot(c, before(i))];
             if (behind < 0) {
+                ring = false;
                 last = behind;
                 break;
             }
             c = behind / 3;
             i = behind % 3;
-            if (c == start && i == start_corner) break;
+        } while (c != cell || i != corner);
+        if (ring) return true;
+        const auto ahead = static_cast<std::ptrdiff_t>(fan.size());
+        c = cell;
+        i = corner;
+        for (;;) { // clockwise to the start: across side i, which runs from the vertex; behind it the vertex is the end
+            const Id behind = neighbours_[slot(c, i)];
+            if (behind < 0) {
+                first = behind;
+                break;
+            }
+            c = behind / 3;
+            i = next_corner(behind % 3);
+            fan.push_back({c, i});
+            seen_[slot(c, i)] = 1;
         }
+        std::reverse(fan.begin() + ahead, fan.end());
+        std::rotate(fan.begin(), fan.begin() + ahead, fan.end());
         return true;
     }
 
     static constexpr Id next_corner(Id i) noexcept { return i == 2 ? 0 : i + 1; }
+    static constexpr Id before(Id i) noexcept { return i == 0 ? 2 : i - 1; }
 
   private:
     static std::size_t slot(Id cell, Id corner) noexcept { return 3 * as_size(cell) + as_size(corner); }
@@ -81,11 +87,17 @@ class FanSystem {
         double x[B];           ///< solution
     };
 
-    void reset(int cells) {
+    /// A fan of `cells` cells; edges hold what they held before.
+    void start(int cells) {
         cells_ = cells;
         if (edges_.size() < as_size(cells) + 1) edges_.resize(as_size(cells) + 1);
-        for (int j = 0; j <= cells; ++j) edges_[as_size(j)] = Edge{};
         total = total_right = 0.0;
+    }
+
+    /// The same with all edges at zero.
+    void reset(int cells) {
+        start(cells);
+        for (int j = 0; j <= cells; ++j) edges_[as_size(j)] = Edge{};
     }
 
     Edge& operator[](int j) noexcept { return edges_[as_size(j)]; }
@@ -102,16 +114,27 @@ class FanSystem {
     /// Solves for all edges and returns m; `m` is taken as known when `m_known`.
     double solve(bool ring, const End& begin, const End& end, bool m_known, double m) {
         const int n = cells_;
-        Border border;
-        auto& s = border.s;
-        auto& r = border.r;
-        auto& value = border.value;
-        auto& known = border.known;
         Edge& e0 = edges_[0];
         for (std::size_t a = 0; a < B && n > 1; ++a)
             for (std::size_t b = 0; b < B; ++b) edges_[1].first[a][b] = e0.next[b][a];
         for (int j = 1; j < n; ++j) eliminate(edges_[as_size(j)], edges_[as_size(j) + 1], e0);
         Edge& en = edges_[as_size(n)];
+        if constexpr (B == 1)
+            if (ring) { // two unknowns are left, in most fans of order 1
+                const double s00 =
+                    e0.diagonal[0][0] + en.diagonal[0][0] + 2.0 * (n > 1 ? en.first[0][0] : e0.next[0][0]);
+                const double s10 = e0.total[0] + en.total[0], r0 = e0.right[0] + en.right[0];
+                const double pivot = 1.0 / s00, f = s10 * pivot;
+                const double whole = (total_right - f * r0) / (total - f * s10);
+                e0.x[0] = en.x[0] = (r0 - s10 * whole) * pivot;
+                substitute(whole);
+                return whole;
+            }
+        Border border;
+        auto& s = border.s;
+        auto& r = border.r;
+        auto& value = border.value;
+        auto& known = border.known;
         for (std::size_t a = 0; a < B; ++a) {
             for (std::size_t b = 0; b < B; ++b) {
                 s[a][b] = e0.diagonal[a][b];
@@ -151,13 +174,20 @@ class FanSystem {
             e0.x[a] = value[a];
             en.x[a] = ring ? value[a] : value[B + a];
         }
-        for (int j = n - 1; j > 0; --j) {
+        substitute(value[2 * B]);
+        return value[2 * B];
+    }
+
+  private:
+    /// The inner edges, once both ends and the total flux are known.
+    void substitute(double m) noexcept {
+        for (int j = cells_ - 1; j > 0; --j) {
             Edge& e = edges_[as_size(j)];
             const Edge& after = edges_[as_size(j) + 1];
             double y[B];
             for (std::size_t a = 0; a < B; ++a) {
-                y[a] = e.right[a] - e.total[a] * value[2 * B];
-                for (std::size_t b = 0; b < B; ++b) y[a] -= e.next[a][b] * after.x[b] + e.first[a][b] * e0.x[b];
+                y[a] = e.right[a] - e.total[a] * m;
+                for (std::size_t b = 0; b < B; ++b) y[a] -= e.next[a][b] * after.x[b] + e.first[a][b] * edges_[0].x[b];
             }
             for (std::size_t a = 0; a < B; ++a) {
                 e.x[a] = 0.0;
@@ -165,10 +195,8 @@ class FanSystem {
                     e.x[a] += e.diagonal[a][b] * y[b]; // holds its inverse since eliminate
             }
         }
-        return value[2 * B];
     }
 
-  private:
     static void invert(Block& d) noexcept {
         if constexpr (B == 1) {
             d[0][0] = 1.0 / d[0][0];

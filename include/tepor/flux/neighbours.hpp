@@ -14,7 +14,7 @@ namespace tepor::detail {
 ///   their law alone; and both sides of a line inside the body that is held at a temperature).
 ///
 /// O(cells). Throws Error bad_mesh when more than two cells share a side or a listed side is not on the boundary.
-std::vector<Id> side_neighbours(const MeshData& mesh, const std::vector<FluxSide>& sides);
+std::vector<Id> side_neighbours(const FluxProblem& problem);
 
 } // namespace tepor::detail
 

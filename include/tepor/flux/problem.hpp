@@ -3,9 +3,11 @@
 
 #include <cmath>
 #include <cstdint>
+#include <memory>
 #include <tepor/base/config.hpp>
 #include <tepor/base/numbers.hpp>
 #include <tepor/mesh/mesh.hpp>
+#include <tepor/mesh/sides.hpp>
 #include <vector>
 
 namespace tepor {
@@ -68,6 +70,8 @@ struct FluxProblem {
     std::vector<FluxSide> sides;
     std::vector<SideTrace> traces;
     std::vector<SpreadSource> spread; ///< at most one per cell
+    std::shared_ptr<const SideMap>
+        matched; ///< match_sides of the mesh, where it is at hand: all fluxes on a mesh share it
 };
 
 namespace detail {
@@ -79,6 +83,11 @@ inline void stretch_of(double kxx, double kxy, double kyy, double* out) noexcept
     out[0] = 1.0 / lx;
     out[1] = -lower / (lx * ly);
     out[2] = 1.0 / ly;
+}
+
+/// The sides of the mesh, matched now where that was not done before.
+inline std::shared_ptr<const SideMap> matched_sides(const FluxProblem& problem) {
+    return problem.matched ? problem.matched : std::make_shared<const SideMap>(match_sides(*problem.mesh));
 }
 
 /// A vector of cell c in the coordinates in which the cell is isotropic.

@@ -89,7 +89,7 @@ TEST_CASE("with every kind of statement the flux balances each cell, obeys each 
             REQUIRE(std::abs(total_out(flux, c) - source) <= 1e-12 * scale);
         }
         // continuity, bit by bit: order 1 swaps the two ends, order 2 flips the odd moment
-        const auto behind = detail::side_neighbours(body.mesh, body.problem.sides);
+        const auto behind = detail::side_neighbours(body.problem);
         Index joined = 0;
         for (std::size_t slot = 0; slot < behind.size(); ++slot) {
             if (behind[slot] < 0) continue;

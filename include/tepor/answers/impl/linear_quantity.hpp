@@ -175,11 +175,10 @@ class QuantityReader {
         double area = 0.0;
         each_side(f, [&](CellSide side, Id) { area += side_measure(side); });
         if (!(area > 0.0)) refuse("because the face has no area");
-        SideMap map;
         each_side(f, [&](CellSide side, Id at) {
             if (at < 0) {
-                if (map.id.empty()) map = match_sides(mesh_);
-                if (map.across(side.cell, side.side).cell >= 0) refuse("because the face lies inside the body");
+                if (problem_.matched->across(side.cell, side.side).cell >= 0)
+                    refuse("because the face lies inside the body");
                 FluxSide fresh;
                 fresh.side = side;
                 fresh.flux = -1.0 / area;
@@ -227,8 +226,7 @@ class QuantityReader {
 
     /// The two sides of a held line inside the body carry the same nodes.
     [[nodiscard]] bool partner_is_own(std::size_t i, const std::vector<char>& own) {
-        if (held_map_.id.empty()) held_map_ = match_sides(mesh_);
-        const CellSide other = held_map_.across(problem_.sides[i].side.cell, problem_.sides[i].side.side);
+        const CellSide other = problem_.matched->across(problem_.sides[i].side.cell, problem_.sides[i].side.side);
         if (other.cell < 0) return false;
         for (std::size_t j = 0; j < own.size(); ++j)
             if (own[j] && problem_.sides[j].side == other) return true;
@@ -255,7 +253,7 @@ class QuantityReader {
             out_.adjoint.sides[as_size(side.partner)].fluid = -1.0;
             ++found;
         }
-        const SideMap map = match_sides(mesh_);
+        const SideMap& map = *problem_.matched;
         for (Index s = 0; s < map.count(); ++s) {
             const CellSide first = map.first[as_size(s)], second = map.second[as_size(s)];
             if (second.cell < 0 || std::minmax(region_of(first), region_of(second)) != std::minmax(a, b)) continue;
@@ -313,7 +311,7 @@ class QuantityReader {
         for (const Point& p : mesh_.nodes) size = std::max(size, distance(p, mesh_.nodes.front()));
         double radius = std::numeric_limits<double>::max();
         bool on_edge = false;
-        const SideMap map = match_sides(mesh_);
+        const SideMap& map = *problem_.matched;
         std::vector<Id> listed(map.first.size(), -1);
         for (std::size_t i = 0; i < problem_.sides.size(); ++i)
             listed[as_size(map.number(problem_.sides[i].side.cell, problem_.sides[i].side.side))] = as_id(i);
@@ -369,7 +367,6 @@ class QuantityReader {
     const MeshData& mesh_;
     const Quantity& quantity_;
     const double* temperature_;
-    SideMap held_map_;
     LinearQuantity out_;
 };
 

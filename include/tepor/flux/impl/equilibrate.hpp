@@ -51,7 +51,7 @@ inline bool is_round(const FluxProblem& problem) noexcept {
 }
 
 inline FluxWork prepare_flux(const FluxProblem& problem, const double* temperature) {
-    return {problem, temperature, side_neighbours(*problem.mesh, problem.sides), side_moments(problem, temperature),
+    return {problem, temperature, side_neighbours(problem), side_moments(problem, temperature),
             is_round(problem) ? round_loads(problem) : source_loads(problem, temperature)};
 }
 

@@ -44,7 +44,7 @@ struct LinePiece {
 
 inline std::vector<LinePiece> line_pieces(const FluxProblem& problem) {
     const MeshData& mesh = *problem.mesh;
-    const std::vector<Id> behind = side_neighbours(mesh, problem.sides);
+    const std::vector<Id> behind = side_neighbours(problem);
     std::vector<Index> order(as_size(mesh.cell_count()));
     std::iota(order.begin(), order.end(), Index{0});
     const auto middle = [&](Index c) {

@@ -20,6 +20,7 @@ class ProblemReader {
     ModelProblem read() {
         shape();
         geometry();
+        out_.problem.matched = std::make_shared<const SideMap>(match_sides(*out_.mesh));
         regions();
         faces();
         contacts();
@@ -280,7 +281,7 @@ class ProblemReader {
         bool any = false;
         for (const FluxSide& side : out_.problem.sides) any = any || side.kind == SideKind::fixed;
         if (!any) return;
-        const SideMap map = match_sides(*out_.mesh);
+        const SideMap& map = *out_.problem.matched;
         const std::size_t count = out_.problem.sides.size();
         for (std::size_t i = 0; i < count; ++i) {
             if (out_.problem.sides[i].kind != SideKind::fixed) continue;

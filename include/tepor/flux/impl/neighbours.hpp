@@ -4,13 +4,15 @@
 #include <tepor/base/error.hpp>
 #include <tepor/base/text.hpp>
 #include <tepor/flux/neighbours.hpp>
-#include <tepor/mesh/sides.hpp>
 
 namespace tepor::detail {
 
-TEPOR_INLINE std::vector<Id> side_neighbours(const MeshData& mesh, const std::vector<FluxSide>& sides) {
+TEPOR_INLINE std::vector<Id> side_neighbours(const FluxProblem& problem) {
+    const MeshData& mesh = *problem.mesh;
+    const std::vector<FluxSide>& sides = problem.sides;
     const int per_cell = mesh.sides_per_cell;
-    const SideMap map = match_sides(mesh);
+    const std::shared_ptr<const SideMap> matched = matched_sides(problem);
+    const SideMap& map = *matched;
     std::vector<Id> behind(as_size(mesh.cell_count() * per_cell), -1);
     for (std::size_t n = 0; n < map.first.size(); ++n) {
         const CellSide a = map.first[n], b = map.second[n];

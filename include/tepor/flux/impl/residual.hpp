@@ -86,8 +86,9 @@ TEPOR_INLINE CarriedNorms carry_left_over(const FluxWork& work, const std::vecto
         sent[as_size(parent)].doubt += sent[c].doubt;
     }
     double residual = 0.0, rounding = 0.0;
-    for (const Id cell : order) {
-        const std::size_t c = as_size(cell);
+    for (std::size_t c = 0; c < cells; ++c) { // in memory order
+        if (exit[c] < 0) continue;
+        const Id cell = as_id(c);
         const Id* node = mesh.cell(cell);
         const Point place[3] = {mesh.nodes[as_size(node[0])], mesh.nodes[as_size(node[1])],
                                 mesh.nodes[as_size(node[2])]};
@@ -113,7 +114,7 @@ TEPOR_INLINE CarriedNorms carry_left_over(const FluxWork& work, const std::vecto
         for (const double radius : r)
             if (radius > 0.0) least = std::min(least, radius);
         // Linear field whose flux is constant along a side, or in r-z falls to zero towards an end on the axis: its vertex values
-        double sum = 0.0, sx = 0.0, sy = 0.0, largest = 0.0, doubt = 0.0;
+        double sum = 0.0, sx = 0.0, sy = 0.0, largest = 0.0, doubt = 0.0; // doubt: squared
         for (std::size_t i = 0; i < 3; ++i) {
             const std::size_t before = (i + 2) % 3, after = (i + 1) % 3;
             const auto at_vertex = [&](std::size_t other) {
@@ -122,15 +123,15 @@ TEPOR_INLINE CarriedNorms carry_left_over(const FluxWork& work, const std::vecto
             const Point t1 = x[after] - x[i], t2 = x[before] - x[i];
             const double enter = -leaves[i] * at_vertex(after), leave = leaves[before] * at_vertex(before);
             const double vx = enter * t2.x - leave * t1.x, vy = enter * t2.y - leave * t1.y;
-            doubt =
-                std::max(doubt, 2.0 * (doubts[i] * std::sqrt(dot(t2, t2)) + doubts[before] * std::sqrt(dot(t1, t1))));
+            const double a = doubts[i] * doubts[i] * dot(t2, t2), b = doubts[before] * doubts[before] * dot(t1, t1);
+            doubt = std::max(doubt, 8.0 * (a + b)); // (2 |a| + 2 |b|)^2 at most
             largest = std::max(largest, vx * vx + vy * vy);
             sum += vx * vx + vy * vy, sx += vx, sy += vy;
         }
         const double weight = 0.5 / (twice * problem.conductivity[c]);
         // In r-z |tau|^2/r is at most its largest vertex value over the least radius off the axis, since tau is zero on it.
         residual += round ? weight * largest / least : weight / 12.0 * (sum + sx * sx + sy * sy);
-        rounding += weight * doubt * doubt / (round ? least : 1.0);
+        rounding += weight * doubt / (round ? least : 1.0);
         if (exit[c] == 3) {
             const double share = 2.0 / (cross(place[1] - place[0], place[2] - place[0]) * problem.sink[c]);
             residual += share * sent[c].value * sent[c].value;

@@ -1,5 +1,8 @@
 #pragma once
 // Patch fluxes of order 1: per cell the energy is |T|/(12 k) (sum |w_i|^2 + |sum w_i|^2) of its vertex values w_i.
+//
+// Dot products of the sides are cotangents of the angles times 2 |T|, and k grad T meets a side in the difference of two nodal
+// values, so that a patch needs three cotangents and the conductivity of each cell, and no coordinates. All is scaled by 24.
 
 #include <cmath>
 #include <tepor/flux/fan.hpp>
@@ -21,24 +24,57 @@ struct GivenTrace1 {
     }
 };
 
+/// What the patches need of a cell.
+struct FanCell1 {
+    double cot[3]; ///< of the angles at its vertices, where the cell is isotropic
+    double k;
+    double area;
+};
+
+inline std::vector<FanCell1> fan_cells(const FluxProblem& problem) {
+    const MeshData& mesh = *problem.mesh;
+    std::vector<FanCell1> out(as_size(mesh.cell_count()));
+    for (std::size_t c = 0; c < out.size(); ++c) {
+        const Id* node = mesh.cells.data() + 3 * c;
+        const Point a = mesh.nodes[as_size(node[0])];
+        const Point t1 = stretched(problem, as_id(c), mesh.nodes[as_size(node[1])] - a),
+                    t2 = stretched(problem, as_id(c), mesh.nodes[as_size(node[2])] - a);
+        const double twice = cross(t1, t2), inverse = 1.0 / twice;
+        const Point d = t2 - t1;
+        out[c] = {
+            {inverse * dot(t1, t2), -inverse * dot(t1, d), inverse * dot(t2, d)}, problem.conductivity[c], 0.5 * twice};
+    }
+    return out;
+}
+
+inline void set(FanSystem<1>::Edge& e, double diagonal, double next, double by_total, double right) noexcept {
+    e.diagonal[0][0] = diagonal;
+    e.next[0][0] = next;
+    e.first[0][0] = 0.0;
+    e.total[0] = by_total;
+    e.right[0] = right;
+}
+
 TEPOR_INLINE void sweep_order1(const FluxWork& work, double* outflow) {
     const FluxProblem& problem = work.problem;
-    const MeshData& mesh = *problem.mesh;
-    const Index cells = mesh.cell_count();
+    const Index cells = problem.mesh->cell_count();
+    const std::vector<FanCell1> table = fan_cells(problem);
     FanWalk walk(work.neighbours, cells);
     FanSystem<1> system;
     std::vector<FanCell> fan;
     struct CellPart {
-        double area, r;        // area, balance r_j
-        double px, py, dx, dy; // 2 |T| k grad T; edge from v_j to v_{j+1}
-        double weight;         // 1/(48 k |T|)
-        double t1x, t1y, t2x, t2y;
-        double sum; // S_j: what has been added to the crossing flux up to edge j
+        double r;          // balance r_j
+        double area;       // of the cell
+        double rise;       // u_1 + u_2 above the vertex
+        double climb;      // u_2 - u_1
+        double at, c1, c2; // cotangents over k: at the vertex, at v_j, at v_{j+1}
+        double sum;        // S_j: what has been added to the crossing flux up to edge j
     };
     std::vector<CellPart> part;
     const auto listed = [&](Id behind) -> const FluxSide* {
         return behind <= -2 ? &problem.sides[as_size(-2 - behind)] : nullptr;
     };
+    const bool spread_loads = work.loads.per_cell > 0;
     for (Index c0 = 0; c0 < cells; ++c0)
         for (Id i0 = 0; i0 < 3; ++i0) {
             bool ring = false;
@@ -50,27 +86,22 @@ TEPOR_INLINE void sweep_order1(const FluxWork& work, double* outflow) {
             for (int j = 0; j < n; ++j) {
                 const FanCell f = fan[as_size(j)];
                 const Id i1 = FanWalk::next_corner(f.corner), i2 = FanWalk::next_corner(i1);
-                const Id* node = mesh.cells.data() + 3 * as_size(f.cell);
+                const FanCell1& cell = table[as_size(f.cell)];
                 const Id* dof = problem.dof.data() + 3 * as_size(f.cell);
-                const Point a = mesh.nodes[as_size(node[f.corner])];
-                const Point t1 = stretched(problem, f.cell, mesh.nodes[as_size(node[i1])] - a),
-                            t2 = stretched(problem, f.cell, mesh.nodes[as_size(node[i2])] - a);
-                const double k = problem.conductivity[as_size(f.cell)];
-                const double u1 = work.temperature[dof[i1]] - work.temperature[dof[f.corner]];
-                const double u2 = work.temperature[dof[i2]] - work.temperature[dof[f.corner]];
+                const double u0 = work.temperature[dof[f.corner]];
+                const double u1 = work.temperature[dof[i1]] - u0, u2 = work.temperature[dof[i2]] - u0;
+                const double inverse = 1.0 / cell.k;
                 CellPart& p = part[as_size(j)];
-                const double twice = cross(t1, t2);
-                p.area = 0.5 * twice;
-                p.weight = 1.0 / (24.0 * k * twice);
-                p.t1x = t1.x, p.t1y = t1.y, p.t2x = t2.x, p.t2y = t2.y;
-                p.dx = t2.x - t1.x, p.dy = t2.y - t1.y;
-                p.px = k * (u1 * t2.y - u2 * t1.y); // 2 |T| grad T = u1 (t2.y, -t2.x) - u2 (t1.y, -t1.x)
-                p.py = k * (u2 * t1.x - u1 * t2.x);
-                // grad lambda_a = (-d.y, d.x)/(2 |T|)
-                const double slope = 0.5 * (-p.px * p.dy + p.py * p.dx) / twice;
-                const double load = work.loads.per_cell > 0 ? work.loads.load[3 * as_size(f.cell) + as_size(f.corner)]
-                                                            : p.area * problem.source[as_size(f.cell)] / 3.0;
-                p.r = load - slope;
+                p.area = cell.area;
+                p.rise = u1 + u2;
+                p.climb = u2 - u1;
+                p.at = inverse * cell.cot[f.corner];
+                p.c1 = inverse * cell.cot[i1];
+                p.c2 = inverse * cell.cot[i2];
+                const double load = spread_loads ? work.loads.load[3 * as_size(f.cell) + as_size(f.corner)]
+                                                 : cell.area * problem.source[as_size(f.cell)] / 3.0;
+                // less the integral of k grad T . grad lambda
+                p.r = load + 0.5 * cell.k * (u1 * cell.cot[i2] + u2 * cell.cot[i1]);
                 sum += p.r;
                 whole += p.area;
             }
@@ -104,31 +135,23 @@ TEPOR_INLINE void sweep_order1(const FluxWork& work, double* outflow) {
                 }
             }
             const double spread = left_over / whole;
-            system.reset(n);
+            system.start(n);
             sum = 0.0;
+            double diagonal = 0.0, by_total = 0.0, right = 0.0; // of the cell before the edge
             for (int j = 0; j < n; ++j) {
                 CellPart& p = part[as_size(j)];
                 p.sum = sum;
                 sum += p.r - spread * p.area;
-                const double c = p.weight;
-                const double l11 = p.t1x * p.t1x + p.t1y * p.t1y, l22 = p.t2x * p.t2x + p.t2y * p.t2y;
-                const double l12 = p.t1x * p.t2x + p.t1y * p.t2y;
-                const double dd = l11 + l22 - 2.0 * l12;
-                const double both = 2.0 * (p.sum + sum);
-                const double qx = p.px + both * p.dx, qy = p.py + both * p.dy;
-                auto& e = system[j];
-                auto& g = system[j + 1];
-                const double diagonal = c * (l11 + l22 + dd);
-                e.diagonal[0][0] += diagonal;
-                g.diagonal[0][0] += diagonal;
-                e.next[0][0] = -2.0 * c * l12;
-                e.total[0] += c * (4.0 * (l12 - l11) - 2.0 * dd);
-                g.total[0] += c * (4.0 * (l12 - l22) - 2.0 * dd);
-                system.total += 24.0 * c * dd;
-                e.right[0] += c * (2.0 * dd * p.sum - (p.t2x * p.px + p.t2y * p.py) - (p.t1x * qx + p.t1y * qy));
-                g.right[0] += c * (2.0 * dd * sum + (p.t1x * p.px + p.t1y * p.py) + (p.t2x * qx + p.t2y * qy));
-                system.total_right -= c * (2.0 * dd * both + 4.0 * (p.dx * qx + p.dy * qy));
+                const double both = 2.0 * (p.sum + sum), dd = p.c1 + p.c2, own = 2.0 * (p.at + dd);
+                set(system[j], diagonal + own, -2.0 * p.at, by_total - 6.0 * p.c1 - 2.0 * p.c2,
+                    right + 2.0 * dd * p.sum + both * p.c1 - p.rise);
+                diagonal = own;
+                by_total = -6.0 * p.c2 - 2.0 * p.c1;
+                right = 2.0 * dd * sum + both * p.c2 + p.rise;
+                system.total += 24.0 * dd;
+                system.total_right -= 6.0 * dd * both + 4.0 * p.climb;
             }
+            set(system[n], diagonal, 0.0, by_total, right);
             const double total = system.solve(ring, begin, end, m_known, m);
             for (int j = 0; j < n; ++j) {
                 const FanCell f = fan[as_size(j)];
