@@ -50,6 +50,7 @@ static void sizes(void) {
     SIZE(tepor_compact_options, 96);
     SIZE(tepor_model_facts, 88);
     SIZE(tepor_steady_options, 48);
+    SIZE(tepor_meshing, 56);
     SIZE(tepor_balance, 72);
     SIZE(tepor_face_heat, 64);
     SIZE(tepor_value, 24);

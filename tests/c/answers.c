@@ -140,6 +140,10 @@ static void sizes(tepor_session* session) {
     DONE(tepor_field_value(session, field, r.end, &value));
     NEAR(value, 90.0, 1e-5);
     tepor_field_free(field);
+    DONE(tepor_size_for(session, r.body, r.power, r.end, TEPOR_AT_MOST, 500.0, &options, &sized, NULL));
+    EXPECT(sized.reason == TEPOR_SIZE_ALWAYS_MET); /* 170 degC at most between the bounds */
+    DONE(tepor_size_for(session, r.body, r.power, r.end, TEPOR_AT_LEAST, 500.0, &options, &sized, NULL));
+    EXPECT(sized.reason == TEPOR_SIZE_UNREACHABLE);
     DONE(tepor_size_for(session, r.body, r.power, r.end, TEPOR_EQUAL_TO, 900.0, &options, &sized, NULL));
     EXPECT(sized.reason == TEPOR_SIZE_UNREACHABLE);
     NEAR(sized.reached, 170.0, 1e-6); /* at the upper bound */
@@ -214,7 +218,9 @@ static void fits(tepor_session* session) {
            strstr(tepor_session_offender(session), "k") != NULL);
     /* a prior tells them apart */
     const tepor_fit_by known[2] = {{r.h, NAN, NAN, 40.0, 0.5}, {r.k, NAN, NAN, 0.0, 0.0}};
-    DONE(tepor_fit(session, r.body, known, 2, readings, 2, NULL, &fitted));
+    DONE(tepor_fit(session, r.body, known, 2, readings + 1, 1, NULL, &fitted));
+    DONE(tepor_fitted_value(session, fitted, r.h, &e));
+    NEAR(e.value, 40.0, 1e-3);
     tepor_fitted_free(fitted);
     fitted = NULL;
 

@@ -155,6 +155,66 @@ static void outlines(tepor_session* session) {
     tepor_section_free(section);
 }
 
+static double fine_in_the_corner(double x, double y, void* user_data) {
+    ++*(int*)user_data;
+    return 0.01 + 0.2 * (x + y);
+}
+
+static size_t cells_of(tepor_session* session, const tepor_tiles* tiles, int32_t diagonals) {
+    tepor_mesh* mesh = NULL;
+    tepor_meshing how = tepor_meshing_default();
+    how.cell_size = 0.5;
+    how.diagonals = diagonals;
+    DONE(tepor_tiles_mesh_with(session, tiles, TEPOR_TRIANGLE_1, &how, tepor_planar(1.0), &mesh));
+    const size_t cells = tepor_mesh_cell_count(mesh);
+    tepor_mesh_free(mesh);
+    return cells;
+}
+
+/* How finely: diagonals of tiles, sizes by place, arcs by their turn, a limit of triangles. */
+static void fineness(tepor_session* session) {
+    tepor_tiles* tiles = NULL;
+    tepor_section* section = NULL;
+    tepor_mesh* mesh = NULL;
+    int asked = 0;
+    DONE(tepor_tiles_create(session, &tiles));
+    DONE(tepor_tiles_add(session, tiles, "square", 0.0, 0.0, 1.0, 1.0));
+    EXPECT(cells_of(session, tiles, TEPOR_DIAGONALS_ALTERNATING) == 8);
+    EXPECT(cells_of(session, tiles, TEPOR_DIAGONALS_CROSSED) == 16);
+    EXPECT(cells_of(session, tiles, TEPOR_DIAGONALS_FALLING) == 8);
+    tepor_tiles_free(tiles);
+
+    DONE(tepor_section_create(session, &section));
+    DONE(tepor_section_add_circle(session, section, "disc", 0.0, 0.0, 1.0));
+    tepor_meshing how = tepor_meshing_default();
+    how.cell_size = 0.5;
+    how.turn = 30.0;
+    DONE(tepor_section_mesh_with(session, section, TEPOR_TRIANGLE_1, &how, tepor_planar(1.0), &mesh));
+    const size_t coarse = tepor_mesh_cell_count(mesh);
+    tepor_mesh_free(mesh);
+    how.turn = 5.0;
+    DONE(tepor_section_mesh_with(session, section, TEPOR_TRIANGLE_1, &how, tepor_planar(1.0), &mesh));
+    EXPECT(tepor_mesh_cell_count(mesh) > 2 * coarse);
+    tepor_mesh_free(mesh);
+    tepor_section_free(section);
+
+    section = NULL;
+    DONE(tepor_section_create(session, &section));
+    DONE(tepor_section_add_rectangle(session, section, "plate", 0.0, 0.0, 1.0, 1.0));
+    DONE(tepor_section_size_by(session, section, fine_in_the_corner, &asked));
+    how = tepor_meshing_default();
+    how.cell_size = 0.5;
+    DONE(tepor_section_mesh_with(session, section, TEPOR_TRIANGLE_1, &how, tepor_planar(1.0), &mesh));
+    EXPECT(asked > 0 && tepor_mesh_cell_count(mesh) > 100);
+    tepor_mesh_free(mesh);
+    mesh = NULL;
+    how.most_triangles = 20;
+    EXPECT(tepor_section_mesh_with(session, section, TEPOR_TRIANGLE_1, &how, tepor_planar(1.0), &mesh) ==
+           TEPOR_TOO_LARGE);
+    EXPECT(mesh == NULL);
+    tepor_section_free(section);
+}
+
 /* A quantity in a disc, options of a body, the exact cell. */
 static void odds(tepor_session* session) {
     const tepor_layer stack[1] = {{"slab", tepor_number(0.2), 6, -3.0}};
@@ -189,6 +249,7 @@ int main(void) {
     arrays(session);
     grid_lines(session);
     outlines(session);
+    fineness(session);
     odds(session);
     tepor_session_free(session);
     if (failures == 0) puts("drawings: all as expected");

@@ -138,6 +138,35 @@ TEPOR_C_API tepor_status tepor_section_size_on(tepor_session* session, tepor_sec
 TEPOR_C_API tepor_status tepor_section_mesh(tepor_session* session, const tepor_section* section, tepor_element element,
                                             double size, tepor_frame frame, tepor_mesh** out);
 
+/* How finely to mesh a drawing; start from tepor_meshing_default(). */
+typedef struct tepor_meshing {
+    size_t size;
+    double cell_size; /* longest cell [m]; 0: every space of tiles has a split, a 40th of a section's diagonal */
+    double growth;    /* tiles: from cell to cell away from a finer line; sections: of sizes per unit of distance */
+    double turn;      /* sections: most an arc turns within one cell side [degrees], at most 30 */
+    double deviation; /* sections: most a chord lies off its arc [m]; 0: only `turn` counts */
+    int64_t most_triangles; /* sections: more is TEPOR_TOO_LARGE, for sizes in the wrong unit */
+    int32_t diagonals;      /* tiles of triangles: tepor_diagonals */
+    int32_t reserved;
+} tepor_meshing;
+typedef enum tepor_diagonals {
+    TEPOR_DIAGONALS_ALTERNATING = 0, /* a chequered pattern, which favours no direction */
+    TEPOR_DIAGONALS_CROSSED = 1,     /* four triangles around a node in the middle */
+    TEPOR_DIAGONALS_RISING = 2,      /* from lower left to upper right */
+    TEPOR_DIAGONALS_FALLING = 3
+} tepor_diagonals;
+/* `growth` is that of tiles for rectangles, that of sections for sections: 0 takes the usual one of either. */
+TEPOR_C_API tepor_meshing tepor_meshing_default(void);
+TEPOR_C_API tepor_status tepor_tiles_mesh_with(tepor_session* session, const tepor_tiles* tiles, tepor_element element,
+                                               const tepor_meshing* meshing, tepor_frame frame, tepor_mesh** out);
+TEPOR_C_API tepor_status tepor_section_mesh_with(tepor_session* session, const tepor_section* section,
+                                                 tepor_element element, const tepor_meshing* meshing, tepor_frame frame,
+                                                 tepor_mesh** out);
+/* Cell sizes of a section by place: the callback gives a size [m] > 0 at (x, y) [m]; the smallest that applies counts. */
+typedef double (*tepor_size_law)(double x, double y, void* user_data);
+TEPOR_C_API tepor_status tepor_section_size_by(tepor_session* session, tepor_section* section, tepor_size_law law,
+                                               void* user_data);
+
 /* A mesh of one's own as arrays. Start from all zeros, set `size`. Without regions everything is the region "body". */
 typedef struct tepor_arrays {
     size_t size;          /* sizeof(tepor_arrays) */

@@ -24,6 +24,37 @@ inline Outline outline_of(Point start, const tepor_stroke* strokes, std::size_t 
     return outline;
 }
 
+inline TilesOptions tiles_options_of(const tepor_meshing* given) {
+    tepor_meshing m = tepor_meshing_default();
+    take(given, m);
+    TilesOptions how;
+    how.size = m.cell_size;
+    if (m.growth != 0.0) how.growth = m.growth;
+    switch (m.diagonals) {
+    case TEPOR_DIAGONALS_ALTERNATING: how.diagonals = Diagonals::alternating; break;
+    case TEPOR_DIAGONALS_CROSSED: how.diagonals = Diagonals::crossed; break;
+    case TEPOR_DIAGONALS_RISING: how.diagonals = Diagonals::rising; break;
+    case TEPOR_DIAGONALS_FALLING: how.diagonals = Diagonals::falling; break;
+    default: misuse("the diagonals are no tepor_diagonals");
+    }
+    return how;
+}
+
+inline Meshing meshing_of(const tepor_meshing* given, const tepor_section& section) {
+    tepor_meshing m = tepor_meshing_default();
+    take(given, m);
+    Meshing how;
+    how.size = m.cell_size;
+    how.in = section.size_in;
+    how.on = section.size_on;
+    how.law = section.size_by;
+    if (m.growth != 0.0) how.growth = m.growth;
+    how.turn = m.turn;
+    how.deviation = m.deviation;
+    how.most_triangles = static_cast<Index>(m.most_triangles);
+    return how;
+}
+
 } // namespace tepor::c
 
 extern "C" {
@@ -46,45 +77,29 @@ tepor_status tepor_tiles_face(tepor_session* session, tepor_tiles* tiles, const 
                               double x1, double y1) {
     return tepor::c::run(session, tiles && face, [&] { tiles->tiles.face(face, {x0, y0}, {x1, y1}); });
 }
-tepor_status tepor_tiles_mesh(tepor_session* session, const tepor_tiles* tiles, tepor_element element, double size,
-                              tepor_frame frame, tepor_mesh** out) {
-    return tepor::c::run(session, tiles && out, [&] {
+tepor_meshing tepor_meshing_default(void) {
+    const tepor::Meshing usual;
+    tepor_meshing m{};
+    m.size = sizeof m;
+    m.turn = usual.turn;
+    m.most_triangles = usual.most_triangles;
+    return m;
+}
+tepor_status tepor_tiles_mesh_with(tepor_session* session, const tepor_tiles* tiles, tepor_element element,
+                                   const tepor_meshing* meshing, tepor_frame frame, tepor_mesh** out) {
+    return tepor::c::run(session, tiles && meshing && out, [&] {
         const tepor::Frame in = tepor::c::frame_of(frame);
+        const tepor::TilesOptions how = tepor::c::tiles_options_of(meshing);
         *out = tepor::c::for_plane(element, [&]<class E>() -> tepor_mesh* {
-            return new tepor::c::MeshOf<E>(tepor::tiles<E>(tiles->tiles, {.size = size}, in));
+            return new tepor::c::MeshOf<E>(tepor::tiles<E>(tiles->tiles, how, in));
         });
     });
 }
-
-tepor_status tepor_tiles_split_x(tepor_session* session, tepor_tiles* tiles, double from, double to, int64_t cells,
-                                 double grading) {
-    return tepor::c::run(session, tiles, [&] {
-        tiles->tiles.split_x({.from = from,
-                              .to = to,
-                              .cells = static_cast<tepor::Index>(cells),
-                              .grading = tepor::c::grading_of(grading)});
-    });
-}
-tepor_status tepor_tiles_split_y(tepor_session* session, tepor_tiles* tiles, double from, double to, int64_t cells,
-                                 double grading) {
-    return tepor::c::run(session, tiles, [&] {
-        tiles->tiles.split_y({.from = from,
-                              .to = to,
-                              .cells = static_cast<tepor::Index>(cells),
-                              .grading = tepor::c::grading_of(grading)});
-    });
-}
-tepor_status tepor_tiles_finer_x(tepor_session* session, tepor_tiles* tiles, double at, double size) {
-    return tepor::c::run(session, tiles, [&] { tiles->tiles.finer_x({.at = at, .size = size}); });
-}
-tepor_status tepor_tiles_finer_y(tepor_session* session, tepor_tiles* tiles, double at, double size) {
-    return tepor::c::run(session, tiles, [&] { tiles->tiles.finer_y({.at = at, .size = size}); });
-}
-tepor_status tepor_tiles_line_x(tepor_session* session, tepor_tiles* tiles, double at) {
-    return tepor::c::run(session, tiles, [&] { tiles->tiles.line_x(at); });
-}
-tepor_status tepor_tiles_line_y(tepor_session* session, tepor_tiles* tiles, double at) {
-    return tepor::c::run(session, tiles, [&] { tiles->tiles.line_y(at); });
+tepor_status tepor_tiles_mesh(tepor_session* session, const tepor_tiles* tiles, tepor_element element, double size,
+                              tepor_frame frame, tepor_mesh** out) {
+    tepor_meshing meshing = tepor_meshing_default();
+    meshing.cell_size = size;
+    return tepor_tiles_mesh_with(session, tiles, element, &meshing, frame, out);
 }
 
 tepor_status tepor_section_create(tepor_session* session, tepor_section** out) {
@@ -194,18 +209,27 @@ tepor_status tepor_section_size_in(tepor_session* session, tepor_section* sectio
 tepor_status tepor_section_size_on(tepor_session* session, tepor_section* section, const char* face, double size) {
     return tepor::c::run(session, section && face, [&] { section->size_on.push_back({face, size}); });
 }
-tepor_status tepor_section_mesh(tepor_session* session, const tepor_section* section, tepor_element element,
-                                double size, tepor_frame frame, tepor_mesh** out) {
-    return tepor::c::run(session, section && out, [&] {
+tepor_status tepor_section_size_by(tepor_session* session, tepor_section* section, tepor_size_law law,
+                                   void* user_data) {
+    return tepor::c::run(session, section && law, [&] {
+        section->size_by = tepor::SizeLaw([law, user_data](tepor::Point p) { return law(p.x, p.y, user_data); });
+    });
+}
+tepor_status tepor_section_mesh_with(tepor_session* session, const tepor_section* section, tepor_element element,
+                                     const tepor_meshing* meshing, tepor_frame frame, tepor_mesh** out) {
+    return tepor::c::run(session, section && meshing && out, [&] {
         const tepor::Frame in = tepor::c::frame_of(frame);
-        tepor::Meshing meshing;
-        meshing.size = size;
-        meshing.in = section->size_in;
-        meshing.on = section->size_on;
+        const tepor::Meshing how = tepor::c::meshing_of(meshing, *section);
         *out = tepor::c::for_triangle(element, [&]<class E>() -> tepor_mesh* {
-            return new tepor::c::MeshOf<E>(tepor::triangulate<E>(section->section, meshing, in));
+            return new tepor::c::MeshOf<E>(tepor::triangulate<E>(section->section, how, in));
         });
     });
+}
+tepor_status tepor_section_mesh(tepor_session* session, const tepor_section* section, tepor_element element,
+                                double size, tepor_frame frame, tepor_mesh** out) {
+    tepor_meshing meshing = tepor_meshing_default();
+    meshing.cell_size = size;
+    return tepor_section_mesh_with(session, section, element, &meshing, frame, out);
 }
 
 } // extern "C"

@@ -28,6 +28,7 @@ struct tepor_section {
     tepor::Drawn last{};
     std::vector<tepor::NamedSize> size_in{};
     std::vector<tepor::NamedSize> size_on{};
+    tepor::SizeLaw size_by{};
 };
 struct tepor_quantity {
     tepor::Quantity quantity;
