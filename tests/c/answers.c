@@ -210,6 +210,7 @@ static void fits(tepor_session* session) {
     DONE(tepor_fitted_predict(session, fitted, r.end, doubled, 1, &e));
     NEAR(e.value, 95.0, 1e-3);
     EXPECT(tepor_fitted_value(session, fitted, r.power, &e) == TEPOR_UNUSED);
+    EXPECT(tepor_fitted_predict_at(session, fitted, r.end, 10.0, NULL, 0, &e) == TEPOR_NOT_SUPPORTED);
     tepor_fitted_free(fitted);
     fitted = NULL;
     /* one temperature at one power does not tell the two apart, and both are named */
@@ -242,7 +243,17 @@ static void fits(tepor_session* session) {
     DONE(tepor_fit_march(session, r.body, 100.0, &steps, by, 1, timed, 3, NULL, &fitted));
     DONE(tepor_fitted_value(session, fitted, r.h, &e));
     NEAR(e.value, h, 0.01);
-    EXPECT(tepor_fitted_predict(session, fitted, outer, NULL, 0, &e) == TEPOR_NOT_SUPPORTED);
+    DONE(tepor_fitted_predict_at(session, fitted, outer, 9000.0, NULL, 0, &e));
+    NEAR(e.value, 20.0 + 80.0 * exp(-h * 9000.0 / 90000.0), 0.02);
+    EXPECT(e.uncertainty > 0.0 && tepor_fitted_predict_at(session, fitted, outer, -1.0, NULL, 0, &e) == TEPOR_OUTSIDE);
+    DONE(tepor_fitted_predict(session, fitted, outer, NULL, 0, &e));
+    NEAR(e.value, 20.0, 1e-9); /* at rest, with no power */
+    tepor_fitted_free(fitted);
+    steps.step = 0.0; /* adaptive */
+    steps.tolerance = 1e-3;
+    DONE(tepor_fit_march(session, r.body, 100.0, &steps, by, 1, timed, 3, NULL, &fitted));
+    DONE(tepor_fitted_value(session, fitted, r.h, &e));
+    NEAR(e.value, h, 0.01);
     tepor_fitted_free(fitted);
     tepor_quantity_free(outer);
     unmake(&r);

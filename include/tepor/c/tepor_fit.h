@@ -49,7 +49,7 @@ TEPOR_C_API tepor_fit_options tepor_fit_options_default(void);
 TEPOR_C_API tepor_status tepor_fit(tepor_session* session, const tepor_body* body, const tepor_fit_by* by,
                                    size_t by_count, const tepor_reading* readings, size_t reading_count,
                                    const tepor_fit_options* options, tepor_fitted** out);
-/* The same from readings over time, marched with fixed steps from one temperature [degC]. TEPOR_OUTSIDE: a reading before
+/* The same from readings over time, marched from one temperature [degC] with fixed or adaptive steps. TEPOR_OUTSIDE: a reading before
  * the start. */
 TEPOR_C_API tepor_status tepor_fit_march(tepor_session* session, const tepor_body* body, double temperature,
                                          const tepor_march_options* steps, const tepor_fit_by* by, size_t by_count,
@@ -68,10 +68,16 @@ typedef struct tepor_estimated {
 /* Of one fitted parameter. TEPOR_UNUSED. */
 TEPOR_C_API tepor_status tepor_fitted_value(tepor_session* session, const tepor_fitted* fitted,
                                             const tepor_parameter* parameter, tepor_estimated* out);
-/* Any quantity at the fitted parameters, under conditions (NULL and 0: none); steady fits. TEPOR_NOT_SUPPORTED. */
+/* Any quantity of the steady state at the fitted parameters, under conditions (NULL and 0: none). */
 TEPOR_C_API tepor_status tepor_fitted_predict(tepor_session* session, const tepor_fitted* fitted,
                                               const tepor_quantity* quantity, const tepor_condition* conditions,
                                               size_t count, tepor_estimated* out);
+
+/* The same at a time [s] of the march that was fitted, which may lie beyond the last reading. TEPOR_NOT_SUPPORTED: a fit of
+ * steady readings. TEPOR_OUTSIDE: before the start. */
+TEPOR_C_API tepor_status tepor_fitted_predict_at(tepor_session* session, const tepor_fitted* fitted,
+                                                 const tepor_quantity* quantity, double time,
+                                                 const tepor_condition* conditions, size_t count, tepor_estimated* out);
 
 /* How well model and readings agree. Set `size` to sizeof(tepor_agreement). */
 typedef struct tepor_agreement {

@@ -102,6 +102,37 @@ tepor_status tepor_tiles_mesh(tepor_session* session, const tepor_tiles* tiles, 
     return tepor_tiles_mesh_with(session, tiles, element, &meshing, frame, out);
 }
 
+tepor_status tepor_tiles_split_x(tepor_session* session, tepor_tiles* tiles, double from, double to, int64_t cells,
+                                 double grading) {
+    return tepor::c::run(session, tiles, [&] {
+        tiles->tiles.split_x({.from = from,
+                              .to = to,
+                              .cells = static_cast<tepor::Index>(cells),
+                              .grading = tepor::c::grading_of(grading)});
+    });
+}
+tepor_status tepor_tiles_split_y(tepor_session* session, tepor_tiles* tiles, double from, double to, int64_t cells,
+                                 double grading) {
+    return tepor::c::run(session, tiles, [&] {
+        tiles->tiles.split_y({.from = from,
+                              .to = to,
+                              .cells = static_cast<tepor::Index>(cells),
+                              .grading = tepor::c::grading_of(grading)});
+    });
+}
+tepor_status tepor_tiles_finer_x(tepor_session* session, tepor_tiles* tiles, double at, double size) {
+    return tepor::c::run(session, tiles, [&] { tiles->tiles.finer_x({.at = at, .size = size}); });
+}
+tepor_status tepor_tiles_finer_y(tepor_session* session, tepor_tiles* tiles, double at, double size) {
+    return tepor::c::run(session, tiles, [&] { tiles->tiles.finer_y({.at = at, .size = size}); });
+}
+tepor_status tepor_tiles_line_x(tepor_session* session, tepor_tiles* tiles, double at) {
+    return tepor::c::run(session, tiles, [&] { tiles->tiles.line_x(at); });
+}
+tepor_status tepor_tiles_line_y(tepor_session* session, tepor_tiles* tiles, double at) {
+    return tepor::c::run(session, tiles, [&] { tiles->tiles.line_y(at); });
+}
+
 tepor_status tepor_section_create(tepor_session* session, tepor_section** out) {
     return tepor::c::run(session, out, [&] { *out = new tepor_section; });
 }

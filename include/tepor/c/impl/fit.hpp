@@ -92,9 +92,12 @@ tepor_status tepor_fit_march(tepor_session* session, const tepor_body* body, dou
                 {tepor::c::quantity_of(readings[i]), readings[i].time, readings[i].value, readings[i].uncertainty});
         }
         const tepor_march_options o = tepor::c::options_of(steps);
-        *out = new tepor_fitted{tepor::fit(body->body, tepor::initial(temperature, tepor::c::phase_of(o)),
-                                           tepor::c::theta_of(o), tepor::c::fit_by_of(by, by_count), read,
-                                           tepor::c::fit_options_of(options))};
+        const tepor::Initial start = tepor::initial(temperature, tepor::c::phase_of(o));
+        const std::vector<tepor::FitBy> parameters = tepor::c::fit_by_of(by, by_count);
+        const tepor::FitOptions how = tepor::c::fit_options_of(options);
+        *out = new tepor_fitted{o.step != 0.0
+                                    ? tepor::fit(body->body, start, tepor::c::theta_of(o), parameters, read, how)
+                                    : tepor::fit(body->body, start, tepor::c::adaptive_of(o), parameters, read, how)};
     });
 }
 void tepor_fitted_free(tepor_fitted* fitted) {
@@ -110,6 +113,14 @@ tepor_status tepor_fitted_predict(tepor_session* session, const tepor_fitted* fi
     return tepor::c::run(session, fitted && quantity && out, [&] {
         tepor::c::give_estimated(fitted->fitted.predict(quantity->quantity, tepor::c::conditions_of(conditions, count)),
                                  out);
+    });
+}
+tepor_status tepor_fitted_predict_at(tepor_session* session, const tepor_fitted* fitted, const tepor_quantity* quantity,
+                                     double time, const tepor_condition* conditions, size_t count,
+                                     tepor_estimated* out) {
+    return tepor::c::run(session, fitted && quantity && out, [&] {
+        tepor::c::give_estimated(
+            fitted->fitted.predict_at(quantity->quantity, time, tepor::c::conditions_of(conditions, count)), out);
     });
 }
 tepor_status tepor_fitted_agreement(tepor_session* session, const tepor_fitted* fitted, tepor_agreement* out) {
