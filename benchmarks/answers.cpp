@@ -89,17 +89,41 @@ void march_100_steps_and_gradient(benchmark::State& state) {
 }
 BENCHMARK(march_100_steps_and_gradient)->Unit(benchmark::kMillisecond);
 
+/// The same with a heater driven by a controller: a new power at every step.
+void march_driven(benchmark::State& state, bool with_gradient) {
+    const Body body = plate(0.002);
+    for (auto _ : state) {
+        March march{body, initial(20.0), Theta{.theta = 0.5, .step = 2.0}};
+        const Input input = march.drive(heater_a);
+        if (with_gradient) march.record();
+        for (int i = 0; i < 100; ++i) {
+            march.set(input, 40.0 + 0.1 * i);
+            march.advance().require();
+        }
+        if (with_gradient)
+            benchmark::DoNotOptimize(gradient(march, probe).nodes().data());
+        else
+            benchmark::DoNotOptimize(march[probe]);
+    }
+}
+BENCHMARK_CAPTURE(march_driven, forward, false)->Unit(benchmark::kMillisecond);
+BENCHMARK_CAPTURE(march_driven, and_gradient, true)->Unit(benchmark::kMillisecond);
+
 void compact_plate(benchmark::State& state) {
     const Body body = plate(0.001);
     Index factorisations = 0;
     Index order = 0;
+    double bound = 0.0;
     for (auto _ : state) {
         const StateSpace model = compact(body, options());
         factorisations = model.factorisations;
         order = model.order;
+        bound = model.error_bound / model.peak_gain;
     }
     state.counters["factorisations"] = static_cast<double>(factorisations);
     state.counters["states"] = static_cast<double>(order);
+    state.counters["unknowns"] = static_cast<double>(body.model()->unknowns);
+    state.counters["bound_per_peak"] = bound;
 }
 BENCHMARK(compact_plate)->Unit(benchmark::kMillisecond);
 
