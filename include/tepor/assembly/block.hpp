@@ -52,9 +52,10 @@ struct CellBlock {
     // results of CellKernels::form
     int unresolved = -1; ///< exact cell laws: a cell whose coefficients the points cannot follow, -1 for none
     bool unresolved_source = false; ///< it is the source, not the conductivity
-    double* residual = nullptr;     ///< nodes: integral of k grad T . grad N_i + s N_i
-    double* matrix = nullptr;       ///< packed lower triangle, entry (i, j <= i) at i (i + 1) / 2 + j
-    double* slope = nullptr;        ///< nodes x nodes, row i: integral of k' N_j grad T . grad N_i
+    bool divided = false;       ///< set by who divides such cells: the coefficients at the points are those of a piece
+    double* residual = nullptr; ///< nodes: integral of k grad T . grad N_i + s N_i
+    double* matrix = nullptr;   ///< packed lower triangle, entry (i, j <= i) at i (i + 1) / 2 + j
+    double* slope = nullptr;    ///< nodes x nodes, row i: integral of k' N_j grad T . grad N_i
 };
 
 /// A block of sides; the same layout.

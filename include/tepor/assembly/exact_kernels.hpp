@@ -20,9 +20,10 @@ namespace tepor {
 ///
 /// Conductivity of temperature: with the mean of k between the nodes' temperatures in place of k it solves for the integral of k.
 ///
-/// All integrals use `points` Gauss points a cell (24, more with extra_degree). What they cannot resolve is not passed over:
-/// `form` names the cell in CellBlock::unresolved when the last Legendre coefficients of 1 / k or of the source are above 3e-7 of
-/// the largest value, which leaves about 1e-13 (their square) in the integrals.
+/// All integrals use 24 Gauss points a cell (more with extra_degree); two points more, at the ends, have no weight. What they cannot
+/// resolve is not passed over: `form` names the cell in CellBlock::unresolved when the last Legendre coefficients of 1 / k or of
+/// the source are above 3e-7 of the largest value, which leaves about 1e-13 (their square) in the integrals, or when the values at
+/// the ends are not those the points lead to, so that a jump close to an end is seen. The assembly then divides the cell.
 /// Cost per cell O(points^2); nothing is allocated.
 template <>
 class Kernels<ExactSegment> final : public CellKernels {
@@ -78,15 +79,16 @@ class Kernels<ExactSegment> final : public CellKernels {
     void shape_fin(const CellBlock& block, int c, Cell& cell) const noexcept;
     void shape_centre(CellBlock& block, int c, Cell& cell) const;
     void centre_rise(const Cell& cell, const double* source, double* rise) const noexcept;
-    void source_of(CellBlock& block, int c, double* source) const;
+    void source_of(CellBlock& block, int c, const Cell& cell, double* source) const;
     void loads(const CellBlock& block, int c, const Cell& cell, const double* source, double* load) const noexcept;
 
     int power_;
     double factor_;
-    std::vector<double> place_, weight_; ///< Gauss points on [0,1]
+    std::vector<double> place_, weight_; ///< Gauss points on [0,1], then both ends with no weight
     std::vector<double> running_;        ///< (q, p): integral of the Lagrange function of point p from 0 to point q
     std::vector<double> moment_;  ///< (q, p): integral of t^n times it at t * point q over t in [0,1]; radial frames
     std::vector<double> tail_[2]; ///< the last two Legendre coefficients
+    std::vector<double> end_[2];  ///< what the points say of the values at both ends
 };
 
 } // namespace tepor

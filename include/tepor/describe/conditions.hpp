@@ -90,7 +90,7 @@ struct Flux {
     Value out_of{};
 };
 
-/// A surface held at a temperature [degC].
+/// A surface held at a temperature [degC]. One that varies along the face is interpolated by the shape functions.
 struct FixedTemperature {
     Value temperature{};
 };

@@ -150,6 +150,14 @@ TEST_CASE("a cell whose points cannot follow k or the source is named, a steep o
     CHECK(!cell.block.unresolved_source);
     cell.form([](double x) { return 1.0 + std::abs(x - 0.3); }, one);
     CHECK(cell.block.unresolved == 0);
+    // beyond the outermost of the points that carry weight
+    cell.form([](double x) { return x < 0.999 ? 1.0 : 1.5; }, one);
+    CHECK(cell.block.unresolved == 0);
+    cell.form(one, [](double x) { return x < 1e-3 ? 1.0 : 1.5; });
+    CHECK(cell.block.unresolved == 0);
+    CHECK(cell.block.unresolved_source);
+    cell.form([](double x) { return x < 1.0 ? 1.0 : 1.5; }, one); // right at the end: the next cell's
+    CHECK(cell.block.unresolved == -1);
     cell.form(one, [](double x) { return std::exp(-500.0 * x); });
     CHECK(cell.block.unresolved == 0);
     CHECK(cell.block.unresolved_source);

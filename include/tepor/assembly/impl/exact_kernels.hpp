@@ -31,43 +31,55 @@ TEPOR_INLINE Kernels<ExactSegment>::Kernels(Frame frame, int extra_degree)
     nodes = sides = 2;
     side_nodes = side_points = 1;
     exact = true;
-    points = std::min(24 + std::max(extra_degree, 0) / 2, most_points);
-    const Rule<1> rule = gauss_legendre(points);
+    const int degree = std::min(24 + std::max(extra_degree, 0) / 2, most_points - 2);
+    points = degree + 2;
+    const Rule<1> rule = gauss_legendre(degree);
+    const auto g = detail::as_size(degree);
     const auto m = detail::as_size(points);
     for (Index q = 0; q < rule.size(); ++q) {
         place_.push_back(rule.point(q)[0]);
         weight_.push_back(rule.weight(q));
     }
+    for (const double end :
+         {1e-12, 1.0 - 1e-12}) { // just inside, for what jumps right at an end belongs to the next cell
+        place_.push_back(end);
+        weight_.push_back(0.0);
+    }
     // Lagrange functions of the points as Legendre sums: l_p = sum_n (2 n + 1) w_p P_n(x_p) P_n
-    std::vector<double> at_points(m * (m + 1));
-    for (std::size_t p = 0; p < m; ++p) detail::legendre_values(points, place_[p], &at_points[p * (m + 1)]);
+    std::vector<double> at_points(m * (g + 1));
+    for (std::size_t p = 0; p < m; ++p) detail::legendre_values(degree, place_[p], &at_points[p * (g + 1)]);
     running_.resize(m * m);
     for (std::size_t q = 0; q < m; ++q) {
-        const double* here = &at_points[q * (m + 1)];
+        const double* here = &at_points[q * (g + 1)];
         for (std::size_t p = 0; p < m; ++p) {
-            const double* there = &at_points[p * (m + 1)];
+            const double* there = &at_points[p * (g + 1)];
             double sum = place_[q];
-            for (std::size_t n = 1; n < m; ++n) sum += 0.5 * (here[n + 1] - here[n - 1]) * there[n]; // DLMF 18.17.1
+            for (std::size_t n = 1; n < g; ++n) sum += 0.5 * (here[n + 1] - here[n - 1]) * there[n]; // DLMF 18.17.1
             running_[q * m + p] = weight_[p] * sum;
         }
     }
     for (std::size_t t = 0; t < 2; ++t)
-        for (std::size_t p = 0; p < m; ++p) {
-            const std::size_t n = m - 1 - t;
-            tail_[t].push_back((2.0 * detail::as_double(n) + 1.0) * weight_[p] * at_points[p * (m + 1) + n]);
+        for (std::size_t p = 0; p < g; ++p) {
+            const std::size_t n = g - 1 - t;
+            tail_[t].push_back((2.0 * detail::as_double(n) + 1.0) * weight_[p] * at_points[p * (g + 1) + n]);
+            double lagrange = 0.0;
+            for (std::size_t i = 0; i < g; ++i)
+                lagrange +=
+                    (2.0 * detail::as_double(i) + 1.0) * at_points[p * (g + 1) + i] * at_points[(g + t) * (g + 1) + i];
+            end_[t].push_back(weight_[p] * lagrange);
         }
     if (power_ == 0) return;
     moment_.assign(m * m, 0.0);
-    std::vector<double> legendre(m + 1);
+    std::vector<double> legendre(g + 1);
     for (std::size_t q = 0; q < m; ++q)
         for (std::size_t j = 0; j < m; ++j) {
             const double t = place_[j];
-            detail::legendre_values(points, place_[q] * t, legendre.data());
+            detail::legendre_values(degree, place_[q] * t, legendre.data());
             const double w = weight_[j] * (power_ == 1 ? t : t * t);
             for (std::size_t p = 0; p < m; ++p) {
                 double lagrange = 0.0;
-                for (std::size_t n = 0; n < m; ++n)
-                    lagrange += (2.0 * detail::as_double(n) + 1.0) * at_points[p * (m + 1) + n] * legendre[n];
+                for (std::size_t n = 0; n < g; ++n)
+                    lagrange += (2.0 * detail::as_double(n) + 1.0) * at_points[p * (g + 1) + n] * legendre[n];
                 moment_[q * m + p] += w * weight_[p] * lagrange;
             }
         }
@@ -86,9 +98,18 @@ TEPOR_INLINE void Kernels<ExactSegment>::running(const double* density, double* 
 TEPOR_INLINE bool Kernels<ExactSegment>::resolved(const double* values) const noexcept {
     double largest = 0.0;
     double tail[2] = {0.0, 0.0};
-    for (int p = 0; p < points; ++p) {
+    double end[2] = {0.0, 0.0};
+    const int inner = points - 2;
+    for (int p = 0; p < inner; ++p) {
         largest = std::max(largest, std::abs(values[p]));
-        for (int t = 0; t < 2; ++t) tail[t] += tail_[t][detail::as_size(p)] * values[p];
+        for (int t = 0; t < 2; ++t) {
+            tail[t] += tail_[t][detail::as_size(p)] * values[p];
+            end[t] += end_[t][detail::as_size(p)] * values[p];
+        }
+    }
+    for (int t = 0; t < 2; ++t) {
+        const double there = values[inner + t];
+        if (!(std::abs(end[t] - there) <= 1e-5 * std::max(largest, std::abs(there)))) return false;
     }
     return std::max(std::abs(tail[0]), std::abs(tail[1])) <= 3e-7 * largest;
 }
@@ -175,7 +196,7 @@ TEPOR_INLINE void Kernels<ExactSegment>::shape_cell(CellBlock& block, int c, Cel
     for (int q = 0; q < points; ++q) {
         const int at = q * W + c;
         cell.measure[q] = measure(block.point_x[at]);
-        cell.jacobian[q] = block.weight[at] / (weight_[detail::as_size(q)] * cell.measure[q]);
+        cell.jacobian[q] = power_ > 0 && a > 0.0 ? std::log1p((b - a) / a) * block.point_x[at] : b - a;
         cell.k[q] = block.k_mean ? 1.0 : (block.k_uniform ? block.k[0][0] : block.k[0][at]);
     }
     if (block.sink > 0.0) return shape_fin(block, c, cell);
@@ -208,11 +229,11 @@ TEPOR_INLINE void Kernels<ExactSegment>::shape_cell(CellBlock& block, int c, Cel
 }
 
 /// The source at the points, and whether they follow it; one that depends on temperature is integrated as it comes.
-TEPOR_INLINE void Kernels<ExactSegment>::source_of(CellBlock& block, int c, double* source) const {
+TEPOR_INLINE void Kernels<ExactSegment>::source_of(CellBlock& block, int c, const Cell& cell, double* source) const {
     double density[most_points];
     for (int q = 0; q < points; ++q) {
         source[q] = block.source[q * W + c];
-        density[q] = source[q] * block.weight[q * W + c] / weight_[detail::as_size(q)];
+        density[q] = source[q] * cell.jacobian[q] * cell.measure[q];
     }
     if (!block.source_slope && block.unresolved < 0 && !resolved(density)) {
         block.unresolved = c;
@@ -267,7 +288,7 @@ TEPOR_INLINE void Kernels<ExactSegment>::form(CellBlock& block, Wanted wanted) c
         double source[most_points];
         double load[2] = {0.0, 0.0};
         if (block.source) {
-            source_of(block, c, source);
+            source_of(block, c, cell, source);
             if (cell.fin && cell.decay > 20.0 && block.unresolved < 0)
                 for (int q = 1; q < points; ++q)
                     if (source[q] != source[0] && !resolved(cell.phi[1])) {
@@ -339,7 +360,7 @@ TEPOR_INLINE void Kernels<ExactSegment>::profile(CellBlock& block, double* shape
         for (int q = 0; q < points; ++q) T[q] = cell.phi[0][q] * first + cell.phi[1][q] * second;
         if (block.source) {
             double source[most_points];
-            source_of(block, c, source);
+            source_of(block, c, cell, source);
             if (cell.centre && !block.source_slope) {
                 // the centre node has its own share of the source already: take the course from the outer node
                 double rise[most_points + 1];

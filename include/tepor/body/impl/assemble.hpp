@@ -205,16 +205,26 @@ class Assembler {
         }
         Accounts* const a = pass_.accounts;
         const std::size_t r = pass.region;
-        const double before = a ? a->generated[r] - a->side_loss[r] : 0.0;
+        const double generated = a ? a->generated[r] : 0.0;
+        const double side_loss = a ? a->side_loss[r] : 0.0;
+        const double traffic = pass_.source_traffic;
+        block.divided = false;
         if (pass.sources && !volume_terms(r, at, ids)) return false;
         Wanted wanted = pass.wanted;
         const bool sink_account = a && block.sink > 0.0;
         wanted.residual = wanted.residual || sink_account;
         kernel_.form(block, wanted);
-        if (kernel_.exact && block.unresolved >= 0) return unresolved(region, ids);
+        if (kernel_.exact && block.unresolved >= 0) {
+            if (a) {
+                a->generated[r] = generated;
+                a->side_loss[r] = side_loss;
+            }
+            pass_.source_traffic = traffic;
+            if (!form_divided(pass, wanted, ids)) return false;
+        }
         if (sink_account) {
             // all the cells give off, and what they generate, less what other side films take
-            double loss = a->generated[r] - a->side_loss[r] - before;
+            double loss = a->generated[r] - a->side_loss[r] - (generated - side_loss);
             for (int c = 0; c < block.count; ++c) loss += block.residual[c] + block.residual[W + c];
             a->side_loss[r] += loss;
         }
@@ -290,63 +300,9 @@ class Assembler {
         *sum += sign * total;
     }
 
-    void scatter(const CellBlock& block, Id first, Wanted wanted) {
-        const int n = kernel_.nodes;
-        const int pairs = n * (n + 1) / 2;
-        if (pass_.residual)
-            for (int b = 0; b < block.count; ++b) {
-                const Id* ids = model_.cell(first + b);
-                for (int i = 0; i < n; ++i) pass_.residual[ids[i]] += block.residual[i * W + b];
-            }
-        if (pass_.weights) weigh_cells(block, first, wanted);
-        if (!pass_.matrix) return;
-        double* lower = pass_.matrix->lower.data();
-        const Id* map = model_.scatter.data() + static_cast<Index>(first) * pairs;
-        for (int b = 0; b < block.count; ++b)
-            for (int p = 0; p < pairs; ++p) lower[map[b * pairs + p]] += block.matrix[p * W + b];
-        if (pass_.matrix->upper.empty()) return;
-        double* upper = pass_.matrix->upper.data();
-        for (int b = 0; b < block.count; ++b)
-            for (int p = 0; p < pairs; ++p) upper[map[b * pairs + p]] += block.matrix[p * W + b];
-        if (!wanted.slope) return;
-        for (int b = 0; b < block.count; ++b) {
-            const Id* ids = model_.cell(first + b);
-            int p = 0;
-            for (int i = 0; i < n; ++i)
-                for (int j = 0; j <= i; ++j, ++p) {
-                    const double ij = block.slope[(i * n + j) * W + b];
-                    const double ji = block.slope[(j * n + i) * W + b];
-                    const Id at = map[b * pairs + p];
-                    if (i == j) {
-                        lower[at] += ij;
-                        upper[at] += ij;
-                        continue;
-                    }
-                    const bool as_stored = ids[i] > ids[j]; // row i, column j is below the diagonal
-                    lower[at] += as_stored ? ij : ji;
-                    upper[at] += as_stored ? ji : ij;
-                }
-        }
-    }
-
-    void weigh_cells(const CellBlock& block, Id first, Wanted wanted) {
-        const int n = kernel_.nodes;
-        for (int b = 0; b < block.count; ++b) {
-            const Id* ids = model_.cell(first + b);
-            for (int i = 0; i < n; ++i) {
-                const double w = pass_.weights[ids[i]];
-                if (w == 0.0) continue;
-                pass_.weighted += w * block.residual[i * W + b];
-                if (!pass_.transposed) continue;
-                for (int j = 0; j < n; ++j) {
-                    const int pair = i > j ? i * (i + 1) / 2 + j : j * (j + 1) / 2 + i;
-                    double J = block.matrix[pair * W + b];
-                    if (wanted.slope) J += block.slope[(i * n + j) * W + b];
-                    pass_.transposed[ids[j]] += w * J;
-                }
-            }
-        }
-    }
+    // into the arrays of the pass: assemble_scatter.hpp
+    void scatter(const CellBlock& block, Id first, Wanted wanted);
+    void weigh_cells(const CellBlock& block, Id first, Wanted wanted);
 
     // sides and places: assemble_sides.hpp
     void face(const FaceModel& face, const SideList& sides, std::size_t first_term);
@@ -368,6 +324,25 @@ class Assembler {
     bool add_content(const RegionPass& pass, Id first, const Id* ids);
     double temperature_of(const Coefficient& k, double T, double rise, double* k_there);
 
+    // exact cells in pieces: assemble_divided.hpp
+    struct Piece {
+        double from = 0.0;
+        double to = 0.0;
+        double conductance = 0.0;    ///< couples its two nodes [W/K]
+        double loss[2] = {0.0, 0.0}; ///< couples each to the fluid [W/K]
+        double load[2] = {0.0, 0.0}; ///< residual at a temperature of zero [W]
+    };
+    struct Amounts {
+        double resistance = 0.0;
+        double source = 0.0;
+        bool by_source = false;
+    };
+    bool form_piece(const RegionPass& pass, double from, double to, const Id* ids);
+    bool divide(const RegionPass& pass, double from, double to, int depth, const Id* ids);
+    [[nodiscard]] static Piece joined(const Piece& left, const Piece& right) noexcept;
+    bool form_divided(const RegionPass& pass, Wanted wanted, const Id* ids);
+    bool add_divided_content(const RegionPass& pass, Id first, const Id* ids);
+
     const Model& model_;
     const CellKernels& kernel_;
     const double* slots_;
@@ -376,6 +351,9 @@ class Assembler {
     Workspace& work_;
     Pass& pass_;
     std::vector<double> shape_;
+    std::vector<Piece> pieces_;
+    std::size_t first_piece_[W + 1] = {}; ///< of each cell of the block
+    Amounts seen_, total_, rough_;        ///< largest in one piece, in all, in those taken as they come
 };
 
 } // namespace detail
@@ -394,5 +372,7 @@ TEPOR_INLINE Fault form_cells(const Model& model, const Values& values, Workspac
 
 } // namespace tepor
 
+#include <tepor/body/impl/assemble_divided.hpp>
 #include <tepor/body/impl/assemble_exact.hpp>
+#include <tepor/body/impl/assemble_scatter.hpp>
 #include <tepor/body/impl/assemble_sides.hpp>

@@ -69,6 +69,7 @@ inline bool Assembler::unresolved(const RegionModel& region, const Id* ids) {
 
 /// Integral of T over the block, as the cells themselves have it.
 inline bool Assembler::add_content(const RegionPass& pass, Id first, const Id* ids) {
+    if (work_.cells.divided) return add_divided_content(pass, first, ids);
     CellBlock& block = work_.cells;
     const int n = kernel_.nodes;
     shape_.resize(as_size(kernel_.points * n * W));

@@ -118,6 +118,7 @@ inline void climb_exact(const Model& model, const Values& values, const double* 
         if (const Fault fault = form_cells(model, values, work, {}, region, ids, wanted)) raise(fault);
         for (int b = 0; b < block.count; ++b) {
             bool possible = direction * block.residual[b] < 0.0 && direction * block.residual[block_width + b] < 0.0;
+            possible = possible || (block.source && block.divided);
             if (block.source)
                 for (int q = 1; q < model.kernels->points; ++q)
                     possible = possible || block.source[q * block_width + b] != block.source[b];
