@@ -22,7 +22,7 @@ struct NamedSize {
 struct Meshing {
     double size = 0.0;           ///< everywhere [m]; 0 takes a 40th of the drawing's diagonal
     std::vector<NamedSize> in{}; ///< by region
-    std::vector<NamedSize> on{}; ///< along faces named by points, by the edge of a shape or by a cut
+    std::vector<NamedSize> on{}; ///< along faces; an edge that passes the test of a face in part is sized as a whole
     SizeLaw law{};               ///< by place, asked at nodes: details much smaller than `size` can be missed
     double growth =
         0.3; ///< sizes grow by at most this much per unit of distance, so neighbouring sides by about 1 to 1.3

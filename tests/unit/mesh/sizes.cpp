@@ -79,6 +79,30 @@ TEST_CASE("the smallest of the sizes that apply counts, in regions, on faces and
     CHECK(by_place.cell_count() < 6000);
 }
 
+TEST_CASE("faces named by a test and what is left over take sizes too, straight and on arcs") {
+    Section section;
+    section.add("plate", rectangle({0, 0}, {2, 1}));
+    section.cut(circle({1.4, 0.5}, 0.2));
+    section.face("hot", {0, 0}, {0, 1});
+    section.face("top", [](Point p) { return p.y > 1.0 - 1e-9; });
+    section.rest("air");
+    const auto on_top = [](Point p) { return p.y > 1.0 - 1e-9; };
+    const auto on_hot = [](Point p) { return p.x < 1e-9; };
+    const auto on_base = [](Point p) { return p.y < 1e-9; };
+    const auto on_hole = [](Point p) { return distance(p, {1.4, 0.5}) < 0.2001; };
+    const auto plain = triangulate<Triangle<1>>(section, {.size = 0.25});
+    const auto by_test = triangulate<Triangle<1>>(section, {.size = 0.25, .on = {{"top", 0.02}}});
+    CHECK(verify(by_test).problem == "");
+    CHECK(lengths(by_test, on_top).longest <= 0.0201);
+    CHECK(lengths(by_test, on_base).mean >= 0.8 * lengths(plain, on_base).mean);
+    const auto by_rest = triangulate<Triangle<1>>(section, {.size = 0.25, .on = {{"air", 0.02}}});
+    CHECK(verify(by_rest).problem == "");
+    CHECK(lengths(by_rest, on_base).longest <= 0.0201);
+    CHECK(lengths(by_rest, on_hole).longest <= 0.0201);
+    CHECK(lengths(by_rest, on_top).mean >= 0.05); // taken by a test
+    CHECK(lengths(by_rest, on_hot).mean >= 0.05); // and by points
+}
+
 TEST_CASE("sizes grow by no more than the growth allows") {
     // From a size of 0.01 on one face, at distance d sides are at most about 0.01 + growth d.
     Section section;
@@ -134,6 +158,5 @@ TEST_CASE("options outside their range are refused by name and value") {
     refused({.size = 0.1, .deviation = -1.0}, "deviation = -1");
     refused({.size = 0.1, .in = {{"plate", 0.0}}}, "size for \"plate\" = 0");
     refused({.size = 0.1, .on = {{"floor", 0.1}}}, "size for face \"floor\", expected one of \"air\"");
-    refused({.size = 0.1, .on = {{"air", 0.1}}}, "use a law of place");
     refused({.size = 0.1, .law = [](Point p) { return p.x - 0.5; }}, "expected a finite size > 0");
 }

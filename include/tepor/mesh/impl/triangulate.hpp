@@ -33,6 +33,37 @@ TEPOR_INLINE void validate(const Meshing& m) {
                             text("Meshing: size for \"", s.name, "\" = ", s.size, ", expected > 0 [m]"));
 }
 
+/// Places along an edge of the graph, ends included.
+TEPOR_INLINE std::vector<Point> places_along(const PlaneGraph& graph, const PlaneGraph::Edge& e) {
+    constexpr int count = 33;
+    std::vector<Point> out;
+    const Point a = graph.points[as_size(e.a)], b = graph.points[as_size(e.b)];
+    for (int i = 0; i < count; ++i) {
+        const double t = static_cast<double>(i) / (count - 1);
+        out.push_back(e.arc < 0 ? (1.0 - t) * a + t * b : on_arc(graph.arcs[as_size(e.arc)], a, b, t));
+    }
+    return out;
+}
+
+/// Sizes of faces by test and of the rest for an outer edge: a test that passes on a part of the edge sizes all of it, and what
+/// no face and no test takes in full is rest.
+TEPOR_INLINE void size_by_place(const Section& section, const Picture& picture, const std::vector<double>& face_size,
+                                PlaneGraph::Edge& e) {
+    const auto size_of = [&](const std::string& name) {
+        return face_size[as_size(std::find(picture.faces.begin(), picture.faces.end(), name) - picture.faces.begin())];
+    };
+    const std::vector<Point> places = places_along(picture.graph, e);
+    bool taken = e.face_set >= 0;
+    for (const auto& face : section.faces()) {
+        if (face.kind != Section::Face::Kind::test) continue;
+        const auto passed = std::count_if(places.begin(), places.end(), face.test);
+        if (passed > 1) e.size = std::min(e.size, size_of(face.name)); // a corner alone is no part
+        taken = taken || passed == static_cast<std::ptrdiff_t>(places.size());
+    }
+    for (const auto& face : section.faces())
+        if (face.kind == Section::Face::Kind::rest && !taken) e.size = std::min(e.size, size_of(face.name));
+}
+
 /// Sizes of regions and edges from the options.
 TEPOR_INLINE Targets make_targets(const Meshing& meshing, const Section& section, Picture& picture) {
     PlaneGraph& graph = picture.graph;
@@ -59,12 +90,6 @@ TEPOR_INLINE Targets make_targets(const Meshing& meshing, const Section& section
         if (f == picture.faces.size())
             throw Error(ErrorCode::bad_name, s.name,
                         text("Meshing: size for face \"", s.name, "\", expected one of ", quoted_list(picture.faces)));
-        for (const auto& face : section.faces())
-            if (face.name == s.name &&
-                (face.kind == Section::Face::Kind::test || face.kind == Section::Face::Kind::rest))
-                throw Error(ErrorCode::not_supported, s.name,
-                            text("Meshing: face \"", s.name,
-                                 "\" is known only once the mesh is made; use a law of place for sizes there"));
         face_size[f] = std::min(face_size[f], s.size);
     }
     for (auto& e : graph.edges) {
@@ -73,6 +98,7 @@ TEPOR_INLINE Targets make_targets(const Meshing& meshing, const Section& section
             if (r >= 0) e.size = std::min(e.size, targets.region_size[as_size(r)]);
         if (e.face_set >= 0)
             for (Id f : graph.face_sets[as_size(e.face_set)]) e.size = std::min(e.size, face_size[as_size(f)]);
+        if (!meshing.on.empty() && (e.left < 0 || e.right < 0)) size_by_place(section, picture, face_size, e);
     }
     return targets;
 }
