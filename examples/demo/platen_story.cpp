@@ -2,6 +2,7 @@
 // matters), fitted to the record of its first warm-up, and controlled by a PI law tried on a small model and on the whole body.
 
 #include "inputs.hpp"
+#include "pictures.hpp"
 #include <algorithm>
 #include <cmath>
 #include <cstdint>
@@ -236,6 +237,12 @@ int main() {
     double apart = 0.0;
     for (std::size_t k = 0; k < by_small.readings.size(); ++k)
         apart = std::max(apart, std::abs(by_small.readings[k] - by_body.readings[k]));
+    Record chart({sensor.named("small model"), sensor.named("whole body")});
+    for (std::size_t k = 0; k < by_small.readings.size(); ++k)
+        chart.add(static_cast<double>(k + 1) * step, {by_small.readings[k], by_body.readings[k]});
+    demo::picture("platen_story_controlled",
+                  strip_svg(chart, {.title = "Sensor of the platen under the PI law, from cold"}));
+    demo::picture("platen_story_designed", map_svg(steady(model), {.title = "Platen at the power found, steady"}));
     fmt::print("\n{:<32}{:>14}{:>14}\n", "From cold, limited to 6000 W", "small model", "whole body");
     fmt::print("{:<32}{:>12.0f} s{:>12.0f} s\n", "within 1 K of the set point", by_small.reached, by_body.reached);
     fmt::print("{:<32}{:>12.2f} K{:>12.2f} K\n", "overshoot at the sensor", by_small.peak - goal, by_body.peak - goal);
