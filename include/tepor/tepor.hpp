@@ -73,6 +73,7 @@
 #include <tepor/assembly/kernels.hpp>
 #include <tepor/assembly/kernels_cells.hpp>
 #include <tepor/assembly/kernels_chain.hpp>
+#include <tepor/assembly/kernels_maps.hpp>
 #include <tepor/assembly/kernels_sides.hpp>
 
 #include <tepor/linear/banded.hpp>

@@ -21,6 +21,8 @@ struct Wanted {
 /// arrays out. All arrays belong to the Workspace that lends them.
 struct CellBlock {
     int count = 0; ///< cells that are meant, the rest is padding
+    /// CellKernels::open may leave out point_T, and the gradients at all points but the first where they are the same at all.
+    bool brief = false;
 
     // at nodes, set by the caller
     double* x = nullptr;

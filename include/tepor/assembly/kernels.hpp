@@ -150,6 +150,7 @@ class Kernels final : public CellKernels {
                            double* weight) const;
     void map_segments(CellBlock& block) const;
     void map_plane(CellBlock& block) const;
+    void map_triangles(CellBlock& block) const;
     void add_conduction(CellBlock& block, Wanted wanted) const;
     void sum_conductivity(int count, const double* weight, int stride, const double* k, double k_value,
                           double* total) const;
@@ -167,4 +168,5 @@ class Kernels final : public CellKernels {
 #include <tepor/assembly/exact_kernels.hpp>
 #include <tepor/assembly/kernels_cells.hpp>
 #include <tepor/assembly/kernels_chain.hpp>
+#include <tepor/assembly/kernels_maps.hpp>
 #include <tepor/assembly/kernels_sides.hpp>

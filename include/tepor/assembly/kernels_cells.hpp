@@ -5,144 +5,20 @@
 
 namespace tepor {
 
-/// Place and weight of quadrature point q of straight two-node segments.
-template <Element E>
-void Kernels<E>::map_segment_point(int q, int count, const double* TEPOR_RESTRICT left,
-                                   const double* TEPOR_RESTRICT right, double* TEPOR_RESTRICT place,
-                                   double* TEPOR_RESTRICT weight) const {
-    const double n0 = shape_[detail::as_size(q * N)];
-    const double n1 = shape_[detail::as_size(q * N + 1)];
-    const double w = rule_weight_[detail::as_size(q)];
-    if (power_ == 0) {
-        const double size = w * factor_;
-        for (int c = 0; c < count; ++c) {
-            place[c] = n0 * left[c] + n1 * right[c];
-            weight[c] = size * (right[c] - left[c]);
-        }
-        return;
-    }
-    for (int c = 0; c < count; ++c) {
-        place[c] = n0 * left[c] + n1 * right[c];
-        weight[c] = w * (right[c] - left[c]) * measure(place[c]);
-    }
-}
-
-template <Element E>
-void Kernels<E>::map_segments(CellBlock& block) const {
-    const double* TEPOR_RESTRICT x = block.x;
-    if constexpr (constant_gradient) {
-        // one division per cell; the gradients of the first point serve all
-        double* TEPOR_RESTRICT left = block.gradient_x;
-        double* TEPOR_RESTRICT right = block.gradient_x + W;
-        for (int c = 0; c < W; ++c) {
-            right[c] = 1.0 / (x[W + c] - x[c]);
-            left[c] = -right[c];
-        }
-        for (int q = 0; q < points; ++q) {
-            map_segment_point(q, W, x, x + W, block.point_x + q * W, block.weight + q * W);
-            if (q > 0)
-                for (int i = 0; i < 2 * W; ++i) block.gradient_x[q * 2 * W + i] = block.gradient_x[i];
-        }
-        return;
-    }
-    for (int q = 0; q < points; ++q) {
-        const double* n = shape_.data() + static_cast<Index>(q) * N;
-        const double* g = reference_gradient_.data() + static_cast<Index>(q) * N;
-        double* TEPOR_RESTRICT px = block.point_x + q * W;
-        double* TEPOR_RESTRICT weight = block.weight + q * W;
-        double jacobian[W];
-        for (int c = 0; c < W; ++c) px[c] = jacobian[c] = 0.0;
-        for (int i = 0; i < N; ++i)
-            for (int c = 0; c < W; ++c) {
-                px[c] += n[i] * x[i * W + c];
-                jacobian[c] += g[i] * x[i * W + c];
-            }
-        const double w = rule_weight_[detail::as_size(q)];
-        for (int c = 0; c < W; ++c) weight[c] = w * jacobian[c] * measure(px[c]);
-        for (int i = 0; i < N; ++i) {
-            double* TEPOR_RESTRICT gx = block.gradient_x + (q * N + i) * W;
-            for (int c = 0; c < W; ++c) gx[c] = g[i] / jacobian[c];
-        }
-    }
-}
-
-template <Element E>
-void Kernels<E>::map_plane(CellBlock& block) const {
-    const double* TEPOR_RESTRICT x = block.x;
-    const double* TEPOR_RESTRICT y = block.y;
-    for (int q = 0; q < points; ++q) {
-        const double* n = shape_.data() + static_cast<Index>(q) * N;
-        const double* g = reference_gradient_.data() + static_cast<Index>(q) * 2 * N;
-        double* TEPOR_RESTRICT px = block.point_x + q * W;
-        double* TEPOR_RESTRICT py = block.point_y + q * W;
-        for (int c = 0; c < W; ++c) px[c] = py[c] = 0.0;
-        for (int i = 0; i < N; ++i)
-            for (int c = 0; c < W; ++c) {
-                px[c] += n[i] * x[i * W + c];
-                py[c] += n[i] * y[i * W + c];
-            }
-        double* TEPOR_RESTRICT weight = block.weight + q * W;
-        const double w = rule_weight_[detail::as_size(q)];
-        if (constant_gradient && q > 0) {
-            const double ratio = w / rule_weight_[0];
-            if (power_ == 0)
-                for (int c = 0; c < W; ++c) weight[c] = ratio * block.weight[c];
-            else
-                for (int c = 0; c < W; ++c) weight[c] = ratio * block.weight[c] * (px[c] / block.point_x[c]);
-            for (int i = 0; i < N * W; ++i) {
-                block.gradient_x[q * N * W + i] = block.gradient_x[i];
-                block.gradient_y[q * N * W + i] = block.gradient_y[i];
-            }
-            continue;
-        }
-        double xx[W];
-        double xe[W];
-        double yx[W];
-        double ye[W];
-        double inverse[W];
-        for (int c = 0; c < W; ++c) xx[c] = xe[c] = yx[c] = ye[c] = 0.0;
-        for (int i = 0; i < N; ++i)
-            for (int c = 0; c < W; ++c) {
-                xx[c] += g[2 * i] * x[i * W + c];
-                xe[c] += g[2 * i + 1] * x[i * W + c];
-                yx[c] += g[2 * i] * y[i * W + c];
-                ye[c] += g[2 * i + 1] * y[i * W + c];
-            }
-        for (int c = 0; c < W; ++c) {
-            const double jacobian = xx[c] * ye[c] - xe[c] * yx[c];
-            weight[c] = w * jacobian * measure(px[c]);
-            inverse[c] = 1.0 / jacobian;
-        }
-        for (int i = 0; i < N; ++i) {
-            double* TEPOR_RESTRICT gx = block.gradient_x + (q * N + i) * W;
-            double* TEPOR_RESTRICT gy = block.gradient_y + (q * N + i) * W;
-            for (int c = 0; c < W; ++c) {
-                gx[c] = (ye[c] * g[2 * i] - yx[c] * g[2 * i + 1]) * inverse[c];
-                gy[c] = (xx[c] * g[2 * i + 1] - xe[c] * g[2 * i]) * inverse[c];
-            }
-        }
-    }
-}
-
-template <Element E>
-void Kernels<E>::open(CellBlock& block) const {
-    if constexpr (E::dim == 1) {
-        map_segments(block);
-    } else {
-        map_plane(block);
-    }
-    profile(block, nullptr);
-}
-
 template <Element E>
 void Kernels<E>::form(CellBlock& block, Wanted wanted) const {
     if (wanted.residual)
         for (int i = 0; i < N * W; ++i) block.residual[i] = 0.0;
-    if (wanted.matrix)
+    // constant gradients and one conductivity: the matrix is set, not added to
+    const bool uniform = constant_gradient && block.conductivities == 1 && !wanted.slope;
+    if (wanted.matrix && !uniform)
         for (int i = 0; i < N * (N + 1) / 2 * W; ++i) block.matrix[i] = 0.0;
     if (wanted.slope)
         for (int i = 0; i < N * N * W; ++i) block.slope[i] = 0.0;
-    if (block.conductivities > 0) add_conduction(block, wanted);
+    if (uniform)
+        add_uniform_conduction(block, wanted);
+    else if (block.conductivities > 0)
+        add_conduction(block, wanted);
     if (block.source) add_source(block, wanted);
 }
 
@@ -172,16 +48,31 @@ void Kernels<E>::add_uniform_conduction(CellBlock& block, Wanted wanted) const {
     const double* TEPOR_RESTRICT gx = block.gradient_x;
     const double* TEPOR_RESTRICT gy = block.gradient_y;
     if (wanted.matrix) {
-        int pair = 0;
+        // the gradients of a cell add up to zero, so its rows do
         for (int i = 0; i < N; ++i)
-            for (int j = 0; j <= i; ++j, ++pair) {
-                double* TEPOR_RESTRICT m = block.matrix + pair * W;
+            for (int j = 0; j < i; ++j) {
+                double* TEPOR_RESTRICT m = block.matrix + (i * (i + 1) / 2 + j) * W;
                 if constexpr (E::dim == 1)
-                    for (int c = 0; c < W; ++c) m[c] += total[c] * (gx[i * W + c] * gx[j * W + c]);
+                    for (int c = 0; c < W; ++c) m[c] = total[c] * (gx[i * W + c] * gx[j * W + c]);
                 else
                     for (int c = 0; c < W; ++c)
-                        m[c] += total[c] * (gx[i * W + c] * gx[j * W + c] + gy[i * W + c] * gy[j * W + c]);
+                        m[c] = total[c] * (gx[i * W + c] * gx[j * W + c] + gy[i * W + c] * gy[j * W + c]);
             }
+        const auto at = [&block](int i, int j) {
+            return block.matrix + (i > j ? i * (i + 1) / 2 + j : j * (j + 1) / 2 + i) * W;
+        };
+        for (int i = 0; i < N; ++i) {
+            double* TEPOR_RESTRICT m = at(i, i);
+            if constexpr (N == 2) {
+                const double* TEPOR_RESTRICT other = at(i, 1 - i);
+                for (int c = 0; c < W; ++c) m[c] = -other[c];
+            } else {
+                static_assert(!constant_gradient || N == 3);
+                const double* TEPOR_RESTRICT one = at(i, (i + 1) % N);
+                const double* TEPOR_RESTRICT two = at(i, (i + 2) % N);
+                for (int c = 0; c < W; ++c) m[c] = -(one[c] + two[c]);
+            }
+        }
     }
     if (wanted.residual) {
         double tx[W];
@@ -205,8 +96,6 @@ void Kernels<E>::add_uniform_conduction(CellBlock& block, Wanted wanted) const {
 template <Element E>
 void Kernels<E>::add_conduction(CellBlock& block, Wanted wanted) const {
     const bool isotropic = block.conductivities == 1;
-    if constexpr (constant_gradient)
-        if (isotropic && !wanted.slope) return add_uniform_conduction(block, wanted);
     const bool two = E::dim == 2;
     constexpr auto entries = detail::as_size(N * W);
     double ax[entries]; // k grad N_i at a point, times its weight
@@ -215,8 +104,9 @@ void Kernels<E>::add_conduction(CellBlock& block, Wanted wanted) const {
     double ty[W];
     for (int q = 0; q < points; ++q) {
         const double* TEPOR_RESTRICT weight = block.weight + q * W;
-        const double* TEPOR_RESTRICT gx = block.gradient_x + q * N * W;
-        const double* TEPOR_RESTRICT gy = block.gradient_y + q * N * W;
+        const int from = constant_gradient ? 0 : q * N * W;
+        const double* TEPOR_RESTRICT gx = block.gradient_x + from;
+        const double* TEPOR_RESTRICT gy = block.gradient_y + from;
         double kxx[W];
         double kyy[W];
         double kxy[W];

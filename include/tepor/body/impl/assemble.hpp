@@ -120,7 +120,8 @@ class Assembler {
         std::size_t region = 0;
         bool sources = false;
         bool k_slope = false;
-        bool own_mean = false; ///< conductivity of temperature in an exact cell
+        bool own_mean = false;       ///< conductivity of temperature in an exact cell
+        bool by_temperature = false; ///< some coefficient is
         Wanted wanted;
     };
 
@@ -167,6 +168,7 @@ class Assembler {
         }
         block.source = pass.sources ? work_.coefficient[6] : nullptr;
         block.source_slope = by_temperature ? work_.coefficient[7] : nullptr;
+        pass.by_temperature = by_temperature || pass.k_slope;
         return pass;
     }
 
@@ -179,9 +181,16 @@ class Assembler {
         wanted.matrix = wants_matrix();
         const RegionPass pass = prepare(r, wanted);
         if (pass_.fault) return;
+        struct Reset { // whatever a law throws, others find the block as they expect it
+            bool& flag;
+            ~Reset() { flag = false; }
+        } const reset{block.brief};
+        block.brief = !pass.by_temperature && !pass_.content && !kernel_.exact;
+        // a linear cell's temperatures enter its residual alone
+        const double* T = block.brief && !wanted.residual ? nullptr : pass_.T;
         Id ids[W];
         for (Id c = region.first_cell; c < region.last_cell; c += W) {
-            block.count = gather_cells(model_, place_, pass_.T, work_.nodal_T, c, region.last_cell, block, ids);
+            block.count = gather_cells(model_, place_, T, work_.nodal_T, c, region.last_cell, block, ids);
             if (!form_block(pass, ids)) return;
             scatter(block, c, pass.wanted);
             if (pass_.content && !add_content(pass, c, ids)) return;
@@ -193,8 +202,8 @@ class Assembler {
         const RegionModel& region = model_.regions[pass.region];
         CellBlock& block = work_.cells;
         kernel_.open(block);
-        const Points at{static_cast<Index>(kernel_.points) * W, block.T ? block.point_T : nullptr, nullptr,
-                        block.point_x, block.point_y};
+        const Points at{static_cast<Index>(kernel_.points) * W, block.T && !block.brief ? block.point_T : nullptr,
+                        nullptr, block.point_x, block.point_y};
         if (pass.own_mean) {
             if (!mean_conductivity(region.k[0], ids)) return false;
         } else if (!block.k_uniform) {
@@ -300,8 +309,9 @@ class Assembler {
         *sum += sign * total;
     }
 
-    // into the arrays of the pass: assemble_scatter.hpp
+    // from the block into the system: assemble_scatter.hpp
     void scatter(const CellBlock& block, Id first, Wanted wanted);
+    void add_matrices(const CellBlock& block, const Id* map, double* to) const;
     void weigh_cells(const CellBlock& block, Id first, Wanted wanted);
 
     // sides and places: assemble_sides.hpp

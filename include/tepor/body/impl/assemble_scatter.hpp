@@ -1,6 +1,7 @@
 #pragma once
-// Where the arrays of a block of cells go: residual, matrix, weighted sums.
+// Cell arrays into the residual, the matrix and the functionals of a pass.
 
+#include <tepor/body/gather.hpp>
 #include <tepor/body/impl/assemble.hpp>
 
 namespace tepor::detail {
@@ -9,20 +10,22 @@ inline void Assembler::scatter(const CellBlock& block, Id first, Wanted wanted) 
     const int n = kernel_.nodes;
     const int pairs = n * (n + 1) / 2;
     if (pass_.residual)
-        for (int b = 0; b < block.count; ++b) {
-            const Id* ids = model_.cell(first + b);
-            for (int i = 0; i < n; ++i) pass_.residual[ids[i]] += block.residual[i * W + b];
-        }
+        with_nodes(n, [&](auto nodes) {
+            const int N = nodes;
+            double* residual = pass_.residual;
+            const double* TEPOR_RESTRICT from = block.residual;
+            const Id* TEPOR_RESTRICT ids = model_.cell(first);
+            for (int b = 0; b < block.count; ++b, ids += N)
+                for (int i = 0; i < N; ++i) residual[ids[i]] += from[i * W + b];
+        });
     if (pass_.weights) weigh_cells(block, first, wanted);
     if (!pass_.matrix) return;
-    double* lower = pass_.matrix->lower.data();
     const Id* map = model_.scatter.data() + static_cast<Index>(first) * pairs;
-    for (int b = 0; b < block.count; ++b)
-        for (int p = 0; p < pairs; ++p) lower[map[b * pairs + p]] += block.matrix[p * W + b];
+    add_matrices(block, map, pass_.matrix->lower.data());
     if (pass_.matrix->upper.empty()) return;
+    double* lower = pass_.matrix->lower.data();
     double* upper = pass_.matrix->upper.data();
-    for (int b = 0; b < block.count; ++b)
-        for (int p = 0; p < pairs; ++p) upper[map[b * pairs + p]] += block.matrix[p * W + b];
+    add_matrices(block, map, upper);
     if (!wanted.slope) return;
     for (int b = 0; b < block.count; ++b) {
         const Id* ids = model_.cell(first + b);
@@ -42,6 +45,16 @@ inline void Assembler::scatter(const CellBlock& block, Id first, Wanted wanted) 
                 upper[at] += as_stored ? ji : ij;
             }
     }
+}
+
+/// The cell matrices to their places in one triangle.
+inline void Assembler::add_matrices(const CellBlock& block, const Id* TEPOR_RESTRICT map, double* to) const {
+    with_nodes(kernel_.nodes, [&](auto nodes) {
+        const int pairs = nodes * (nodes + 1) / 2;
+        const double* TEPOR_RESTRICT from = block.matrix;
+        for (int b = 0; b < block.count; ++b, map += pairs)
+            for (int p = 0; p < pairs; ++p) to[map[p]] += from[p * W + b];
+    });
 }
 
 inline void Assembler::weigh_cells(const CellBlock& block, Id first, Wanted wanted) {

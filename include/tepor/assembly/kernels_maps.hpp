@@ -1,0 +1,200 @@
+#pragma once
+// The maps of Kernels<E>: places, weights and gradients at the quadrature points; included by kernels.hpp.
+
+#include <tepor/assembly/kernels.hpp>
+
+namespace tepor {
+
+/// Place and weight of quadrature point q of straight two-node segments.
+template <Element E>
+void Kernels<E>::map_segment_point(int q, int count, const double* TEPOR_RESTRICT left,
+                                   const double* TEPOR_RESTRICT right, double* TEPOR_RESTRICT place,
+                                   double* TEPOR_RESTRICT weight) const {
+    const double n0 = shape_[detail::as_size(q * N)];
+    const double n1 = shape_[detail::as_size(q * N + 1)];
+    const double w = rule_weight_[detail::as_size(q)];
+    if (power_ == 0) {
+        const double size = w * factor_;
+        for (int c = 0; c < count; ++c) {
+            place[c] = n0 * left[c] + n1 * right[c];
+            weight[c] = size * (right[c] - left[c]);
+        }
+        return;
+    }
+    for (int c = 0; c < count; ++c) {
+        place[c] = n0 * left[c] + n1 * right[c];
+        weight[c] = w * (right[c] - left[c]) * measure(place[c]);
+    }
+}
+
+template <Element E>
+void Kernels<E>::map_segments(CellBlock& block) const {
+    const double* TEPOR_RESTRICT x = block.x;
+    if constexpr (constant_gradient) {
+        // one division per cell; the gradients of the first point serve all
+        double* TEPOR_RESTRICT left = block.gradient_x;
+        double* TEPOR_RESTRICT right = block.gradient_x + W;
+        for (int c = 0; c < W; ++c) {
+            right[c] = 1.0 / (x[W + c] - x[c]);
+            left[c] = -right[c];
+        }
+        for (int q = 0; q < points; ++q) {
+            map_segment_point(q, W, x, x + W, block.point_x + q * W, block.weight + q * W);
+            if (q > 0 && !block.brief)
+                for (int i = 0; i < 2 * W; ++i) block.gradient_x[q * 2 * W + i] = block.gradient_x[i];
+        }
+        return;
+    }
+    for (int q = 0; q < points; ++q) {
+        const double* n = shape_.data() + static_cast<Index>(q) * N;
+        const double* g = reference_gradient_.data() + static_cast<Index>(q) * N;
+        double* TEPOR_RESTRICT px = block.point_x + q * W;
+        double* TEPOR_RESTRICT weight = block.weight + q * W;
+        double jacobian[W];
+        for (int c = 0; c < W; ++c) px[c] = jacobian[c] = 0.0;
+        for (int i = 0; i < N; ++i)
+            for (int c = 0; c < W; ++c) {
+                px[c] += n[i] * x[i * W + c];
+                jacobian[c] += g[i] * x[i * W + c];
+            }
+        const double w = rule_weight_[detail::as_size(q)];
+        for (int c = 0; c < W; ++c) weight[c] = w * jacobian[c] * measure(px[c]);
+        for (int i = 0; i < N; ++i) {
+            double* TEPOR_RESTRICT gx = block.gradient_x + (q * N + i) * W;
+            for (int c = 0; c < W; ++c) gx[c] = g[i] / jacobian[c];
+        }
+    }
+}
+
+/// Straight triangles of three nodes: one Jacobian and one set of gradients per cell.
+template <Element E>
+void Kernels<E>::map_triangles(CellBlock& block) const {
+    const double* TEPOR_RESTRICT x = block.x;
+    const double* TEPOR_RESTRICT y = block.y;
+    const double* g = reference_gradient_.data();
+    double twice[W]; // the area
+    double xx[W];    // derivatives of the map, over the Jacobian
+    double xe[W];
+    double yx[W];
+    double ye[W];
+    // the functions add up to 1, so their gradients to zero: the first follows from the others
+    const double g1x = g[2];
+    const double g1y = g[3];
+    const double g2x = g[4];
+    const double g2y = g[5];
+    for (int c = 0; c < W; ++c) {
+        const double x1 = x[W + c] - x[c];
+        const double x2 = x[2 * W + c] - x[c];
+        const double y1 = y[W + c] - y[c];
+        const double y2 = y[2 * W + c] - y[c];
+        xx[c] = g1x * x1 + g2x * x2;
+        xe[c] = g1y * x1 + g2y * x2;
+        yx[c] = g1x * y1 + g2x * y2;
+        ye[c] = g1y * y1 + g2y * y2;
+        twice[c] = xx[c] * ye[c] - xe[c] * yx[c];
+    }
+    for (int c = 0; c < W; ++c) {
+        const double inverse = 1.0 / twice[c];
+        xx[c] *= inverse;
+        xe[c] *= inverse;
+        yx[c] *= inverse;
+        ye[c] *= inverse;
+    }
+    double* TEPOR_RESTRICT gx = block.gradient_x;
+    double* TEPOR_RESTRICT gy = block.gradient_y;
+    for (int c = 0; c < W; ++c) {
+        const double one = ye[c] * g1x - yx[c] * g1y;
+        const double two = ye[c] * g2x - yx[c] * g2y;
+        gx[W + c] = one;
+        gx[2 * W + c] = two;
+        gx[c] = -(one + two);
+    }
+    for (int c = 0; c < W; ++c) {
+        const double one = xx[c] * g1y - xe[c] * g1x;
+        const double two = xx[c] * g2y - xe[c] * g2x;
+        gy[W + c] = one;
+        gy[2 * W + c] = two;
+        gy[c] = -(one + two);
+    }
+    for (int q = 0; q < points; ++q) {
+        const double* n = shape_.data() + static_cast<Index>(q) * N;
+        const double w = rule_weight_[detail::as_size(q)];
+        double* TEPOR_RESTRICT px = block.point_x + q * W;
+        double* TEPOR_RESTRICT py = block.point_y + q * W;
+        double* TEPOR_RESTRICT weight = block.weight + q * W;
+        const double n0 = n[0];
+        const double n1 = n[1];
+        const double n2 = n[2];
+        for (int c = 0; c < W; ++c) px[c] = n0 * x[c] + n1 * x[W + c] + n2 * x[2 * W + c];
+        for (int c = 0; c < W; ++c) py[c] = n0 * y[c] + n1 * y[W + c] + n2 * y[2 * W + c];
+        if (power_ == 0)
+            for (int c = 0; c < W; ++c) weight[c] = (w * factor_) * twice[c];
+        else
+            for (int c = 0; c < W; ++c) weight[c] = w * twice[c] * measure(px[c]);
+        if (q == 0 || block.brief) continue;
+        for (int i = 0; i < 3 * W; ++i) {
+            block.gradient_x[q * 3 * W + i] = block.gradient_x[i];
+            block.gradient_y[q * 3 * W + i] = block.gradient_y[i];
+        }
+    }
+}
+
+template <Element E>
+void Kernels<E>::map_plane(CellBlock& block) const {
+    const double* TEPOR_RESTRICT x = block.x;
+    const double* TEPOR_RESTRICT y = block.y;
+    for (int q = 0; q < points; ++q) {
+        const double* n = shape_.data() + static_cast<Index>(q) * N;
+        const double* g = reference_gradient_.data() + static_cast<Index>(q) * 2 * N;
+        double* TEPOR_RESTRICT px = block.point_x + q * W;
+        double* TEPOR_RESTRICT py = block.point_y + q * W;
+        for (int c = 0; c < W; ++c) px[c] = py[c] = 0.0;
+        for (int i = 0; i < N; ++i)
+            for (int c = 0; c < W; ++c) {
+                px[c] += n[i] * x[i * W + c];
+                py[c] += n[i] * y[i * W + c];
+            }
+        double* TEPOR_RESTRICT weight = block.weight + q * W;
+        const double w = rule_weight_[detail::as_size(q)];
+        double xx[W];
+        double xe[W];
+        double yx[W];
+        double ye[W];
+        double inverse[W];
+        for (int c = 0; c < W; ++c) xx[c] = xe[c] = yx[c] = ye[c] = 0.0;
+        for (int i = 0; i < N; ++i)
+            for (int c = 0; c < W; ++c) {
+                xx[c] += g[2 * i] * x[i * W + c];
+                xe[c] += g[2 * i + 1] * x[i * W + c];
+                yx[c] += g[2 * i] * y[i * W + c];
+                ye[c] += g[2 * i + 1] * y[i * W + c];
+            }
+        for (int c = 0; c < W; ++c) {
+            const double jacobian = xx[c] * ye[c] - xe[c] * yx[c];
+            weight[c] = w * jacobian * measure(px[c]);
+            inverse[c] = 1.0 / jacobian;
+        }
+        for (int i = 0; i < N; ++i) {
+            double* TEPOR_RESTRICT gx = block.gradient_x + (q * N + i) * W;
+            double* TEPOR_RESTRICT gy = block.gradient_y + (q * N + i) * W;
+            for (int c = 0; c < W; ++c) {
+                gx[c] = (ye[c] * g[2 * i] - yx[c] * g[2 * i + 1]) * inverse[c];
+                gy[c] = (xx[c] * g[2 * i + 1] - xe[c] * g[2 * i]) * inverse[c];
+            }
+        }
+    }
+}
+
+template <Element E>
+void Kernels<E>::open(CellBlock& block) const {
+    if constexpr (E::dim == 1) {
+        map_segments(block);
+    } else if constexpr (constant_gradient && N == 3) {
+        map_triangles(block);
+    } else {
+        map_plane(block);
+    }
+    if (!block.brief) profile(block, nullptr);
+}
+
+} // namespace tepor
