@@ -37,7 +37,4 @@ concept CellLaw = std::derived_from<L, CellKernels> &&
     law.form_side(side, wanted, true);
 };
 
-static_assert(CellLaw<Kernels<Segment<1>>> && CellLaw<Kernels<Triangle<2>>> && CellLaw<Kernels<Quadrilateral<3>>>);
-static_assert(CellLaw<Kernels<ExactSegment>>);
-
 } // namespace tepor

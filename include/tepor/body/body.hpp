@@ -5,7 +5,7 @@
 #include <mutex>
 #include <string>
 #include <string_view>
-#include <tepor/assembly/kernels.hpp>
+#include <tepor/assembly/make_kernels.hpp>
 #include <tepor/body/model.hpp>
 #include <tepor/body/statements.hpp>
 #include <tepor/describe/conditions.hpp>
@@ -37,7 +37,7 @@ class Body {
     Body(Mesh<E> mesh, BodyOptions options = {}) // NOLINT: a mesh is a body nothing has been said about
         : Body(std::make_shared<const MeshData>(static_cast<MeshData&&>(mesh)), nullptr, detail::cell_kind<E>(),
                options) {
-        kernels_ = std::make_shared<const Kernels<E>>(mesh_->frame, options.extra_degree);
+        kernels_ = detail::make_kernels<E>(mesh_->frame, options.extra_degree);
     }
     template <class E>
     Body(Mesh<E> mesh, TemperatureScale scale) : Body(std::move(mesh), BodyOptions{.scale = scale}) {}

@@ -23,6 +23,4 @@ namespace tepor {
 /// fin are derived in DEVELOPERS.md, "The exact cell".
 struct ExactSegment : Segment<1> {};
 
-static_assert(Element<ExactSegment>);
-
 } // namespace tepor

@@ -89,6 +89,4 @@ struct Quadrilateral {
     static constexpr auto lattice = detail::quadrilateral_lattice<P>();
 };
 
-static_assert(Element<Quadrilateral<1>> && Element<Quadrilateral<2>> && Element<Quadrilateral<3>>);
-
 } // namespace tepor

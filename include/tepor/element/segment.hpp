@@ -51,6 +51,4 @@ struct Segment {
     static constexpr int lattice(int i) { return i == 0 ? 0 : i == 1 ? P : i - 1; }
 };
 
-static_assert(Element<Segment<1>> && Element<Segment<2>> && Element<Segment<3>>);
-
 } // namespace tepor

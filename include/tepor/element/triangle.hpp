@@ -94,6 +94,4 @@ struct Triangle {
     static constexpr auto lattice = detail::triangle_lattice<P>();
 };
 
-static_assert(Element<Triangle<1>> && Element<Triangle<2>> && Element<Triangle<3>>);
-
 } // namespace tepor

@@ -9,6 +9,16 @@
 #include <tepor/mesh/mesh.hpp>
 #include <vector>
 
+namespace tepor {
+template <int P>
+struct Segment;
+template <int P>
+struct Triangle;
+template <int P>
+struct Quadrilateral;
+struct ExactSegment;
+} // namespace tepor
+
 namespace tepor::detail {
 
 /// Most nodes a cell may have in the algorithms of this room (their work arrays are on the stack).
@@ -62,8 +72,9 @@ bool invert_cell(const Point* nodes, Point p, Point* xi) {
 }
 
 /// The kind of an element type; built once.
-template <Element E>
+template <class E>
 const CellKind& cell_kind() {
+    static_assert(Element<E>, "cell_kind: not an element; see element/concept.hpp for what one has");
     static_assert(E::nodes <= max_cell_nodes, "an element may have at most 64 nodes");
     static const CellKind kind = [] {
         CellKind k;
@@ -87,6 +98,20 @@ const CellKind& cell_kind() {
     }();
     return kind;
 }
+
+// With tepor::compiled the library's own elements stand in it, and their code is not made again; see mesh/impl/instances.hpp.
+#if defined(TEPOR_COMPILED) && !defined(TEPOR_BUILDING)
+extern template const CellKind& cell_kind<Segment<1>>();
+extern template const CellKind& cell_kind<Segment<2>>();
+extern template const CellKind& cell_kind<Segment<3>>();
+extern template const CellKind& cell_kind<Triangle<1>>();
+extern template const CellKind& cell_kind<Triangle<2>>();
+extern template const CellKind& cell_kind<Triangle<3>>();
+extern template const CellKind& cell_kind<Quadrilateral<1>>();
+extern template const CellKind& cell_kind<Quadrilateral<2>>();
+extern template const CellKind& cell_kind<Quadrilateral<3>>();
+extern template const CellKind& cell_kind<ExactSegment>();
+#endif
 
 /// Local vertices at the two ends of a side; in 1D the one vertex twice.
 inline std::array<int, 2> side_ends(const MeshData& mesh, int side) noexcept {
