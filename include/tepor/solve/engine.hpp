@@ -10,6 +10,7 @@
 #include <tepor/linear/banded.hpp>
 #include <tepor/linear/cholesky.hpp>
 #include <tepor/linear/choose.hpp>
+#include <tepor/linear/concept.hpp>
 #include <tepor/linear/conjugate_gradient.hpp>
 #include <tepor/linear/krylov.hpp>
 #include <tepor/linear/multigrid.hpp>
@@ -36,6 +37,12 @@ class Engine {
     /// gives way to a factor where that pays.
     [[nodiscard]] TEPOR_INLINE bool factor(Index solves);
 
+    /// Symmetric matrices go to this solver from now on (null: to the library's own). It must outlive its use.
+    void use(AnySolver* outside) noexcept {
+        outside_ = outside;
+        outside_knows_ = false;
+    }
+
     /// b := A^-1 b for the free unknowns, in place; with a direct factor it allocates nothing.
     /// `limit` is the residual sum of |r| an iterative solve has to reach [W]; direct ones ignore it.
     /// @return false when an iteration stalled
@@ -47,7 +54,7 @@ class Engine {
     [[nodiscard]] const Model& model() const noexcept { return *model_; }
     [[nodiscard]] const std::shared_ptr<const Model>& shared_model() const noexcept { return model_; }
     /// The factor in use is exact up to rounding.
-    [[nodiscard]] bool direct() const noexcept { return method_ != Method::multigrid; }
+    [[nodiscard]] bool direct() const noexcept { return method_ != Method::multigrid && method_ != Method::outside; }
     /// Iterations of the last solve; 0 for direct ones.
     [[nodiscard]] Index iterations() const noexcept { return iterations_; }
 
@@ -61,7 +68,7 @@ class Engine {
     std::vector<double> key;
 
   private:
-    enum class Method { none, tridiagonal, banded, banded_lu, cholesky, multigrid };
+    enum class Method { none, outside, tridiagonal, banded, banded_lu, cholesky, multigrid };
 
     [[nodiscard]] TEPOR_INLINE bool factor_line();
     [[nodiscard]] TEPOR_INLINE bool factor_direct(const SparseMatrix& definite);
@@ -71,6 +78,8 @@ class Engine {
 
     std::shared_ptr<const Model> model_;
     Method method_ = Method::none;
+    AnySolver* outside_ = nullptr;
+    bool outside_knows_ = false; // the pattern
     Id singular_ = -1;
     Index iterations_ = 0;
     Index solves_ = 0; // since the matrix was decomposed

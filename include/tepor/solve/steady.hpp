@@ -5,6 +5,7 @@
 #include <tepor/base/config.hpp>
 #include <tepor/body/body.hpp>
 #include <tepor/field/field.hpp>
+#include <tepor/linear/concept.hpp>
 
 namespace tepor {
 
@@ -17,6 +18,9 @@ struct SteadyOptions {
     const Field* from = nullptr; ///< or a field of a body described alike
     std::optional<double>
         time{}; ///< [s] at which schedules and functions of time are taken; a body with such data needs it
+    /// A linear solver from outside for the symmetric systems of this solve (see linear/concept.hpp); unsymmetric ones, such as
+    /// the slope of a conductivity that varies with temperature, stay with the library's own. Nothing of it is kept.
+    AnySolver* solver = nullptr;
 };
 
 /// The steady temperature field of a body at its present parameter values.

@@ -21,6 +21,9 @@ struct Theta {
     /// Nonlinear bodies: Newton passes per step, always this many (bounded time); 0: until converged.
     int newton_passes = 0;
     double tolerance = 1e-10; ///< of Newton's method: sum of |r| as a share of the gross heat traffic
+    /// How many steps the march will take, if known; 0: many. For a few steps of a large linear body in 2D an iterative solver
+    /// is made ready sooner than a factor (see choose_solver()); a march that goes on all the same then gets its factor.
+    Index expected_steps = 0;
 };
 
 } // namespace tepor

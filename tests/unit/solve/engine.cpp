@@ -102,3 +102,28 @@ TEST_CASE("a limit below rounding ends an iteration instead of keeping it busy")
     CHECK(engine.solve(b.data(), 0.0));
     CHECK(engine.iterations() <= 40);
 }
+
+TEST_CASE("a linear solver from outside finds the same field, and is asked again until the heat balances") {
+    const Body body = plate();
+    int asked = 0;
+    struct Rough { // only three digits at a time
+        SparseCholesky own;
+        int* asked;
+        void analyze(const SparseMatrix& pattern, Index n, const Point* places) { own.analyze(pattern, n, places); }
+        bool factor(const SparseMatrix& matrix) { return own.factor(matrix); }
+        void solve(double* b) {
+            ++*asked;
+            own.solve(b);
+            for (Index i = 0; i < own.size(); ++i) b[i] *= 1.0001;
+        }
+        [[nodiscard]] Index singular_row() const { return own.singular_row(); }
+    };
+    const auto outside = any_solver(Rough{{}, &asked});
+    const Field theirs = steady(body, {.solver = outside.get()});
+    const Field ours = steady(body);
+    CHECK(asked >= 3);
+    double apart = 0.0;
+    for (std::size_t i = 0; i < ours.temperature().size(); ++i)
+        apart = std::max(apart, std::abs(ours.temperature()[i] - theirs.temperature()[i]));
+    CHECK(apart <= 1e-7);
+}

@@ -69,6 +69,14 @@ TEPOR_INLINE bool Engine::factor(Index solves) {
     solves_ = 0;
     const Index n = model_->free;
     if (n == 0) return true;
+    if (outside_ && matrix.symmetric()) {
+        method_ = Method::outside;
+        if (!outside_knows_) outside_->analyze(matrix, n, model_->places.data());
+        outside_knows_ = true;
+        const bool fine = outside_->factor(matrix);
+        singular_ = fine ? -1 : detail::as_id(outside_->singular_row());
+        return fine;
+    }
     if (model_->mesh->dim == 1) return factor_line();
     // an unsymmetric slope is preconditioned by its symmetric part
     if (!matrix.symmetric()) {
@@ -115,6 +123,7 @@ TEPOR_INLINE bool Engine::solve(double* b, double limit) {
     if (n == 0) return true;
     switch (method_) {
     case Method::none: return false;
+    case Method::outside: return outside_->solve(b);
     case Method::tridiagonal: tridiagonal_.solve(b); return true;
     case Method::banded: banded_.solve(b); return true;
     case Method::banded_lu: banded_lu_.solve(b); return true;

@@ -29,6 +29,9 @@ TEPOR_INLINE Scheme scheme_of(const Theta& theta) {
     if (!(theta.tolerance > 0.0 && theta.tolerance < 1.0))
         throw Error(ErrorCode::bad_value, "tolerance",
                     text("Theta: tolerance = ", theta.tolerance, ", expected 0 < tolerance < 1"));
+    if (theta.expected_steps < 0)
+        throw Error(ErrorCode::bad_value, "expected_steps",
+                    text("Theta: expected_steps = ", theta.expected_steps, ", expected 0 (many) or more"));
     if (theta.newton_passes < 0)
         throw Error(ErrorCode::bad_value, "newton_passes",
                     text("Theta: newton_passes = ", theta.newton_passes, ", expected 0 (until converged) or more"));
@@ -37,6 +40,7 @@ TEPOR_INLINE Scheme scheme_of(const Theta& theta) {
     scheme.step = theta.step;
     scheme.damped = theta.damped_start;
     scheme.passes = theta.newton_passes;
+    scheme.expected_steps = theta.expected_steps;
     scheme.tolerance = theta.tolerance;
     scheme.capacity = theta.capacity;
     return scheme;

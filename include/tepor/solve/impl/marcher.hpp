@@ -24,6 +24,7 @@ struct Scheme {
     double step = 0.0;
     bool damped = true;
     int passes = 0;
+    Index expected_steps = 0;
     double tolerance = 1e-10;
     Capacity capacity = Capacity::automatic;
     double error = 0.0;

@@ -157,7 +157,8 @@ TEPOR_INLINE Marcher::Lane* Marcher::lane_for(double a) {
     for (std::size_t p = 0; p < K_.lower.size(); ++p) matrix.lower[p] = a * K_.lower[p];
     storage_->add_to(matrix);
     ++factorisations;
-    if (lane.engine->factor(Purpose::many_solves)) return &lane;
+    const Index most = std::numeric_limits<Index>::max();
+    if (lane.engine->factor(scheme.expected_steps > 0 ? scheme.expected_steps : most)) return &lane;
     singular_ = lane.engine->singular_unknown();
     lanes_.pop_back();
     return nullptr;

@@ -195,7 +195,7 @@ TEPOR_INLINE Verdict Marcher::linear_substep(double end, double dt, double theta
     double limit = 0.0;
     if (!lane->engine->direct()) {
         for (Index u = 0; u < n; ++u) limit += std::abs(b[u]);
-        limit *= 1e-12;
+        limit *= 1e-11; // far inside what the balance of a step may leave
     }
     if (!lane->engine->solve(b, limit)) return Verdict::not_converged;
     const double share = dt / whole_;

@@ -231,7 +231,8 @@ inline void steady_solve(const std::shared_ptr<const Model>& model, EnginePool& 
                          Field& into) {
     std::vector<double>& T = into.temperature();
     const std::vector<double> key = matrix_key(*model, into.values());
-    std::unique_ptr<Engine> engine = pool.borrow(model, key);
+    std::unique_ptr<Engine> engine = options.solver ? std::make_unique<Engine>(model) : pool.borrow(model, key);
+    if (options.solver) engine->use(options.solver);
     const bool factored = !model->nonlinear && engine->key == key;
     engine->key.clear();
     SteadySolve solve(*engine, into.values(), options);
@@ -239,6 +240,7 @@ inline void steady_solve(const std::shared_ptr<const Model>& model, EnginePool& 
     check_tables(*model, into.values(), engine->work, T.data());
     into.reaction() = engine->residual;
     into.passes() = solve.take_history();
+    if (options.solver) return; // an engine that points to it is not kept
     if (!model->nonlinear) engine->key = key;
     pool.give_back(std::move(engine));
 }
@@ -264,7 +266,7 @@ inline void steady_into(const Body& body, const SteadyOptions& options, Field& i
     const std::shared_ptr<EnginePool> pool = body.shared_kept<EnginePool>();
     into.keep(pool);
     model->prescribe(values, at, T.data());
-    if (steady_sweep(model, *pool, options, into)) return;
+    if (!options.solver && steady_sweep(model, *pool, options, into)) return;
     if (options.from && options.from != &into)
         T = options.from->temperature();
     else if (!options.from || !model->nonlinear) // a sweep has left nothing to start from
