@@ -4,6 +4,7 @@
 #include <tepor/element/triangle.hpp>
 #include <tepor/mesh/tiles.hpp>
 #include <tepor/solve/engine.hpp>
+#include <tepor/solve/march.hpp>
 #include <tepor/solve/steady.hpp>
 #include <vector>
 
@@ -126,4 +127,27 @@ TEST_CASE("a linear solver from outside finds the same field, and is asked again
     for (std::size_t i = 0; i < ours.temperature().size(); ++i)
         apart = std::max(apart, std::abs(ours.temperature()[i] - theirs.temperature()[i]));
     CHECK(apart <= 1e-7);
+}
+
+TEST_CASE("a march of few steps iterates and ends where a march of many does") {
+    Body body = plate();
+    body.replace("plate", Material{.conductivity = of_place([](const auto& p) { return 20.0 + 50.0 * p.x; }),
+                                   .density = 7800.0,
+                                   .specific_heat = 460.0});
+    March few{body, initial(20.0), Theta{.theta = 1.0, .step = 30.0, .expected_steps = 2}};
+    March many{body, initial(20.0), Theta{.theta = 1.0, .step = 30.0}};
+    for (int k = 0; k < 2; ++k) {
+        REQUIRE(few.advance().ok());
+        REQUIRE(many.advance().ok());
+    }
+    const std::vector<double> a = few.field().temperature(), b = many.field().temperature();
+    double apart = 0.0, largest = 0.0;
+    for (std::size_t i = 0; i < a.size(); ++i) {
+        apart = std::max(apart, std::abs(a[i] - b[i]));
+        largest = std::max(largest, b[i]);
+    }
+    CHECK(largest > 20.5);
+    CHECK(apart > 0.0); // not the same road
+    CHECK(apart <= 1e-8);
+    CHECK_THROWS_AS((March{body, initial(20.0), Theta{.step = 1.0, .expected_steps = -1}}), Error);
 }
