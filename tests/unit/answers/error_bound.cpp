@@ -117,7 +117,7 @@ TEST_CASE_TEMPLATE("L domain under adaptivity: index at most 1.05 plus 5 percent
 }
 
 TEST_CASE_TEMPLATE(
-    "checkerboards of conductivity under adaptivity: the bound stays within 12 percent at 10 and 36 at 100", E,
+    "checkerboards of conductivity under adaptivity: the bound stays within 18 percent at 10 and 40 at 100", E,
     Triangle<1>, Triangle<2>) {
     for (const double contrast : {10.0, 100.0}) {
         Section section;
@@ -127,7 +127,8 @@ TEST_CASE_TEMPLATE(
         section.face("left", {0, 0}, {0, 1});
         section.face("right", {1, 0}, {1, 1});
         const auto steps = adaptive<E>(
-            triangulate<E>(section, {.size = 0.3}), contrast < 50.0 || E::order == 1 ? enough<E>() : 1290,
+            triangulate<E>(section, {.size = contrast < 50.0 || E::order == 1 ? 0.3 : 0.5}),
+            contrast < 50.0 || E::order == 1 ? enough<E>() : 1280,
             [contrast](Body& body) {
                 body.in("one", Material{.conductivity = 1.0}).in("other", Material{.conductivity = contrast});
                 body.on("left", FixedTemperature{1.0}).on("right", FixedTemperature{0.0});
@@ -136,7 +137,7 @@ TEST_CASE_TEMPLATE(
             [contrast](const Field& field) { return std::sqrt(energy(field) - std::sqrt(contrast)); });
         MESSAGE("checkerboard ", contrast, ", order ", E::order, ": index ", index(steps), ", rate ", rate(steps));
         // at 100, order 2 ends where cells are 1e-12 of the body and the centre still holds most of the error
-        CHECK(index(steps) <= (contrast < 50.0 ? 1.05 * 1.12 : E::order == 1 ? 1.05 * 1.33 : 1.36));
+        CHECK(index(steps) <= (contrast < 50.0 ? 1.05 * 1.12 : E::order == 1 ? 1.05 * 1.33 : 1.05 * 1.28));
     }
 }
 
