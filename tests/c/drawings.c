@@ -1,6 +1,7 @@
 /* Meshes of every kind through the C interface: arrays, grid lines, outlines, faces by test, sizes, refinement; and what they
  * refuse. */
 #include "expect.h"
+#include <stdlib.h>
 
 static double heat_of(tepor_session* session, const tepor_body* body, const char* face) {
     tepor_field* field = NULL;
@@ -112,6 +113,20 @@ static int32_t lower_half(double x, double y, void* user_data) {
     return y < 0.0 + 1e-9;
 }
 
+/* How many nodes of the body's field lie at a radius about the origin. */
+static size_t nodes_at_radius(tepor_session* session, const tepor_body* body, size_t nodes, double radius) {
+    tepor_field* field = NULL;
+    size_t found = 0;
+    DONE(tepor_steady(session, body, &field));
+    double* places = malloc(2 * nodes * sizeof *places);
+    DONE(tepor_field_places(session, field, places, 2 * nodes));
+    for (size_t i = 0; i < nodes; ++i)
+        found += fabs(sqrt(places[2 * i] * places[2 * i] + places[2 * i + 1] * places[2 * i + 1]) - radius) < 1e-9;
+    free(places);
+    tepor_field_free(field);
+    return found;
+}
+
 /* A half disc of lines and an arc with a hole of the same centre: half a pipe, ln(b/a) known. */
 static void outlines(tepor_session* session) {
     tepor_section* section = NULL;
@@ -127,6 +142,9 @@ static void outlines(tepor_session* session) {
     DONE(tepor_section_cut_circle(session, section, "bore", 0.0, 0.0, 0.1));
     DONE(tepor_section_size_on(session, section, "bore", 0.02));
     DONE(tepor_section_size_in(session, section, "half", 0.05));
+    const tepor_stroke foil = {-0.25, 0.0, 0.0, 0.25, 1, 0};
+    DONE(tepor_section_line_outline(session, section, 0.25, 0.0, &foil, 1));
+    EXPECT(tepor_section_line_outline(session, section, 0.25, 0.0, NULL, 1) == TEPOR_INVALID_ARGUMENT);
     DONE(tepor_section_tolerance(session, section, 1e-8));
     DONE(tepor_section_mesh(session, section, TEPOR_TRIANGLE_2, 0.1, tepor_planar(1.0), &mesh));
     EXPECT(asked > 0);
@@ -137,6 +155,8 @@ static void outlines(tepor_session* session) {
     DONE(tepor_body_on_fixed_temperature(session, body, "outside", tepor_number(0.0)));
     const double expected = 3.14159265358979323846 * 3.0 * 100.0 / log(4.0);
     NEAR(heat_of(session, body, "outside"), expected, 1e-3 * expected);
+    EXPECT(nodes_at_radius(session, body, tepor_mesh_node_count(mesh), 0.25) >=
+           2 * 15 + 1); /* sides of 0.05 m along the foil of 0.785 m, halved */
     EXPECT(tepor_section_add_rounded_rectangle(session, section, "x", 0.0, 0.0, 1.0, 1.0, 0.7) == TEPOR_BAD_GEOMETRY);
     tepor_body_free(body);
     tepor_mesh_free(mesh);

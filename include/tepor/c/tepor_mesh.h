@@ -123,9 +123,11 @@ TEPOR_C_API tepor_status tepor_section_face_where(tepor_session* session, tepor_
                                                   tepor_place_test test, void* user_data);
 /* Names all outer edge that has no name. */
 TEPOR_C_API tepor_status tepor_section_rest(tepor_session* session, tepor_section* section, const char* face);
-/* A line inside that cell sides follow, and a point where a node must be. */
+/* A line inside that cell sides follow, straight or of `count` pieces from (x, y); a point where a node must be. */
 TEPOR_C_API tepor_status tepor_section_line(tepor_session* session, tepor_section* section, double x0, double y0,
                                             double x1, double y1);
+TEPOR_C_API tepor_status tepor_section_line_outline(tepor_session* session, tepor_section* section, double x, double y,
+                                                    const tepor_stroke* strokes, size_t count);
 TEPOR_C_API tepor_status tepor_section_hold(tepor_session* session, tepor_section* section, double x, double y);
 /* Points closer than this [m] are one, instead of 1e-9 of the diagonal. */
 TEPOR_C_API tepor_status tepor_section_tolerance(tepor_session* session, tepor_section* section, double distance);

@@ -209,6 +209,12 @@ tepor_status tepor_section_add_outline(tepor_session* session, tepor_section* se
         section->last = section->section.add(region, tepor::enclosed(tepor::c::outline_of({x, y}, strokes, count)));
     });
 }
+tepor_status tepor_section_line_outline(tepor_session* session, tepor_section* section, double x, double y,
+                                        const tepor_stroke* strokes, size_t count) {
+    return tepor::c::run(session, section && strokes, [&] {
+        section->section.line(tepor::c::outline_of({x, y}, strokes, count));
+    });
+}
 tepor_status tepor_section_cut_outline(tepor_session* session, tepor_section* section, const char* face, double x,
                                        double y, const tepor_stroke* strokes, size_t count) {
     return tepor::c::run(session, section && face && strokes, [&] {
