@@ -1,7 +1,7 @@
 # Builds and runs one outside project.
 #   WAY    install | package | subdirectory | plain
 #   PARTS  numerical | compiled | output | nonsense
-# with SOURCE, WORK, GENERATOR, CXX, INCLUDES (parted by |) from the test's call.
+# with SOURCE, BINARY, WORK, GENERATOR, CXX, INCLUDES (parted by |) from the test's call.
 
 cmake_minimum_required(VERSION 3.24)
 
@@ -16,21 +16,17 @@ endfunction()
 set(moved "${WORK}/moved/deep prefix")
 
 if(WAY STREQUAL "install")
-    file(REMOVE_RECURSE "${WORK}/first" "${WORK}/moved" "${WORK}/install_build")
-    run("${CMAKE_COMMAND}" -S "${SOURCE}" -B "${WORK}/install_build" -G "${GENERATOR}" "-DCMAKE_CXX_COMPILER=${CXX}"
-        -DTEPOR_TESTS=OFF -DTEPOR_EXAMPLES=OFF "-DCMAKE_INSTALL_PREFIX=${WORK}/first")
-    run("${CMAKE_COMMAND}" --build "${WORK}/install_build")
-    run("${CMAKE_COMMAND}" --install "${WORK}/install_build")
+    file(REMOVE_RECURSE "${WORK}/first" "${WORK}/moved")
+    run("${CMAKE_COMMAND}" --install "${BINARY}" --prefix "${WORK}/first")
     file(MAKE_DIRECTORY "${WORK}/moved")
     file(RENAME "${WORK}/first" "${moved}")
-    file(REMOVE_RECURSE "${WORK}/install_build")
     file(GLOB_RECURSE texts "${moved}/*.cmake")
     if(NOT texts)
         message(FATAL_ERROR "no package file was installed")
     endif()
     foreach(text IN LISTS texts)
         file(READ "${text}" content)
-        foreach(path "${WORK}" "${SOURCE}")
+        foreach(path "${WORK}" "${SOURCE}" "${BINARY}")
             string(FIND "${content}" "${path}" place)
             if(NOT place EQUAL -1)
                 message(FATAL_ERROR "${text} names ${path}: the package cannot be moved")
