@@ -1,18 +1,5 @@
 /* Marching through the C interface: a lumped body against its exponential, and a control loop. */
-#include <math.h>
-#include <stdio.h>
-#include <tepor/c/tepor.h>
-
-static int failures = 0;
-
-#define EXPECT(condition)                                                                                              \
-    do {                                                                                                               \
-        if (!(condition)) {                                                                                            \
-            printf("%s:%d: %s; last message: %s\n", __FILE__, __LINE__, #condition, tepor_session_message(session));   \
-            ++failures;                                                                                                \
-        }                                                                                                              \
-    } while (0)
-#define DONE(call) EXPECT((call) == TEPOR_OK)
+#include "expect.h"
 
 int main(void) {
     tepor_session* session = tepor_session_create();
@@ -67,6 +54,18 @@ int main(void) {
     EXPECT(isnan(tepor_march_read(march, 5)));
     EXPECT(tepor_march_advance(NULL) == 16);
 
+    /* lumped capacity knows no step that is too short; otherwise the limit goes with 1 / theta */
+    EXPECT(tepor_march_sensible_step(march) == 0.0);
+    tepor_march_free(march);
+    options.capacity = TEPOR_CAPACITY_CONSISTENT;
+    options.theta = 0.5;
+    DONE(tepor_march_create(session, body, 100.0, &options, &march));
+    const double half = tepor_march_sensible_step(march);
+    tepor_march_free(march);
+    options.theta = 1.0;
+    DONE(tepor_march_create(session, body, 100.0, &options, &march));
+    EXPECT(half > 0.0);
+    NEAR(half, 2.0 * tepor_march_sensible_step(march), 1e-9 * half);
     tepor_march_free(march);
     tepor_quantity_free(middle);
     tepor_body_free(body);

@@ -1,19 +1,5 @@
 /* The steady side of the C interface against closed forms: resistances in series, a law by callback, refusals. */
-#include <math.h>
-#include <stdio.h>
-#include <string.h>
-#include <tepor/c/tepor.h>
-
-static int failures = 0;
-
-#define EXPECT(condition)                                                                                              \
-    do {                                                                                                               \
-        if (!(condition)) {                                                                                            \
-            printf("%s:%d: %s; last message: %s\n", __FILE__, __LINE__, #condition, tepor_session_message(session));   \
-            ++failures;                                                                                                \
-        }                                                                                                              \
-    } while (0)
-#define DONE(call) EXPECT((call) == TEPOR_OK)
+#include "expect.h"
 
 static double read_value(tepor_session* session, const tepor_field* field, tepor_quantity* quantity) {
     double value = NAN;

@@ -107,8 +107,12 @@ TEPOR_C_API tepor_status tepor_march_molten_in(tepor_session* session, const tep
 /* The value a parameter has in this march. */
 TEPOR_C_API tepor_status tepor_march_parameter(tepor_session* session, const tepor_march* march,
                                                const tepor_parameter* parameter, double* out);
-/* Size of the last step [s]; steps advanced; factorisations so far; steps that were tried again. 0 for NULL. */
+/* Size of the last step [s]; 0 for NULL. */
 TEPOR_C_API double tepor_march_last_step(const tepor_march* march);
+/* The smallest step that makes sense on this mesh [s]: below it a capacity that is not lumped lets temperatures swing beyond
+ * their neighbours after a jump. 0 where there is no such limit, and for NULL. */
+TEPOR_C_API double tepor_march_sensible_step(const tepor_march* march);
+/* Steps advanced; factorisations so far; steps that were tried again. 0 for NULL. */
 TEPOR_C_API int64_t tepor_march_steps(const tepor_march* march);
 TEPOR_C_API int64_t tepor_march_factorisations(const tepor_march* march);
 TEPOR_C_API int64_t tepor_march_rejections(const tepor_march* march);

@@ -217,6 +217,9 @@ tepor_status tepor_march_parameter(tepor_session* session, const tepor_march* ma
 double tepor_march_last_step(const tepor_march* march) {
     return march ? march->march.last_step() : 0.0;
 }
+double tepor_march_sensible_step(const tepor_march* march) {
+    return march ? march->march.sensible_step() : 0.0;
+}
 int64_t tepor_march_steps(const tepor_march* march) {
     return march ? march->march.steps() : 0;
 }
