@@ -38,7 +38,8 @@ TEPOR_INLINE Gradient gradient_of_integral(const March& march, const Quantity& q
 struct PeakGradient {
     Gradient gradient;
     double time = 0.0; ///< [s]
-    /// The peak lies at the start or end of the run, or two instants tie: the derivative holds to one side only.
+    /// The peak lies at the start or end of the run or at an entry of a schedule, or two instants tie: the derivative holds to
+    /// one side only.
     bool one_sided = false;
 };
 TEPOR_INLINE PeakGradient gradient_of_peak(const March& march, const Quantity& quantity);

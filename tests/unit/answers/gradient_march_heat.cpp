@@ -198,6 +198,15 @@ TEST_CASE("what melts at one temperature has derivatives while its nodes are hel
     other.advance().require();
     test::check_refused([&] { (void)gradient(other, stored_in("ice")); }, ErrorCode::not_supported,
                         stored_in("ice").label(), "in part latent");
+    // latent heat that was driven on the way
+    March driven{body, initial(20.0), Theta{.theta = 1.0, .step = 10.0}};
+    const Input heat = driven.drive(melting);
+    driven.record();
+    driven.advance().require();
+    driven.set(heat, 1.1 * melting.value());
+    driven.advance().require();
+    test::check_refused([&] { (void)gradient(driven, at(0.01)); }, ErrorCode::not_supported, "ice",
+                        "drive what acts on the body instead");
 }
 
 TEST_CASE("a run that does not fit the memory stated gives the same gradient from checkpoints") {

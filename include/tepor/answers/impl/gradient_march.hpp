@@ -54,6 +54,33 @@ TEPOR_INLINE Gradient gradient_of_integral(const March& march, const Quantity& q
     return detail::finish_gradient(quantity, value, *march.shared_model(), adjoint.values(), adjoint.sums());
 }
 
+namespace detail {
+
+/// A schedule of the body has an entry at this instant.
+inline bool scheduled_at(const Model& model, double time) {
+    bool found = false;
+    const auto look = [&](const Coefficient& c) {
+        if (!c.given() || c.value().kind() != Value::Kind::schedule) return;
+        for (const ScheduleEntry& entry : c.value().schedule().entries())
+            found = found || std::abs(entry.time - time) <= 1e-12 * std::abs(time);
+    };
+    for (const RegionModel& region : model.regions) {
+        for (const Coefficient& k : region.k) look(k);
+        for (const VolumeTerm& term : region.volume)
+            for (const Coefficient* c : {&term.amount, &term.fluid, &term.extent}) look(*c);
+    }
+    for (const FaceModel& face : model.faces) {
+        look(face.fixed);
+        for (const FaceTerm& term : face.terms)
+            for (const Coefficient* c : {&term.amount, &term.outside}) look(*c);
+    }
+    for (const ContactModel& contact : model.contacts) look(contact.amount);
+    for (const LocalModel& local : model.locals) look(local.total);
+    return found;
+}
+
+} // namespace detail
+
 TEPOR_INLINE PeakGradient gradient_of_peak(const March& march, const Quantity& quantity) {
     const detail::MarchTape& tape = detail::recorded(march);
     detail::MarchAdjoint adjoint(march, quantity);
@@ -72,7 +99,8 @@ TEPOR_INLINE PeakGradient gradient_of_peak(const March& march, const Quantity& q
     }
     const bool tie = second > -HUGE_VAL && highest - second <= 1e-12 * std::abs(highest);
     return {detail::gradient_to(march, quantity, best), tape.legs[best].to,
-            best == 0 || best + 1 == tape.legs.size() || tie};
+            best == 0 || best + 1 == tape.legs.size() || tie ||
+                detail::scheduled_at(*march.shared_model(), tape.legs[best].to)};
 }
 
 } // namespace tepor
