@@ -13,8 +13,10 @@
 #include <tepor/mesh/tiles.hpp>
 #include <tepor/mesh/triangulate.hpp>
 #include <tepor/solve/steady.hpp>
+#include <tests/support/bracket_checks.hpp>
 
 using namespace tepor;
+using test::holds, test::rate;
 
 namespace {
 
@@ -62,27 +64,6 @@ Body wall() {
     body.on("inner", Film{.coefficient = 8.0, .fluid = 20.0});
     body.on("outer", Film{.coefficient = 25.0, .fluid = -5.0});
     return body;
-}
-
-/// Every pass holds `exact` (known to +- doubt), and so does the result.
-void holds(const Bracket& b, double exact, double doubt) {
-    for (const BracketPass& pass : b.passes) {
-        CAPTURE(pass.unknowns);
-        CHECK(pass.lower <= exact + doubt);
-        CHECK(pass.upper >= exact - doubt);
-    }
-    CHECK(b.lower <= exact + doubt);
-    CHECK(b.upper >= exact - doubt);
-    CHECK(b.value >= b.lower);
-    CHECK(b.value <= b.upper);
-}
-
-/// Slope of log width over log unknowns in the second half of the passes.
-double rate(const Bracket& b) {
-    const BracketPass& first = b.passes[b.passes.size() / 2];
-    const BracketPass& last = b.passes.back();
-    return std::log((last.upper - last.lower) / (first.upper - first.lower)) /
-           std::log(static_cast<double>(last.unknowns) / static_cast<double>(first.unknowns));
 }
 
 template <class E>

@@ -9,21 +9,12 @@
 #include <tepor/mesh/layers.hpp>
 #include <tepor/mesh/section.hpp>
 #include <tepor/mesh/triangulate.hpp>
+#include <tests/support/bracket_checks.hpp>
 
 using namespace tepor;
+using test::holds, test::rate;
 
 namespace {
-
-void holds(const Bracket& b, double exact, double doubt) {
-    CAPTURE(exact);
-    for (const BracketPass& pass : b.passes) {
-        CAPTURE(pass.unknowns);
-        CHECK(pass.lower <= exact + doubt);
-        CHECK(pass.upper >= exact - doubt);
-    }
-    CHECK(b.lower <= exact + doubt);
-    CHECK(b.upper >= exact - doubt);
-}
 
 bool meet(const Bracket& a, const Bracket& b) {
     return std::max(a.lower, b.lower) <= std::min(a.upper, b.upper);
@@ -41,13 +32,6 @@ double zero(F f, double a, double b) {
 
 double emitted(double emissivity, double kelvin, double surroundings) {
     return emissivity * 5.670374419e-8 * (std::pow(kelvin, 4) - std::pow(surroundings, 4)); // CODATA 2018
-}
-
-double rate(const Bracket& b) {
-    const BracketPass& first = b.passes[b.passes.size() / 2];
-    const BracketPass& last = b.passes.back();
-    return std::log((last.upper - last.lower) / (first.upper - first.lower)) /
-           std::log(static_cast<double>(last.unknowns) / static_cast<double>(first.unknowns));
 }
 
 template <class E>
