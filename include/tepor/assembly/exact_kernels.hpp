@@ -95,4 +95,5 @@ class Kernels<ExactSegment> final : public CellKernels {
 
 #ifndef TEPOR_COMPILED
 #include <tepor/assembly/impl/exact_kernels.hpp>
+#include <tepor/assembly/impl/exact_profile.hpp>
 #endif
