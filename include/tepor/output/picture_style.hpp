@@ -82,8 +82,12 @@ inline std::vector<double> round_ticks(double low, double high, int count) {
             break;
         }
     std::vector<double> ticks;
-    for (double i = std::ceil(low / step - 1e-9); i * step <= high + 1e-9 * step; i += 1.0)
-        ticks.push_back(i * step == 0.0 ? 0.0 : i * step);
+    const double first = std::ceil(low / step - 1e-9);
+    const int lines = 1 + static_cast<int>(std::floor(high / step + 1e-9 - first));
+    for (int i = 0; i < lines; ++i) {
+        const double tick = (first + i) * step;
+        ticks.push_back(tick == 0.0 ? 0.0 : tick);
+    }
     return ticks;
 }
 

@@ -23,7 +23,8 @@ inline March recorded_march(const Body& body, const Initial& start, const MarchS
         March march{body, start, *steps};
         march.record(1e6);
         const double last = std::ceil((times.back() - march.time()) / steps->step - 1e-9);
-        for (double k = 0.0; k < std::max(last, 1.0); ++k) march.advance().require();
+        Index steps_left = static_cast<Index>(std::max(last, 1.0));
+        while (steps_left-- > 0) march.advance().require();
         return march;
     }
     March march{body, start, std::get<Adaptive>(scheme)};
@@ -65,7 +66,7 @@ inline TimedSlope slope_at(const March& march, const Quantity& quantity, double 
 /// The run behind a fit over time, to predict with.
 class MarchFitRun final : public FitRun {
   public:
-    MarchFitRun(Initial start, MarchScheme scheme) : start_(std::move(start)), scheme_(std::move(scheme)) {}
+    MarchFitRun(Initial start, MarchScheme scheme) : start_(std::move(start)), scheme_(scheme) {}
 
     double predict(const Body& body, const Quantity& quantity, double time, const std::vector<Parameter>& parameters,
                    std::vector<double>& slope) const override {
@@ -89,8 +90,7 @@ class MarchFitModel final : public FitModel {
 
     MarchFitModel(const Body& body, const Initial& start, MarchScheme scheme, const std::vector<FitBy>& parameters,
                   const std::vector<TimedReading>& readings, Way way = Way::cheaper)
-        : body_(body), start_(start), scheme_(std::move(scheme)), parameters_(parameters), readings_(readings),
-          way_(way) {
+        : body_(body), start_(start), scheme_(scheme), parameters_(parameters), readings_(readings), way_(way) {
         for (const TimedReading& r : readings) times_.push_back(r.time);
         std::sort(times_.begin(), times_.end());
         for (const FitBy& by : parameters) slots_.push_back(as_id(body.model()->slot_of(by.parameter)));

@@ -52,7 +52,7 @@ inline bool changing_prescribed(const Model& model, const MarchTape& tape) {
 class MarchSums {
   public:
     MarchSums(const Model& model, const MarchTape& tape, bool linear)
-        : sums(model, model.kernels->shape_at(0) != nullptr), model_(model), summing_(linear && sums.places.size() > 0),
+        : sums(model, model.kernels->shape_at(0) != nullptr), model_(model), summing_(linear && !sums.places.empty()),
           products_(model), heat_pairs_(model.pattern.column.size(), 0.0), cold_(as_size(model.unknowns), 0.0),
           by_prescribed_(as_size(model.unknowns), 0.0) {
         if (!summing_) return;

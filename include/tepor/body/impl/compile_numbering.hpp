@@ -2,6 +2,7 @@
 // Numbering: cells by region and locality, unknowns by locality with the free ones first, pattern and scatter map.
 
 #include <algorithm>
+#include <numeric>
 #include <tepor/base/text.hpp>
 #include <tepor/body/model.hpp>
 #include <tepor/body/split.hpp>
@@ -65,8 +66,8 @@ inline std::vector<Id> rank_unknowns(const Model& model, const std::vector<Id>& 
         if (c > 0 && left(as_id(c)) < left(as_id(c - 1))) sorted = false;
     }
     if (!sorted) std::sort(cells.begin(), cells.end(), [&](Id a, Id b) { return left(a) < left(b); });
-    std::vector<int> walk; // local nodes from left to right
-    for (int i = 0; i < mesh.nodes_per_cell; ++i) walk.push_back(i);
+    std::vector<int> walk(as_size(mesh.nodes_per_cell)); // local nodes from left to right
+    std::iota(walk.begin(), walk.end(), 0);
     std::sort(walk.begin(), walk.end(), [&](int a, int b) {
         double xa[2] = {0.0, 0.0};
         double xb[2] = {0.0, 0.0};

@@ -30,7 +30,9 @@ class CholmodSolver {
     }
     CholmodSolver(const CholmodSolver&) = delete;
     CholmodSolver& operator=(const CholmodSolver&) = delete;
-    CholmodSolver(CholmodSolver&& other) : CholmodSolver() { size_ = other.size_; } // to be handed on before analyze()
+    CholmodSolver(CholmodSolver&& other) noexcept : CholmodSolver() {
+        size_ = other.size_;
+    } // handed on before analyze()
     ~CholmodSolver() {
         release();
         cholmod_finish(&common_);

@@ -201,6 +201,7 @@ TEPOR_INLINE Id Delaunay::force_edge(Id a, Id b, Id number) {
     // Flip crossed edges whose two triangles form a convex quadrilateral until none is left.
     // Source: Sloan, Computers & Structures 47 (1993) 441-450. Edges are kept by their ends, since flips renumber.
     std::vector<std::pair<Id, Id>> open;
+    open.reserve(crossed.size());
     for (Id k : crossed) open.emplace_back(from(k), to(k));
     std::vector<std::pair<Id, Id>> fresh;
     const Point pe = at(end);

@@ -189,8 +189,14 @@ inline std::string map_arrows(const Field& field, const MapFrame& frame) {
     const auto first = [spacing](double low, double high) {
         return 0.5 * (low + high) - 0.5 * spacing * (std::max(1.0, std::floor((high - low) / spacing)) - 1.0);
     };
-    for (double y = first(frame.low.y, frame.high.y); y < frame.high.y; y += spacing)
-        for (double x = first(frame.low.x, frame.high.x); x < frame.high.x; x += spacing) {
+    const auto steps_to = [spacing](double from, double high) {
+        return static_cast<int>(std::ceil((high - from) / spacing));
+    };
+    const Point corner{first(frame.low.x, frame.high.x), first(frame.low.y, frame.high.y)};
+    const int rows = steps_to(corner.y, frame.high.y), columns = steps_to(corner.x, frame.high.x);
+    for (int row = 0; row < rows; ++row)
+        for (int column = 0; column < columns; ++column) {
+            const double x = corner.x + column * spacing, y = corner.y + row * spacing;
             const Location cell = model.locator().find({x, y});
             if (!cell) continue;
             const Point q = field.cell_heat_flux(cell.cell);

@@ -4,6 +4,7 @@
 #include <bit>
 #include <cstring>
 #include <fmt/format.h>
+#include <numeric>
 #include <tepor/output/file.hpp>
 #include <tepor/output/vtu.hpp>
 
@@ -28,8 +29,8 @@ inline int vtk_cell_type(const MeshData& mesh) {
 /// Position in a cell of ours of each node of VTK's. Ours walk all sides counter-clockwise; VTK's Lagrange quadrilateral
 /// walks its upper and left edge the other way.
 inline std::vector<int> vtk_node_order(const MeshData& mesh) {
-    std::vector<int> order;
-    for (int i = 0; i < mesh.nodes_per_cell; ++i) order.push_back(i);
+    std::vector<int> order(detail::as_size(mesh.nodes_per_cell));
+    std::iota(order.begin(), order.end(), 0);
     if (mesh.shape == CellShape::quadrilateral && mesh.order == 3) {
         std::swap(order[8], order[9]);
         std::swap(order[10], order[11]);
