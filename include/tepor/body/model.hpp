@@ -124,7 +124,7 @@ class Model {
     Index parts = 0;
     bool split = false; ///< a contact has given some node more than one unknown
 
-    SparseMatrix pattern; ///< lower triangle over all unknowns, values zero
+    SparseMatrix pattern; ///< lower triangle over all unknowns, without values
     std::vector<Id> scatter;
 
     std::vector<RegionModel> regions;

@@ -17,7 +17,7 @@ struct Scatter {
     std::vector<Id> extra;
 };
 
-/// Pattern of the lower triangle from cells of `nodes` unknowns each and extra coupled pairs (contacts).
+/// Pattern of the lower triangle, without values, from cells of `nodes` unknowns each and extra coupled pairs (contacts).
 /// Cost O(cells nodes^2) time and memory.
 /// @throws Error too_large  more entries than 32-bit ids can count
 TEPOR_INLINE Scatter build_pattern(Index unknowns, int nodes, const std::vector<Id>& cell_unknowns,

@@ -28,13 +28,31 @@ inline std::uint32_t hilbert_key(std::uint32_t x, std::uint32_t y) noexcept {
     return key;
 }
 
-/// Sorts by the upper 32 bits, keeping the order of equal ones (radix sort); `other` is work space of the same size.
+/// Sorts by the upper 32 bits, keeping the order of equal ones (radix sort); `other` is work space of the same size. What is in
+/// order already costs one look.
 inline void sort_by_key(std::vector<std::uint64_t>& keys, std::vector<std::uint64_t>& other) {
-    for (unsigned shift = 32; shift < 64; shift += 11) {
-        std::size_t count[2049] = {};
-        for (const std::uint64_t k : keys) ++count[((k >> shift) & 2047U) + 1];
-        for (int b = 0; b < 2048; ++b) count[b + 1] += count[b];
-        for (const std::uint64_t k : keys) other[count[(k >> shift) & 2047U]++] = k;
+    std::size_t count[3][2048] = {};
+    bool sorted = true;
+    std::uint64_t before = 0;
+    for (const std::uint64_t k : keys) {
+        ++count[0][(k >> 32U) & 2047U];
+        ++count[1][(k >> 43U) & 2047U];
+        ++count[2][k >> 54U];
+        sorted = sorted && before >> 32U <= k >> 32U;
+        before = k;
+    }
+    if (sorted) return;
+    for (unsigned pass = 0; pass < 3; ++pass) {
+        const unsigned shift = 32 + 11 * pass;
+        std::size_t* const place = count[pass];
+        if (place[(keys.front() >> shift) & 2047U] == keys.size()) continue; // all have the same digit
+        std::size_t begin = 0;
+        for (int digit = 0; digit < 2048; ++digit) {
+            const std::size_t here = place[digit];
+            place[digit] = begin;
+            begin += here;
+        }
+        for (const std::uint64_t k : keys) other[place[(k >> shift) & 2047U]++] = k;
         keys.swap(other);
     }
 }

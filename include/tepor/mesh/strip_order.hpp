@@ -4,6 +4,7 @@
 #include <algorithm>
 #include <cmath>
 #include <cstdint>
+#include <tepor/base/detail/huge_pages.hpp>
 #include <tepor/base/numbers.hpp>
 #include <tepor/base/point.hpp>
 #include <tepor/mesh/space_order.hpp>
@@ -20,7 +21,7 @@ namespace tepor::detail {
 /// cannot foretell their lengths.
 inline std::vector<Id> strip_order(const std::vector<Point>& places) {
     const std::size_t n = places.size();
-    std::vector<Id> order(n);
+    std::vector<Id> order;
     if (n == 0) return order;
     Point low = places.front();
     Point high = low;
@@ -57,14 +58,17 @@ inline std::vector<Id> strip_order(const std::vector<Point>& places) {
     while ((static_cast<std::uint64_t>(number) >> strip_bits) != 0) ++strip_bits;
     const unsigned across_bits = 32 - strip_bits;
     const double across_scale = width > 0.0 ? static_cast<double>((std::uint64_t{1} << across_bits) - 1) / width : 0.0;
-    std::vector<std::uint64_t> keys(n);
-    std::vector<std::uint64_t> other(n);
+    std::vector<std::uint64_t> keys;
+    std::vector<std::uint64_t> other;
+    resize_huge(keys, n);
+    resize_huge(other, n);
     for (std::size_t i = 0; i < n; ++i) {
         const auto major = static_cast<std::uint64_t>(strip[slice_of(places[i])]) << across_bits;
         const auto minor = static_cast<std::uint64_t>(across_scale * across(places[i]));
         keys[i] = ((major | minor) << 32U) | i;
     }
     sort_by_key(keys, other);
+    resize_huge(order, n);
     for (std::size_t i = 0; i < n; ++i) order[i] = static_cast<Id>(keys[i] & 0x7FFFFFFFU);
     return order;
 }

@@ -37,3 +37,25 @@ TEST_CASE("every place comes once, also where all of them coincide or lie on a l
     }
     CHECK(detail::strip_order({}).empty());
 }
+
+TEST_CASE("keys are sorted by their upper half and equal ones keep their order, whatever digits they share") {
+    for (const int kind : {0, 1, 2, 3, 4}) {
+        CAPTURE(kind);
+        std::vector<std::uint64_t> keys;
+        for (std::uint64_t k = 0; k < 3000; ++k) {
+            const std::uint64_t mixed = (k * 2654435761U) & 0xFFFFFFFFU; // Knuth's multiplicative hash
+            const std::uint64_t key = kind == 0   ? mixed                // all digits differ
+                                      : kind == 1 ? mixed & 0x7FFU       // the lowest only
+                                      : kind == 2 ? mixed & 0xFFC00000U  // the highest only
+                                      : kind == 3 ? 77U                  // none
+                                                  : k / 3;               // in order already
+            keys.push_back((key << 32U) | k);
+        }
+        std::vector<std::uint64_t> expected = keys;
+        std::stable_sort(expected.begin(), expected.end(),
+                         [](std::uint64_t a, std::uint64_t b) { return a >> 32U < b >> 32U; });
+        std::vector<std::uint64_t> other(keys.size());
+        detail::sort_by_key(keys, other);
+        CHECK(keys == expected);
+    }
+}

@@ -68,7 +68,7 @@ TEST_CASE("a march starts from a number, a law of place, a steady result and the
         b.in("core", Material{.conductivity = 1.0, .density = 1000.0, .specific_heat = 1000.0});
         return b;
     }();
-    test::check_refused([&] { March m(elsewhere, initial(coarse), theta); }, ErrorCode::outside, "(0, 0.25)",
+    test::check_refused([&] { March m(elsewhere, initial(coarse), theta); }, ErrorCode::outside, "(0.25, 0)",
                         "outside region \"core\"");
 }
 

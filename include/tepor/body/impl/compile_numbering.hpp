@@ -3,6 +3,7 @@
 
 #include <algorithm>
 #include <numeric>
+#include <tepor/base/detail/huge_pages.hpp>
 #include <tepor/base/text.hpp>
 #include <tepor/body/model.hpp>
 #include <tepor/body/split.hpp>
@@ -10,27 +11,36 @@
 
 namespace tepor::detail {
 
-/// Order of the cells: region by region, within it in strips (2D) or by x (1D).
-inline std::vector<Id> order_cells(const MeshData& mesh) {
+/// Order of the cells: region by region, within it by their first unknown (2D) or by x (1D). `cell_unknowns` is in the user's order.
+/// Cells then meet the unknowns in about the order the matrix has them in, whatever order the mesh came in. Cost O(cells) in 2D.
+inline std::vector<Id> order_cells(const MeshData& mesh, const std::vector<Id>& cell_unknowns, Index unknowns) {
     const auto cells = as_size(mesh.cell_count());
     const auto nn = as_size(mesh.nodes_per_cell);
+    std::vector<Id> order;
+    resize_huge(order, cells);
     if (mesh.dim == 2) {
-        std::vector<Point> middle(cells);
-        const std::size_t vertices = as_size(mesh.sides_per_cell);
-        for (std::size_t c = 0; c < cells; ++c) {
-            Point sum;
-            for (std::size_t v = 0; v < vertices; ++v) sum = sum + mesh.nodes[as_size(mesh.cells[c * nn + v])];
-            middle[c] = sum;
+        std::vector<Id> first;
+        std::vector<Id> begin;
+        resize_huge(first, cells);
+        resize_huge(begin, as_size(unknowns) + 1);
+        const Id* id = cell_unknowns.data();
+        for (std::size_t c = 0; c < cells; ++c, id += nn) {
+            Id least = id[0];
+            for (std::size_t i = 1; i < nn; ++i) least = std::min(least, id[i]);
+            first[c] = least;
+            ++begin[as_size(least) + 1];
         }
-        const std::vector<Id> near = strip_order(middle);
-        std::vector<Id> begin(mesh.region_names.size() + 1, 0);
-        for (const Id r : mesh.region) ++begin[as_size(r) + 1];
-        for (std::size_t r = 1; r < begin.size(); ++r) begin[r] += begin[r - 1];
-        std::vector<Id> order(cells);
-        for (const Id c : near) order[as_size(begin[as_size(mesh.region[as_size(c)])]++)] = c;
-        return order;
+        for (std::size_t u = 1; u < begin.size(); ++u) begin[u] += begin[u - 1];
+        for (std::size_t c = 0; c < cells; ++c) order[as_size(begin[as_size(first[c])]++)] = as_id(c);
+        const std::size_t regions = mesh.region_names.size();
+        if (regions < 2) return order;
+        std::vector<Id> next(regions + 1, 0);
+        for (const Id r : mesh.region) ++next[as_size(r) + 1];
+        for (std::size_t r = 1; r < next.size(); ++r) next[r] += next[r - 1];
+        std::vector<Id>& sorted = first;
+        for (const Id c : order) sorted[as_size(next[as_size(mesh.region[as_size(c)])]++)] = c;
+        return std::move(sorted);
     }
-    std::vector<Id> order(cells);
     bool sorted = true;
     const auto before = [&](Id a, Id b) {
         const auto sa = as_size(a);
@@ -46,14 +56,16 @@ inline std::vector<Id> order_cells(const MeshData& mesh) {
     return order;
 }
 
-/// Rank of each provisional unknown: in strips in 2D; by x, the cells' copies in place, in 1D.
+/// Ranks of unknowns before they are numbered: in strips in 2D; by x, the cells' copies in place, in 1D. `owner` holds the node of
+/// each; empty when every node is one unknown.
 inline std::vector<Id> rank_unknowns(const Model& model, const std::vector<Id>& provisional,
                                      const std::vector<Id>& owner) {
     const MeshData& mesh = *model.mesh;
-    std::vector<Id> order;
+    const std::size_t count = owner.empty() ? mesh.nodes.size() : owner.size();
     if (mesh.dim == 2) {
-        std::vector<Point> place(owner.size());
-        for (std::size_t u = 0; u < owner.size(); ++u) place[u] = mesh.nodes[as_size(owner[u])];
+        if (owner.empty()) return strip_order(mesh.nodes);
+        std::vector<Point> place(count);
+        for (std::size_t u = 0; u < count; ++u) place[u] = mesh.nodes[as_size(owner[u])];
         return strip_order(place);
     }
     // 1D: walk the cells from left to right, and in each its nodes
@@ -75,8 +87,9 @@ inline std::vector<Id> rank_unknowns(const Model& model, const std::vector<Id>& 
         model.kernels->reference_node(b, xb);
         return xa[0] < xb[0];
     });
-    std::vector<unsigned char> seen(owner.size(), 0);
-    order.reserve(owner.size());
+    std::vector<unsigned char> seen(count, 0);
+    std::vector<Id> order;
+    order.reserve(count);
     for (const Id c : cells)
         for (const int i : walk) {
             const Id u = provisional[as_size(c) * nn + as_size(i)];
@@ -85,7 +98,7 @@ inline std::vector<Id> rank_unknowns(const Model& model, const std::vector<Id>& 
                 order.push_back(u);
             }
         }
-    for (std::size_t u = 0; u < owner.size(); ++u)
+    for (std::size_t u = 0; u < count; ++u)
         if (!seen[u]) order.push_back(as_id(u));
     return order;
 }
@@ -100,34 +113,49 @@ inline void fill_side_list(const Model& model, const std::vector<CellSide>& user
     }
 }
 
-/// Connected parts of the body: unknowns joined by cells and contacts.
+/// Connected parts of the body: unknowns that the pattern couples. Each row takes the part of what stands before it; where several
+/// meet they are joined. Cost O(entries) but for the joins.
 inline void find_parts(Model& model) {
-    std::vector<Id> root(as_size(model.unknowns));
-    for (std::size_t u = 0; u < root.size(); ++u) root[u] = as_id(u);
-    const auto find = [&root](Id u) {
-        while (root[as_size(u)] != u) {
-            root[as_size(u)] = root[as_size(root[as_size(u)])];
-            u = root[as_size(u)];
+    const Id* start = model.pattern.start.data();
+    const Id* column = model.pattern.column.data();
+    std::vector<Id>& part = model.part_of;
+    resize_huge(part, as_size(model.unknowns));
+    std::vector<Id> root; // of the preliminary parts
+    const auto find = [&root](Id p) {
+        while (root[as_size(p)] != p) {
+            root[as_size(p)] = root[as_size(root[as_size(p)])];
+            p = root[as_size(p)];
         }
-        return u;
+        return p;
     };
-    const auto join = [&](Id a, Id b) {
-        const Id ra = find(a);
-        const Id rb = find(b);
-        root[as_size(std::max(ra, rb))] = std::min(ra, rb);
-    };
-    const auto nn = as_size(model.kernels->nodes);
-    for (std::size_t e = 0; e < model.cell_unknowns.size(); e += nn)
-        for (std::size_t i = 1; i < nn; ++i) join(model.cell_unknowns[e], model.cell_unknowns[e + i]);
-    for (const ContactModel& c : model.contacts)
-        for (std::size_t i = 0; i < c.first.unknowns.size(); ++i) join(c.first.unknowns[i], c.second.unknowns[i]);
-    model.part_of.assign(root.size(), -1);
-    model.parts = 0;
-    for (std::size_t u = 0; u < root.size(); ++u) {
-        const Id r = find(as_id(u));
-        if (model.part_of[as_size(r)] < 0) model.part_of[as_size(r)] = as_id(model.parts++);
-        model.part_of[u] = model.part_of[as_size(r)];
+    for (Index u = 0; u < model.unknowns; ++u) {
+        const Id first = start[u];
+        const Id diagonal = start[u + 1] - 1;
+        if (first == diagonal) {
+            part[as_size(u)] = as_id(root.size());
+            root.push_back(part[as_size(u)]);
+            continue;
+        }
+        const Id own = part[as_size(column[first])];
+        part[as_size(u)] = own;
+        for (Id p = first + 1; p < diagonal; ++p) {
+            const Id other = part[as_size(column[p])];
+            if (other == own) continue;
+            const Id a = find(own);
+            const Id b = find(other);
+            root[as_size(std::max(a, b))] = std::min(a, b);
+        }
     }
+    std::vector<Id> number(root.size(), -1);
+    model.parts = 0;
+    for (std::size_t p = 0; p < root.size(); ++p) {
+        const Id r = find(as_id(p));
+        if (r == as_id(p))
+            number[p] = as_id(model.parts++);
+        else
+            number[p] = number[as_size(r)];
+    }
+    for (Id& p : part) p = number[as_size(p)];
 }
 
 inline void number_contacts(Model& model, const std::vector<std::vector<ContactPair>>& pairs,
@@ -162,12 +190,15 @@ inline void number_unknowns(Model& model, const std::vector<std::vector<ContactP
     const auto nn = as_size(kernel.nodes);
     std::vector<ContactPair> all;
     for (const auto& list : pairs) all.insert(all.end(), list.begin(), list.end());
-    std::vector<Id> owner;
-    std::vector<Id> provisional = split_nodes(mesh, kernel, all, owner);
-    model.split = owner.size() > mesh.nodes.size();
+    std::vector<Id> owner; // node of each unknown, where contacts give a node several; empty else
+    std::vector<Id> copied;
+    if (!all.empty()) copied = split_nodes(mesh, kernel, all, owner);
+    const std::vector<Id>& provisional = all.empty() ? mesh.cells : copied;
+    const std::size_t count = all.empty() ? mesh.nodes.size() : owner.size();
+    model.split = count > mesh.nodes.size();
 
     // prescribed unknowns, and whether every node is used
-    std::vector<unsigned char> state(owner.size(), 0); // 1 used, 2 prescribed
+    std::vector<unsigned char> state(count, 0); // 1 used, 2 prescribed
     for (const Id u : provisional) state[as_size(u)] = 1;
     for (std::size_t f = 0; f < model.faces.size(); ++f)
         if (model.faces[f].fixed.given())
@@ -175,38 +206,54 @@ inline void number_unknowns(Model& model, const std::vector<std::vector<ContactP
                 for (int j = 0; j < kernel.side_nodes; ++j)
                     state[as_size(provisional[as_size(side.cell) * nn + as_size(kernel.side_node(side.side, j))])] = 2;
 
-    const std::vector<Id> rank = rank_unknowns(model, provisional, owner);
-    std::vector<Id> number(owner.size(), -1);
-    Id next = 0;
-    for (const Id u : rank)
-        if (state[as_size(u)] == 1) number[as_size(u)] = next++;
-    model.free = next;
-    for (const Id u : rank)
-        if (state[as_size(u)] == 2) number[as_size(u)] = next++;
-    model.unknowns = next;
-
-    model.places.resize(as_size(next));
-    model.node_of.resize(as_size(next));
-    model.unknown_of.assign(mesh.nodes.size(), -1);
-    for (std::size_t u = owner.size(); u-- > 0;) {
-        if (number[u] < 0) continue;
-        model.places[as_size(number[u])] = mesh.nodes[as_size(owner[u])];
-        model.node_of[as_size(number[u])] = owner[u];
-        model.unknown_of[as_size(owner[u])] = number[u];
+    std::vector<Id> number;
+    reserve_huge(number, count);
+    number.assign(count, -1);
+    {
+        const std::vector<Id> rank = rank_unknowns(model, provisional, owner);
+        resize_huge(model.node_of, count);
+        resize_huge(model.places, count);
+        Id next = 0;
+        const auto take = [&](unsigned char wanted) {
+            for (const Id u : rank) {
+                if (state[as_size(u)] != wanted) continue;
+                const Id node = owner.empty() ? u : owner[as_size(u)];
+                model.node_of[as_size(next)] = node;
+                model.places[as_size(next)] = mesh.nodes[as_size(node)];
+                number[as_size(u)] = next++;
+            }
+        };
+        take(1);
+        model.free = next;
+        take(2);
+        model.unknowns = next;
+        model.node_of.resize(as_size(next));
+        model.places.resize(as_size(next));
     }
 
-    model.user_cell = order_cells(mesh);
+    std::vector<Id> user; // unknowns of each cell in the user's order
+    resize_huge(user, provisional.size());
+    for (std::size_t e = 0; e < user.size(); ++e) user[e] = number[as_size(provisional[e])];
+    copied = {};
+    if (owner.empty()) {
+        model.unknown_of = std::move(number);
+    } else {
+        model.unknown_of.assign(mesh.nodes.size(), -1);
+        for (std::size_t u = count; u-- > 0;) // the first copy stays
+            if (number[u] >= 0) model.unknown_of[as_size(owner[u])] = number[u];
+    }
+    model.user_cell = order_cells(mesh, user, model.unknowns);
     const std::size_t cells = model.user_cell.size();
-    model.model_cell.resize(cells);
-    model.region_of_cell.resize(cells);
-    model.cell_unknowns.resize(cells * nn);
+    resize_huge(model.model_cell, cells);
+    resize_huge(model.region_of_cell, cells);
+    resize_huge(model.cell_unknowns, cells * nn);
     for (std::size_t c = 0; c < cells; ++c) {
-        const auto user = as_size(model.user_cell[c]);
-        model.model_cell[user] = as_id(c);
-        model.region_of_cell[c] = mesh.region[user];
-        for (std::size_t i = 0; i < nn; ++i)
-            model.cell_unknowns[c * nn + i] = number[as_size(provisional[user * nn + i])];
+        const auto from = as_size(model.user_cell[c]);
+        model.model_cell[from] = as_id(c);
+        model.region_of_cell[c] = mesh.region[from];
+        for (std::size_t i = 0; i < nn; ++i) model.cell_unknowns[c * nn + i] = user[from * nn + i];
     }
+    user = {};
     for (std::size_t c = cells; c-- > 0;) {
         RegionModel& region = model.regions[as_size(model.region_of_cell[c])];
         region.first_cell = as_id(c);
@@ -236,10 +283,10 @@ inline void number_unknowns(Model& model, const std::vector<std::vector<ContactP
     model.scatter = std::move(scatter.cells);
     std::size_t at = 0;
     for (ContactModel& contact : model.contacts) {
-        const std::size_t count = as_size(contact.first.count()) * as_size(kernel.side_nodes * kernel.side_nodes);
+        const std::size_t entries = as_size(contact.first.count()) * as_size(kernel.side_nodes * kernel.side_nodes);
         contact.cross.assign(scatter.extra.begin() + static_cast<Index>(at),
-                             scatter.extra.begin() + static_cast<Index>(at + count));
-        at += count;
+                             scatter.extra.begin() + static_cast<Index>(at + entries));
+        at += entries;
     }
     find_parts(model);
 }

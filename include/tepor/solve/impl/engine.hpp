@@ -3,6 +3,7 @@
 
 #include <cmath>
 #include <limits>
+#include <tepor/base/detail/huge_pages.hpp>
 #include <tepor/solve/engine.hpp>
 
 namespace tepor {
@@ -39,9 +40,8 @@ inline double euclidean_norm(const double* b, Index n) noexcept {
 TEPOR_INLINE Engine::Engine(std::shared_ptr<const Model> model)
     : work(model->kernels->workspace()), model_(std::move(model)) {
     prepare_matrix(*model_, matrix);
-    residual.assign(detail::as_size(model_->unknowns), 0.0);
-    step.assign(detail::as_size(model_->unknowns), 0.0);
-    product.assign(detail::as_size(model_->unknowns), 0.0);
+    for (std::vector<double>* v : {&residual, &step, &product})
+        detail::resize_huge(*v, detail::as_size(model_->unknowns));
 }
 
 TEPOR_INLINE bool Engine::factor_line() {
