@@ -46,8 +46,9 @@ struct Pass {
     const std::vector<const Coefficient*>* loads = nullptr;
     bool unit_loads = false;
 
-    /// Of the slopes of films, fluxes and sources by temperature only those that restore balance enter the matrix: it is then
-    /// positive definite where the full derivative is not, because a source grows faster than what carries its heat away.
+    /// Of the slopes of films, fluxes and sources by temperature only those that restore balance enter the matrix, and the
+    /// conductivity counts as it is: the matrix is then symmetric and positive definite where the full derivative is not, because
+    /// a source grows faster than what carries its heat away.
     bool restoring_only = false;
 
     double* residual = nullptr;     ///< all unknowns, set; null: not wanted. Heat into the body that T would need [W]

@@ -142,7 +142,7 @@ class Assembler {
         }
         pass.sources = !region.volume.empty();
         pass.own_mean = kernel_.exact && pass.k_slope && block.T;
-        wanted.slope = wanted.matrix && pass.k_slope && block.T;
+        wanted.slope = wanted.matrix && pass.k_slope && block.T && !pass_.restoring_only;
         pass.wanted = wanted;
         block.conductivities = region.conductivities;
         block.k_uniform = k_uniform;

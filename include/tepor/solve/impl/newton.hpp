@@ -34,6 +34,15 @@ inline double residual_rounding(const Model& model, const SparseMatrix& matrix, 
     return 8.0 * std::numeric_limits<double>::epsilon() * hottest * sum;
 }
 
+/// Rounding of the signed sum of r: that of its rows, of either sign.
+inline double rounding_of_sum(const Model& model, const SparseMatrix& matrix, const double* T) noexcept {
+    double squares = 0.0;
+    for (Index u = 0; u < model.free; ++u) squares += matrix.diagonal(u) * matrix.diagonal(u);
+    double hottest = 0.0;
+    for (Index u = 0; u < model.unknowns; ++u) hottest = std::max(hottest, std::abs(T[u]));
+    return 8.0 * std::numeric_limits<double>::epsilon() * hottest * std::sqrt(squares);
+}
+
 /// Mean of the outside and prescribed temperatures that are plain values: where a solve starts.
 inline double start_temperature(const Model& model, const Values& values, TimeSpan time) {
     double sum = 0.0;

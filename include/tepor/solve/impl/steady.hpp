@@ -32,10 +32,18 @@ class SteadySolve {
             history_.push_back({now, limit, 0.0, 1.0});
             if (!std::isfinite(now)) stalled(T, "the residual is not finite");
             // a linear body is solved at least once, so that its answer does not depend on where it started
-            if (now <= limit && (pass > 0 || model_.nonlinear)) break;
-            if (model_.nonlinear ? pass >= options_.most_passes : pass >= 4) stalled(T, "the passes ran out");
+            const bool solved = now <= limit && (pass > 0 || model_.nonlinear);
+            if (solved && (in_balance(T) || refinements_ == most_refinements)) break;
+            if (solved)
+                ++refinements_;
+            else if (model_.nonlinear ? pass >= options_.most_passes : pass >= 4)
+                stalled(T, "the passes ran out");
             if (!factored && !engine_.factor(Purpose::one_solve)) {
                 if (!model_.nonlinear) raise_singular(model_, engine_.singular_unknown());
+                restore(T);
+                continue;
+            }
+            if (crawling_ == 2) { // a conductivity that turns at some temperature holds Newton's method up there
                 restore(T);
                 continue;
             }
@@ -48,16 +56,31 @@ class SteadySolve {
     [[nodiscard]] std::vector<SolvePass> take_history() { return std::move(history_); }
 
   private:
+    /// What rounding may leave of sum |r| grows with the number of rows; the heat left over, their signed sum, has to stay below
+    /// the floor the balance is judged by. Rows that all lean one way fail that, and another step rights them.
+    [[nodiscard]] bool in_balance(const double* T) {
+        const double goal = options_.tolerance * gross_traffic(model_, pass_, engine_.residual.data());
+        // the matrix times a step has the rounding of the matrix in every row; the fluxes of a fresh pass cancel between rows
+        if (!model_.nonlinear && refinements_ == 0 && rounding_of_sum(model_, engine_.matrix, T) > goal)
+            evaluate(T, false);
+        double left_over = 0.0;
+        for (Index u = 0; u < model_.free; ++u) left_over += engine_.residual[as_size(u)];
+        return std::abs(left_over) <= goal ||
+               std::abs(left_over) <= goal + rounding_floor(model_, values_, engine_.work, T);
+    }
+
     void find_step(const double* T, double now, double limit) {
         for (Index u = 0; u < model_.free; ++u) engine_.step[as_size(u)] = -engine_.residual[as_size(u)];
         if (!engine_.solve(engine_.step.data(), linear_limit(now, limit))) stalled(T, "the linear solve stalled");
     }
 
-    /// A step with the slopes that restore balance only, where the full derivative is not positive definite: the body warms up
-    /// past the place where its sources outgrow its losses. The residual rises on the way, so no search along the line; the step
-    /// is halved only where a law cannot be evaluated, and a residual that keeps rising means that the body runs away.
+    /// A step with the slopes that restore balance only and the conductivity as it is, where the full derivative is not positive
+    /// definite or leads nowhere: the body warms up past the place where its sources outgrow its losses, or where its conductivity
+    /// turns. The residual rises on the way, so no search along the line; the step is halved only where a law cannot be
+    /// evaluated, and a residual that keeps rising means that the body runs away.
     void restore(double* T) {
         restored_ = true;
+        crawling_ = 0;
         if (lost_ < 0) lost_ = engine_.singular_unknown();
         if (history_.back().residual > 1e6 * history_.front().residual) raise_singular(model_, lost_, told());
         evaluate(T, true, true);
@@ -91,6 +114,7 @@ class SteadySolve {
 
     /// How far an iterative linear solve has to go: Newton's own progress tells (Eisenstat & Walker 1996, choice 2).
     [[nodiscard]] double linear_limit(double now, double limit) const {
+        limit = std::min(limit, now); // a refinement starts below the limit
         if (!model_.nonlinear) return 0.5 * limit;
         double forcing = 0.01;
         if (history_.size() > 1) {
@@ -109,6 +133,7 @@ class SteadySolve {
             largest = std::max(largest, std::abs(step[u]));
         }
         history_.back().step = largest;
+        if (refinements_ > 0) return evaluate(T, false);
         multiply(engine_.matrix, model_.unknowns, step, engine_.product.data());
         for (Index u = 0; u < model_.unknowns; ++u) engine_.residual[as_size(u)] += engine_.product[as_size(u)];
         Pass faces;
@@ -152,6 +177,7 @@ class SteadySolve {
         }
         history_.back().step = share * largest;
         history_.back().damping = share;
+        crawling_ = share <= 0.25 ? crawling_ + 1 : 0;
         restored_ = false;
     }
 
@@ -176,6 +202,8 @@ class SteadySolve {
         return words;
     }
 
+    static constexpr int most_refinements = 2;
+
     Engine& engine_;
     const Model& model_;
     const Values& values_;
@@ -183,6 +211,8 @@ class SteadySolve {
     TimeSpan at_;
     Pass pass_;
     std::vector<SolvePass> history_;
+    int refinements_ = 0;   ///< passes taken for the balance alone
+    int crawling_ = 0;      ///< steps in a row that were cut to a quarter or less
     bool restored_ = false; ///< the last step was one of restore()
     Id lost_ = -1;          ///< where a pivot was lost first
 };
