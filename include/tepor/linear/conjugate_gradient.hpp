@@ -15,12 +15,16 @@ struct IterationLimits {
     double tolerance = 1e-8; ///< of the residual's Euclidean norm, relative to that of the right-hand side
     Index most = 200;        ///< iterations
     Index patience = 40;     ///< iterations without a new least residual until no more progress is expected
+    Index trial = 0; ///< after this many iterations the residual has to be below trial_residual, or the iteration
+                     ///< ends: too slow for its purpose; 0: no such look
+    double trial_residual = 1e-6;
 };
 
 /// What an iteration did.
 struct IterationReport {
     bool converged = false;
     bool stagnated = false; ///< ended because the residual no longer fell, usually at the level of rounding
+    bool slow = false;      ///< ended by IterationLimits::trial
     Index iterations = 0;
     double residual = 0.0; ///< |b - A x| / |b|, recomputed from x at the end (Euclidean norm); 0 when b is zero
 };
@@ -225,6 +229,10 @@ IterationReport conjugate_gradient(const SparseMatrix& matrix, Index n, const do
         least = report.residual < least ? report.residual : least;
         if (waited >= limits.patience) {
             report.stagnated = true;
+            break;
+        }
+        if (report.iterations == limits.trial && report.residual > limits.trial_residual) {
+            report.slow = true;
             break;
         }
         if (!stop(static_cast<const double*>(r), report.residual)) continue;

@@ -43,6 +43,12 @@ class Engine {
         outside_knows_ = false;
     }
 
+    /// Iterative solves and their set-up use this many threads, the caller's included; the results keep the same bits.
+    void use_threads(int threads) {
+        multigrid_.use_threads(threads);
+        cg_work_.crew = multigrid_.crew();
+    }
+
     /// b := A^-1 b for the free unknowns, in place; with a direct factor it allocates nothing.
     /// `limit` is the residual sum of |r| an iterative solve has to reach [W]; direct ones ignore it.
     /// @return false when an iteration stalled
@@ -55,7 +61,8 @@ class Engine {
     [[nodiscard]] const std::shared_ptr<const Model>& shared_model() const noexcept { return model_; }
     /// The factor in use is exact up to rounding.
     [[nodiscard]] bool direct() const noexcept { return method_ != Method::multigrid && method_ != Method::outside; }
-    /// Iterations of the last solve; 0 for direct ones.
+    /// Iterations of the last solve; 0 for direct ones. An iteration that proves slow gives way to a factor, for this solve and
+    /// those after it.
     [[nodiscard]] Index iterations() const noexcept { return iterations_; }
 
     SparseMatrix matrix;

@@ -21,6 +21,9 @@ struct SteadyOptions {
     /// A linear solver from outside for the symmetric systems of this solve (see linear/concept.hpp); unsymmetric ones, such as
     /// the slope of a conductivity that varies with temperature, stay with the library's own. Nothing of it is kept.
     AnySolver* solver = nullptr;
+    /// Threads of an iterative solve and its set-up, the caller's included (large bodies in the plane). The temperatures have the
+    /// same bits at any number.
+    int threads = 1;
 };
 
 /// The steady temperature field of a body at its present parameter values.

@@ -94,6 +94,58 @@ TEST_CASE("an iterative solver that is asked again and again gives way to a fact
     CHECK(apart <= 1e-7);
 }
 
+TEST_CASE("an iteration that crawls gives way to a factor within 30 iterations") {
+    // Slender cells whose nodes are moved at random: no aggregate fits them, conjugate gradients take more than 100 iterations.
+    Tiles drawing;
+    drawing.add("strip", {0.0, 0.0}, {1.0, 0.01});
+    drawing.split_x({.from = 0.0, .to = 1.0, .cells = 245}).split_y({.from = 0.0, .to = 0.01, .cells = 245});
+    Mesh<Triangle<1>> mesh = tiles<Triangle<1>>(drawing);
+    std::uint64_t state = 1;
+    const auto between = [&state](double size) {
+        state = state * 6364136223846793005U + 1442695040888963407U; // Knuth's MMIX
+        return size * (static_cast<double>(state >> 11U) * 0x1p-53 - 0.5);
+    };
+    for (Point& p : mesh.nodes) {
+        const double dx = between(0.5 / 245.0), dy = between(0.005 / 245.0);
+        if (p.x > 1e-9 && p.x < 1.0 - 1e-9) p.x += dx;
+        if (p.y > 1e-11 && p.y < 0.01 - 1e-11) p.y += dy;
+    }
+    Body body{std::move(mesh)};
+    body.in("strip", Material{.conductivity = 2.0});
+    body.in("strip", Generation{.per_volume = 1e4});
+    body.on("left", Film{.coefficient = 30.0, .fluid = 60.0});
+    Engine engine(body.model());
+    evaluate(body, engine, std::vector<double>(static_cast<std::size_t>(body.model()->unknowns), 20.0));
+    REQUIRE(engine.factor(Purpose::one_solve));
+    CHECK_FALSE(engine.direct());
+    std::vector<double> x = engine.residual;
+    REQUIRE(engine.solve(x.data(), 1e-9));
+    CHECK(engine.iterations() == 30);
+    CHECK(engine.direct());
+    std::vector<double> product(x.size());
+    multiply(engine.matrix, body.model()->free, x.data(), product.data());
+    double off = 0.0, size = 0.0;
+    for (std::size_t i = 0; i < x.size(); ++i) {
+        off += std::abs(product[i] - engine.residual[i]);
+        size += std::abs(engine.residual[i]);
+    }
+    CHECK(off <= 1e-6 * size); // temperatures of 1e4 K through couplings of 200 W/K: rounding
+    std::vector<double> again = engine.residual;
+    REQUIRE(engine.solve(again.data(), 1e-9));
+    CHECK(engine.iterations() == 0);
+    CHECK(again == x);
+}
+
+TEST_CASE("a steady solve has the same bits with helping threads, and a number of threads below one is refused") {
+    const Body body = plate();
+    const Field alone = steady(body);
+    const Body same = plate();
+    const Field helped = steady(same, {.threads = 3});
+    CHECK(alone.temperature() == helped.temperature());
+    CHECK(alone.reaction() == helped.reaction());
+    CHECK_THROWS_WITH_AS(static_cast<void>(steady(body, {.threads = 0})), doctest::Contains("threads = 0"), Error);
+}
+
 TEST_CASE("a limit below rounding ends an iteration instead of keeping it busy") {
     const Body body = plate();
     Engine engine(body.model());

@@ -1,5 +1,5 @@
 #pragma once
-// One level of multigrid as its sweeps read it: a stream of entries in single precision.
+// One level of multigrid as its sweeps read it: a stream of entries.
 
 #include <tepor/linear/detail/buffer.hpp>
 #include <vector>
@@ -13,8 +13,6 @@ struct Prolongation {
     Buffer<Id> start;
     Buffer<Id> column;
     Buffer<float> value;
-    Buffer<Id> mark;     ///< work
-    Buffer<float> total; ///< work
 };
 
 /// A level with matrix I + L + L^T (scaled to a unit diagonal) and prolongation P, which is not kept itself.
@@ -24,27 +22,36 @@ struct Prolongation {
 /// L and Q = L P are all that a cycle needs, each read once on the way down and once on the way up, and x is overwritten
 /// in place. Rows come in blocks that are swept independently, two interleaved or in threads; entries between blocks are
 /// kept apart, and Q counts them on both sides.
+///
+/// Between blocks only the results of the sweeps meet, which fails where such entries outweigh the diagonal (a tight contact
+/// astride a border). There the sweeps take a diagonal that is larger by s (Baker et al., "Multigrid smoothers for
+/// ultraparallel computing", 2011), -s stands on the diagonal of the entries between blocks, and the scale knows of s.
+///
+/// Number: float where the level is large; double on the small levels that are visited twice, since the second visit starts from
+/// a residual that cancels.
+template <class Number>
 struct MultigridLevel {
+    using Real = Number;
     struct Entry {
         Id column;
-        float value;
+        Real value;
     };
     struct Apart {
         Id row, column;
-        float value;
+        Real value;
     };
     Index rows = 0;
     Index columns = 0;        ///< rows of the next level, 0 where there is none
     Index padding = 1;        ///< entries of L per row are padded to a multiple of this (even rows suit branch
                               ///< prediction), those of Q to an even number
     std::vector<Index> block; ///< first row of each block, and the end
-    Buffer<Id> start;         ///< row i: entries of L from start[2 i], of Q from start[2 i + 1]
+    Buffer<Id> start; ///< row i of block b: entries of L from start[2 i + b], of Q from the next on, to the next
     Buffer<Entry> entry;
-    std::vector<Apart> cross;        ///< entries of L between blocks
+    std::vector<Apart> cross;        ///< entries of L between blocks, and the -s
     std::vector<Apart> coarse_cross; ///< entries of Q whose column belongs to another block
-    Buffer<float> cross_product;     ///< work for `cross`
-    Buffer<float> x;                 ///< right-hand side, then solution
-    Buffer<float> right, first;      ///< for a second visit: the right-hand side and the first solution
+    Buffer<Real> cross_product;      ///< work for `cross`
+    Buffer<Real> x;                  ///< right-hand side, then solution
+    Buffer<Real> right, first;       ///< for a second visit: the right-hand side and the first solution
 };
 
 } // namespace tepor::detail

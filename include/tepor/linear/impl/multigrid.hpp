@@ -3,40 +3,42 @@
 
 #include <algorithm>
 #include <cmath>
-#include <tepor/linear/impl/galerkin.hpp>
-#include <tepor/linear/impl/multigrid_level.hpp>
+#include <tepor/linear/impl/level_maker.hpp>
+#include <tepor/linear/impl/multigrid_sweeps.hpp>
 #include <tepor/linear/impl/pivot.hpp>
 #include <tepor/linear/multigrid.hpp>
+#include <type_traits>
 
 namespace tepor {
+
 namespace detail {
 
-/// Rows in blocks fixed by their number alone. Few rows, or neighbours in other blocks for more than one row in twenty: one
-/// block, since entries between blocks weaken the sweeps.
-inline std::vector<Index> blocks_of(const SparseMatrix& a, Index rows) {
-    const Index count = rows < 4000 ? 1 : rows < 50000 ? 2 : rows < 500000 ? 8 : 16;
-    std::vector<Index> block;
-    for (Index b = 0; b <= count; ++b) block.push_back(rows * b / count);
-    Index astride = 0;
-    for (std::size_t b = 1; b + 1 < block.size(); ++b) {
-        for (Index i = block[b]; i < block[b + 1]; ++i) {
-            bool any = false;
-            for (Index e = a.start[as_size(i)]; e < a.start[as_size(i) + 1]; ++e)
-                any = any || a.column[as_size(e)] < block[b];
-            astride += any;
+/// What set-up works on, and its memory.
+struct MultigridSetup {
+    RowBlocks blocks;
+    Buffer<double> scale;
+    StrongGraph strong;
+    Prolongation p;
+    HalfProduct half;
+    std::vector<std::vector<Id>> first; ///< a row of the level above for every row of a level
+
+    /// A row in the numbering of the first level.
+    [[nodiscard]] Index named(Index row) const {
+        for (auto above = first.rbegin(); above != first.rend(); ++above) row = (*above)[as_size(row)];
+        return row;
+    }
+
+    /// Aggregates of the strong couplings, of weaker ones where coarsening would stall.
+    Aggregates coarsen(const SparseMatrix& a, Index rows, const MultigridOptions& options, Crew* crew) {
+        double strength = rows < 1000 ? options.low_strength : options.strength;
+        while (true) {
+            find_strong(a, rows, strength, blocks, crew, strong);
+            Aggregates out = aggregate(strong, rows, blocks, crew);
+            if (out.count * 10 < rows * 6 || !(strength > options.low_strength)) return out;
+            strength = std::max(options.low_strength, strength / 4.0);
         }
     }
-    if (astride * 20 > rows) return {0, rows};
-    return block;
-}
-
-/// Every other border, for levels that have become small.
-inline std::vector<Index> merged_blocks(const std::vector<Index>& block) {
-    std::vector<Index> out;
-    for (std::size_t b = 0; b + 1 < block.size(); b += 2) out.push_back(block[b]);
-    out.push_back(block.back());
-    return out;
-}
+};
 
 } // namespace detail
 
@@ -44,87 +46,89 @@ TEPOR_INLINE bool Multigrid::setup(const SparseMatrix& matrix, Index n) {
     size_ = n;
     singular_row_ = -1;
     coarse_size_ = 0;
-    level_.clear();
+    large_.clear();
+    small_.clear();
     complexity_ = 0.0;
     if (n == 0) return true;
-    std::vector<Index> block = detail::blocks_of(matrix, n);
+    detail::MultigridSetup work;
+    work.blocks = detail::blocks_of(matrix, n);
+    detail::find_far(matrix, work.blocks);
+    const Index bad_row = detail::scale_rows(matrix, n, work.blocks, work.scale);
+    if (bad_row >= 0) {
+        singular_row_ = bad_row;
+        return false;
+    }
+    scale_.reset(n);
+    for (Index i = 0; i < n; ++i) scale_[i] = static_cast<float>(work.scale[i]);
     SparseMatrix coarse;
     const SparseMatrix* a = &matrix;
-    detail::Buffer<float> scale;
-    detail::StrongGraph strong;
-    detail::Prolongation p;
-    detail::HalfProduct half;
-    std::vector<std::vector<Id>> first; // a row of the level above for every row of a level
-    const auto name = [&](Index row) {  // in the numbering of the first level
-        for (auto above = first.rbegin(); above != first.rend(); ++above) row = (*above)[detail::as_size(row)];
-        singular_row_ = row;
-    };
-    double first_entries = 1.0;
+    const double first_entries = detail::as_double(matrix.start[detail::as_size(n)]);
     for (Index rows = n;;) {
-        const double entries = detail::as_double(a->start[detail::as_size(rows)]);
-        if (level_.empty()) first_entries = entries;
-        complexity_ += entries / first_entries;
-        scale.reset(rows);
-        for (Index i = 0; i < rows; ++i) {
-            const double diagonal = a->diagonal(i);
-            if (!(diagonal > 0.0) || !std::isfinite(diagonal)) {
-                name(i);
-                return false;
-            }
-            scale[i] = static_cast<float>(1.0 / std::sqrt(diagonal));
-        }
-        if (level_.empty()) scale_ = scale;
+        complexity_ += detail::as_double(a->start[detail::as_size(rows)]) / first_entries;
         if (rows <= options_.coarsest) {
-            const Index bad = factor_coarsest(*a, rows, scale);
-            if (bad >= 0) name(bad);
+            const Index bad = factor_coarsest(*a, rows, work.scale);
+            if (bad >= 0) singular_row_ = work.named(bad);
             return bad < 0;
         }
-        double strength = rows < 1000 ? options_.low_strength : options_.strength;
-        detail::Aggregates aggregates;
-        while (true) {
-            detail::find_strong(*a, rows, strength, strong);
-            aggregates = detail::aggregate(strong, rows, block);
-            if (aggregates.count * 10 < rows * 6 || !(strength > options_.low_strength)) break;
-            strength = std::max(options_.low_strength, strength / 4.0);
-        }
-        if (aggregates.count == 0 ||
-            aggregates.count * 10 > rows * 9) { // nothing left to coarsen: the sweeps settle it
-            level_.push_back(detail::LevelMaker(*a, rows, scale, nullptr).make(block, block, half));
-            return true;
-        }
-        detail::smooth_prolongation(strong, rows, aggregates, p);
-        level_.push_back(detail::LevelMaker(*a, rows, scale, &p).make(block, aggregates.block, half));
-        const Index count = aggregates.count;
-        SparseMatrix next = detail::galerkin(half, count, detail::transpose(p, strong));
-        detail::Buffer<float> below(count);
-        for (Index c = 0; c < count; ++c) below[c] = static_cast<float>(1.0 / std::sqrt(next.diagonal(c)));
-        detail::scale_coarse(level_.back(), below);
-        if (level_.size() > 2) { // may be visited twice
-            level_.back().right.reset(rows);
-            level_.back().first.reset(rows);
-        }
-        coarse = std::move(next);
+        const Index below =
+            large_.size() < 2 ? add_level(large_, *a, rows, work, coarse) : add_level(small_, *a, rows, work, coarse);
+        if (below <= 0) return below == 0;
         a = &coarse;
-        block = std::move(aggregates.block);
-        first.push_back(std::move(aggregates.first));
-        rows = count;
-        while (block.size() > 2 && rows / static_cast<Index>(block.size() - 1) < 2000)
-            block = detail::merged_blocks(block);
+        rows = below;
     }
 }
 
-TEPOR_INLINE Index Multigrid::factor_coarsest(const SparseMatrix& matrix, Index n, const detail::Buffer<float>& scale) {
+/// Adds the level of `a`; `next` becomes the matrix below it.
+/// @return its rows, 0 where there is none, -1 when it is singular
+template <class Level>
+Index Multigrid::add_level(std::vector<Level>& levels, const SparseMatrix& a, Index rows, detail::MultigridSetup& work,
+                           SparseMatrix& next) {
+    using Real = typename Level::Real;
+    detail::Crew* const crew = rows < 8000 ? nullptr : crew_.get();
+    detail::Aggregates aggregates = work.coarsen(a, rows, options_, crew);
+    if (aggregates.count == 0 || aggregates.count * 10 > rows * 9) { // nothing left to coarsen: the sweeps settle it
+        levels.push_back(detail::LevelMaker<Real>(a, rows, work.scale, work.blocks, nullptr)
+                             .make(work.blocks.begin, crew, work.half));
+        return 0;
+    }
+    detail::smooth_prolongation(work.strong, rows, aggregates, work.blocks, crew, work.p);
+    work.strong = {}; // memory is scarcest from here on
+    aggregates.of = {};
+    levels.push_back(
+        detail::LevelMaker<Real>(a, rows, work.scale, work.blocks, &work.p).make(aggregates.block, crew, work.half));
+    const Index count = aggregates.count;
+    const detail::RestrictionRows restriction = detail::transpose(work.p, aggregates, work.blocks, crew, a);
+    work.p = {};
+    next = detail::galerkin(work.half, aggregates, restriction, work.blocks, crew);
+    if constexpr (std::is_same_v<Real, double>) { // may be visited twice
+        levels.back().right.reset(rows);
+        levels.back().first.reset(rows);
+    }
+    work.first.push_back(std::move(aggregates.first));
+    work.blocks.begin = std::move(aggregates.block);
+    detail::merge_small(work.blocks);
+    detail::find_far(next, work.blocks);
+    const Index bad = detail::scale_rows(next, count, work.blocks, work.scale);
+    if (bad >= 0) {
+        singular_row_ = work.named(bad);
+        return -1;
+    }
+    detail::scale_coarse(levels.back(), work.scale, crew);
+    return count;
+}
+
+TEPOR_INLINE Index Multigrid::factor_coarsest(const SparseMatrix& matrix, Index n,
+                                              const detail::Buffer<double>& scale) {
     Index bad = -1;
     coarse_size_ = n;
     coarse_.assign(detail::as_size(n * n), 0.0);
     coarse_x_.resize(detail::as_size(n));
-    coarse_right_.resize(detail::as_size(n));
     const double floor = 8.0 * detail::pivot_floor(size_); // the levels above have added their rounding
     for (Index i = 0; i < n; ++i) {
         double* row = coarse_.data() + i * n;
         for (Index p = matrix.start[detail::as_size(i)]; p < matrix.start[detail::as_size(i) + 1]; ++p) {
             const Index j = matrix.column[detail::as_size(p)];
-            row[j] = matrix.lower[detail::as_size(p)] * static_cast<double>(scale[i]) * static_cast<double>(scale[j]);
+            row[j] = matrix.lower[detail::as_size(p)] * scale[i] * scale[j];
         }
         for (Index j = 0; j < i; ++j) {
             const double* other = coarse_.data() + j * n;
@@ -143,34 +147,44 @@ TEPOR_INLINE Index Multigrid::factor_coarsest(const SparseMatrix& matrix, Index 
     return bad;
 }
 
-TEPOR_INLINE void Multigrid::descend(std::size_t depth) noexcept {
-    if (depth == level_.size()) { // the coarsest
-        const Index n = coarse_size_;
-        double* x = coarse_x_.data();
-        for (Index i = 0; i < n; ++i) {
-            const double* row = coarse_.data() + i * n;
-            double sum = static_cast<double>(coarse_right_[detail::as_size(i)]);
-            for (Index j = 0; j < i; ++j) sum -= row[j] * x[j];
-            x[i] = sum * row[i];
-        }
-        for (Index i = n - 1; i >= 0; --i) {
-            const double* row = coarse_.data() + i * n;
-            x[i] *= row[i];
-            for (Index j = 0; j < i; ++j) x[j] -= row[j] * x[i];
-        }
-        for (Index i = 0; i < n; ++i) coarse_right_[detail::as_size(i)] = static_cast<float>(x[i]);
-        return;
+TEPOR_INLINE void Multigrid::solve_coarsest() noexcept {
+    const Index n = coarse_size_;
+    double* x = coarse_x_.data();
+    for (Index i = 0; i < n; ++i) {
+        const double* row = coarse_.data() + i * n;
+        double sum = x[i];
+        for (Index j = 0; j < i; ++j) sum -= row[j] * x[j];
+        x[i] = sum * row[i];
     }
-    detail::MultigridLevel& level = level_[depth];
-    const bool last = depth + 1 == level_.size();
-    float* coarse = last ? coarse_right_.data() : level_[depth + 1].x.data();
-    for (Index c = 0; c < level.columns; ++c) coarse[c] = 0.0f;
+    for (Index i = n - 1; i >= 0; --i) {
+        const double* row = coarse_.data() + i * n;
+        x[i] *= row[i];
+        for (Index j = 0; j < i; ++j) x[j] -= row[j] * x[i];
+    }
+}
+
+// Through the level at `depth` and all below it.
+TEPOR_INLINE void Multigrid::descend(std::size_t depth) noexcept {
+    const std::size_t next = depth + 1;
+    if (depth < large_.size()) {
+        if (next < large_.size()) return pass(large_[depth], depth, large_[next].x.data());
+        return pass(large_[depth], depth, small_.empty() ? coarse_x_.data() : small_[0].x.data());
+    }
+    const std::size_t k = depth - large_.size();
+    if (k == small_.size()) return solve_coarsest();
+    pass(small_[k], depth, k + 1 < small_.size() ? small_[k + 1].x.data() : coarse_x_.data());
+}
+
+template <class Level, class Coarse>
+void Multigrid::pass(Level& level, std::size_t depth, Coarse* coarse) noexcept {
+    for (Index c = 0; c < level.columns; ++c) coarse[c] = Coarse{0};
     const Index pairs = static_cast<Index>(level.block.size()) / 2;
     detail::Crew* const crew = level.rows < 8000 ? nullptr : crew_.get(); // below, waking costs more than it gains
     const auto down = [&](Index pair) { detail::forward_blocks(level, detail::as_size(2 * pair), coarse); };
     detail::run_tasks(crew, pairs, down);
     detail::forward_between(level, coarse);
     if (level.columns > 0) {
+        const bool last = depth + 1 == large_.size() + small_.size();
         if (depth > 0 && !last && level.columns * 5 < level.rows * 2) {
             descend_twice(depth + 1);
         } else {
@@ -185,7 +199,7 @@ TEPOR_INLINE void Multigrid::descend(std::size_t depth) noexcept {
 // A second visit from the residual of the first, so that convergence does not fade with the number of levels. Below the
 // first coarse level it costs a few percent of the cycle.
 TEPOR_INLINE void Multigrid::descend_twice(std::size_t depth) noexcept {
-    detail::MultigridLevel& level = level_[depth];
+    detail::MultigridLevel<double>& level = small_[depth - large_.size()];
     std::copy_n(level.x.data(), level.rows, level.right.data());
     descend(depth);
     std::copy_n(level.x.data(), level.rows, level.first.data());
@@ -212,30 +226,33 @@ TEPOR_INLINE double Multigrid::cycle(const double* r, double* z) noexcept {
         return largest;
     }
     const double factor = 1.0 / largest;
-    float* x = level_.empty() ? coarse_right_.data() : level_[0].x.data();
-    const detail::Slices slices{n};
-    const auto enter = [&](Index k) {
-        for (Index i = slices.begin(k); i < slices.end(k); ++i) {
-            x[i] = static_cast<float>(r[i] * static_cast<double>(scale_[i]) * factor);
-        }
+    const auto through = [&](auto* x) {
+        using Real = std::remove_pointer_t<decltype(x)>;
+        const detail::Slices slices{n};
+        const auto enter = [&](Index k) {
+            for (Index i = slices.begin(k); i < slices.end(k); ++i) {
+                x[i] = static_cast<Real>(r[i] * static_cast<double>(scale_[i]) * factor);
+            }
+        };
+        detail::run_tasks(crew_.get(), slices.count(), enter);
+        descend(0);
+        double part[detail::Slices::most];
+        const auto leave = [&](Index k) {
+            double even = 0.0, odd = 0.0;
+            for (Index i = slices.begin(k); i < slices.end(k); ++i) {
+                const double ri = r[i];
+                const double zi = static_cast<double>(x[i]) * static_cast<double>(scale_[i]) * largest;
+                z[i] = zi;
+                (i % 2 == 0 ? even : odd) += ri * zi;
+            }
+            part[k] = even + odd;
+        };
+        detail::run_tasks(crew_.get(), slices.count(), leave);
+        double sum = 0.0;
+        for (Index k = 0; k < slices.count(); ++k) sum += part[k];
+        return sum;
     };
-    detail::run_tasks(crew_.get(), slices.count(), enter);
-    descend(0);
-    double part[detail::Slices::most];
-    const auto leave = [&](Index k) {
-        double even = 0.0, odd = 0.0;
-        for (Index i = slices.begin(k); i < slices.end(k); ++i) {
-            const double ri = r[i];
-            const double zi = static_cast<double>(x[i]) * static_cast<double>(scale_[i]) * largest;
-            z[i] = zi;
-            (i % 2 == 0 ? even : odd) += ri * zi;
-        }
-        part[k] = even + odd;
-    };
-    detail::run_tasks(crew_.get(), slices.count(), leave);
-    double sum = 0.0;
-    for (Index k = 0; k < slices.count(); ++k) sum += part[k];
-    return sum;
+    return large_.empty() ? through(coarse_x_.data()) : through(large_[0].x.data());
 }
 
 } // namespace tepor

@@ -94,15 +94,16 @@ TEPOR_INLINE bool Engine::factor(Index solves) {
         const bool fine = multigrid_.setup(thinned_ ? thin_ : definite, n);
         singular_ = fine ? -1 : detail::as_id(multigrid_.singular_row());
         if (fine) return true;
+        method_ = Method::none;
     }
     return factor_direct(definite);
 }
 
 TEPOR_INLINE bool Engine::factor_direct(const SparseMatrix& definite) {
-    method_ = Method::cholesky;
     if (!analyzed_) cholesky_.analyze(definite, model_->free, model_->places.data());
     analyzed_ = true;
     const bool fine = cholesky_.factor(definite);
+    if (fine || method_ != Method::multigrid) method_ = Method::cholesky; // multigrid may manage all the same
     singular_ = fine ? -1 : detail::as_id(cholesky_.singular_row());
     return fine;
 }
@@ -132,9 +133,8 @@ TEPOR_INLINE bool Engine::solve(double* b, double limit) {
     }
     if (!matrix.symmetric()) return solve_unsymmetric(b, limit, false);
     ++solves_;
-    if (method_ == Method::multigrid && choose_solver(n, 2, solves_) == SolverKind::cholesky) {
-        if (!factor_direct(matrix)) method_ = Method::multigrid; // which has managed until now
-    }
+    if (method_ == Method::multigrid && choose_solver(n, 2, solves_) == SolverKind::cholesky)
+        static_cast<void>(factor_direct(matrix)); // if it fails: multigrid has managed until now
     if (method_ == Method::multigrid) return iterate(b, limit);
     cholesky_.solve(b);
     return true;
@@ -145,10 +145,16 @@ TEPOR_INLINE bool Engine::iterate(double* b, double limit) {
     cg_x_.assign(detail::as_size(n), 0.0);
     const SparseMatrix& a = thinned_ ? thin_ : matrix;
     const auto cycle = [this](const double* r, double* z) { return multigrid_.cycle(r, z); };
+    // More than 40 iterations to 1e-8 are dearer than a factor, as long as that fits in memory.
+    const IterationLimits limits{.trial = n <= 1000000 ? 30 : 0};
     const IterationReport report =
-        conjugate_gradient(a, n, b, cg_x_.data(), cycle, IterationLimits{}, cg_work_,
+        conjugate_gradient(a, n, b, cg_x_.data(), cycle, limits, cg_work_,
                            detail::stop_below(a, n, limit, cg_x_.data(), detail::euclidean_norm(b, n)));
     iterations_ = report.iterations;
+    if ((report.slow || !(report.converged || report.residual < 1e-6)) && factor_direct(matrix)) {
+        cholesky_.solve(b);
+        return true;
+    }
     for (Index i = 0; i < n; ++i) b[i] = cg_x_[detail::as_size(i)];
     return report.converged || report.residual < 1e-6; // the caller measures what is left and may come again
 }
@@ -168,10 +174,19 @@ TEPOR_INLINE bool Engine::solve_unsymmetric(double* b, double limit, bool transp
     const auto apply = [&](const double* x, double* y) {
         transposed ? multiply_transposed(matrix, n, x, y) : multiply(matrix, n, x, y);
     };
-    const IterationReport report = bicgstab(
-        apply, n, b, cg_x_.data(), [this](const double* r, double* z) { precondition(r, z); }, IterationLimits{},
-        krylov_work_, detail::stop_below(matrix, n, limit, cg_x_.data(), detail::euclidean_norm(b, n)));
-    iterations_ = report.iterations;
+    const auto run = [&] {
+        const IterationReport made = bicgstab(
+            apply, n, b, cg_x_.data(), [this](const double* r, double* z) { precondition(r, z); }, IterationLimits{},
+            krylov_work_, detail::stop_below(matrix, n, limit, cg_x_.data(), detail::euclidean_norm(b, n)));
+        iterations_ = made.iterations;
+        return made;
+    };
+    IterationReport report = run();
+    if (!(report.converged || report.residual < 1e-6) && method_ == Method::multigrid &&
+        factor_direct(symmetric_part_)) {
+        cg_x_.assign(detail::as_size(n), 0.0);
+        report = run();
+    }
     for (Index i = 0; i < n; ++i) b[i] = cg_x_[detail::as_size(i)];
     return report.converged || report.residual < 1e-6;
 }

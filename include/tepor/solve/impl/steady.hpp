@@ -221,6 +221,9 @@ inline void validate(const SteadyOptions& options) {
     if (!(options.tolerance > 0.0 && options.tolerance < 1.0))
         throw Error(ErrorCode::bad_value, "tolerance",
                     text("SteadyOptions: tolerance = ", options.tolerance, ", expected 0 < tolerance < 1"));
+    if (options.threads < 1 || options.threads > 1024)
+        throw Error(ErrorCode::bad_value, "threads",
+                    text("SteadyOptions: threads = ", options.threads, ", expected 1 to 1024"));
     if (options.most_passes < 1)
         throw Error(ErrorCode::bad_value, "most_passes",
                     text("SteadyOptions: most_passes = ", options.most_passes, ", expected at least 1"));
@@ -263,6 +266,7 @@ inline void steady_solve(const std::shared_ptr<const Model>& model, EnginePool& 
     const std::vector<double> key = matrix_key(*model, into.values());
     std::unique_ptr<Engine> engine = options.solver ? std::make_unique<Engine>(model) : pool.borrow(model, key);
     if (options.solver) engine->use(options.solver);
+    engine->use_threads(options.threads);
     const bool factored = !model->nonlinear && engine->key == key;
     engine->key.clear();
     SteadySolve solve(*engine, into.values(), options);
