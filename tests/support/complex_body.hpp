@@ -195,15 +195,21 @@ class ComplexBody {
         for (Index c = 0; c < mesh_.cell_count(); ++c) {
             if (!touches(c, false)) continue;
             const Id region = mesh_.region[static_cast<std::size_t>(c)];
-            each_point(c, [&](const Cell& at, Complex w) {
+            // triangles of order 1 conduct by the conductivity at their centroid
+            const bool flat = E::shape_of_cell == CellShape::triangle && E::order == 1;
+            const int degree = flat ? 1 : 2 * E::order + mesh_.frame.power();
+            each_point(c, rule_for<E>(degree), [&](const Cell& at, Complex w) {
                 const Tensor k = conductivity(static_cast<std::size_t>(region), at.spot);
-                const Complex s = source(static_cast<std::size_t>(region), at.spot);
                 const Complex qx = k[0] * at.tx + k[2] * at.ty;
                 const Complex qy = k[1] * at.ty + k[2] * at.tx;
                 for (int i = 0; i < E::nodes; ++i)
                     r[unknown(mesh_.cell(c)[i], region)] +=
-                        w * (qx * at.gx[static_cast<std::size_t>(i)] + qy * at.gy[static_cast<std::size_t>(i)] +
-                             s * at.shape[static_cast<std::size_t>(i)]);
+                        w * (qx * at.gx[static_cast<std::size_t>(i)] + qy * at.gy[static_cast<std::size_t>(i)]);
+            });
+            each_point(c, [&](const Cell& at, Complex w) {
+                const Complex s = source(static_cast<std::size_t>(region), at.spot);
+                for (int i = 0; i < E::nodes; ++i)
+                    r[unknown(mesh_.cell(c)[i], region)] += w * s * at.shape[static_cast<std::size_t>(i)];
             });
         }
         for (std::size_t f = 0; f < mesh_.faces.size(); ++f)
@@ -252,7 +258,11 @@ class ComplexBody {
 
     template <class Take>
     void each_point(Index c, const Take& take) {
-        const auto rule = rule_for<E>(2 * E::order + mesh_.frame.power());
+        each_point(c, rule_for<E>(2 * E::order + mesh_.frame.power()), take);
+    }
+
+    template <class R, class Take>
+    void each_point(Index c, const R& rule, const Take& take) {
         const Id region = mesh_.region[static_cast<std::size_t>(c)];
         for (Index q = 0; q < rule.size(); ++q) {
             const auto n = E::shape(rule.point(q));

@@ -21,8 +21,14 @@ struct Wanted {
 /// arrays out. All arrays belong to the Workspace that lends them.
 struct CellBlock {
     int count = 0; ///< cells that are meant, the rest is padding
-    /// CellKernels::open may leave out point_T, and the gradients at all points but the first where they are the same at all.
-    bool brief = false;
+    /// What the caller will not read, so that CellKernels::open() need not fill it.
+    struct Unread {
+        bool sources = false;      ///< everything at points that are not points of conduction
+        bool conduction = false;   ///< places of the points of conduction: its data are the same everywhere
+        bool temperatures = false; ///< point_T
+        bool gradients = false;    ///< gradients, where form() does without
+    };
+    Unread unread;
 
     // at nodes, set by the caller
     double* x = nullptr;
@@ -37,7 +43,7 @@ struct CellBlock {
     double* gradient_x = nullptr; ///< (points x nodes): physical gradients of the shape functions
     double* gradient_y = nullptr;
 
-    // coefficients at points, set by the caller before CellKernels::form
+    // coefficients at points, set by the caller before CellKernels::form; conductivities at the points of conduction
     int conductivities = 0;                                 ///< 0 none, 1 isotropic, 2 along x and y, 3 also xy
     const double* k[3] = {nullptr, nullptr, nullptr};       ///< xx, yy, xy [W/(m K)]
     const double* k_slope[3] = {nullptr, nullptr, nullptr}; ///< by temperature; null when constant

@@ -21,7 +21,9 @@ class CellKernels {
     int dim = 0;
     int order = 0;
     int nodes = 0;
-    int points = 0; ///< quadrature points per cell
+    int points = 0; ///< quadrature points per cell, for sources and storage
+    /// Points of a rule for conduction alone, behind the others in the arrays of a block; 0 where the others serve.
+    int own_conduction_points = 0;
     int sides = 0;
     int side_nodes = 0;
     int side_points = 0;
@@ -30,10 +32,17 @@ class CellKernels {
     /// Cells of two nodes with the matrix (1 / R) [1 -1; -1 1]: open_chain() and form_chain() serve them.
     bool chain = false;
 
+    /// The points of conduction: how many, and the position of the first among all.
+    [[nodiscard]] int conduction_points() const noexcept {
+        return own_conduction_points > 0 ? own_conduction_points : points;
+    }
+    [[nodiscard]] int first_conduction_point() const noexcept { return own_conduction_points > 0 ? points : 0; }
+    [[nodiscard]] int all_points() const noexcept { return points + own_conduction_points; }
+
     /// Local cell node that is node j of side s.
     [[nodiscard]] virtual int side_node(int s, int j) const = 0;
 
-    /// Fills places, weights, temperatures at points and gradients from node data.
+    /// Fills places, weights, temperatures at points and gradients from node data; see CellBlock::unread.
     virtual void open(CellBlock& block) const = 0;
 
     /// Element residual, matrix and slope from the coefficients; what is not wanted is left alone.
@@ -44,7 +53,7 @@ class CellKernels {
     /// cell laws need the conductivities too.
     virtual void form_capacity(CellBlock& block, const double* amount, bool lumped) const = 0;
 
-    /// The temperature at the quadrature points as the cell itself has it, into block.point_T. With `shape` (points x
+    /// The temperature at all points as the cell itself has it, into block.point_T. With `shape` (points x
     /// nodes) the weight of each node's temperature in it. What open() has put there is that already for every Element; an
     /// exact cell law needs the coefficients, and with k_mean it gives the integral of k from the first node's temperature.
     virtual void profile(CellBlock& block, double* shape) const = 0;
@@ -57,7 +66,7 @@ class CellKernels {
     virtual void open_side(SideBlock& block, bool lumped) const = 0;
     virtual void form_side(SideBlock& block, Wanted wanted, bool lumped) const = 0;
 
-    /// Shape functions at quadrature point q of a cell or a side, for functionals; null for cell laws without fixed ones.
+    /// Shape functions at point q (of all) of a cell or a side, for functionals; null for cell laws without fixed ones.
     [[nodiscard]] virtual const double* shape_at(int q) const = 0;
     [[nodiscard]] virtual const double* side_shape_at(int q, bool lumped) const = 0;
 
@@ -67,7 +76,7 @@ class CellKernels {
     /// Reference coordinates of node i (`dim` entries).
     virtual void reference_node(int i, double* xi) const = 0;
 
-    [[nodiscard]] Workspace workspace() const { return {nodes, points, side_nodes, side_points}; }
+    [[nodiscard]] Workspace workspace() const { return {nodes, all_points(), side_nodes, side_points}; }
 };
 
 } // namespace tepor

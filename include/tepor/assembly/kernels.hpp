@@ -14,6 +14,11 @@ namespace tepor {
 ///
 /// The weak form on paper: r_i = int k grad T . grad N_i + s N_i, its derivative by T_j, and on sides int q N_i. The
 /// default rules are exact for the capacity matrix of straight cells in every frame of the element's dimension.
+///
+/// Triangles of order 1, whose gradients are constant, take their conductivity at conduction_degree() points: by default one, the
+/// centroid. That is the integral of a k that is linear in place (planar) or constant (r-z); for any other smooth k temperature and
+/// heat flow keep their order h^2, for which a rule of degree 2 P - 1 suffices (Ciarlet, The Finite Element Method for Elliptic
+/// Problems, 1978, section 4.1).
 /// Cost per block: O(points nodes^2) for the matrix, O(points nodes) for the residual; nothing is allocated.
 template <Element E>
 class Kernels final : public CellKernels {
@@ -22,7 +27,13 @@ class Kernels final : public CellKernels {
 
     /// @param extra_degree raises the degree of the cell and side rules, for sources or conductivities that vary a lot
     explicit Kernels(Frame frame = {}, int extra_degree = 0)
-        : Kernels(rule_for<E>(2 * E::order + frame.power() + extra_degree), frame, extra_degree) {}
+        : Kernels(rule_for<E>(2 * E::order + frame.power() + extra_degree), frame, extra_degree) {
+        if constexpr (flat_triangle) {
+            const auto rule = rule_for<E>(conduction_degree(extra_degree));
+            own_conduction_points = static_cast<int>(rule.size());
+            add_points(rule);
+        }
+    }
 
     /// With a rule of one's own on the cells.
     template <QuadratureRule R>
@@ -34,16 +45,7 @@ class Kernels final : public CellKernels {
         side_nodes = Side::nodes;
         chain = E::dim == 1 && constant_gradient;
         points = static_cast<int>(rule.size());
-        for (Index q = 0; q < rule.size(); ++q) {
-            const typename E::point xi = rule.point(q);
-            rule_weight_.push_back(rule.weight(q));
-            const auto n = E::shape(xi);
-            const auto g = E::gradient(xi);
-            for (int i = 0; i < E::nodes; ++i) {
-                shape_.push_back(n[i]);
-                for (int d = 0; d < E::dim; ++d) reference_gradient_.push_back(g(i, d));
-            }
-        }
+        add_points(rule);
         if constexpr (E::dim == 2) {
             const Rule<1> along = line_rule(2 * E::order + power_ + extra_degree);
             side_points = static_cast<int>(along.size());
@@ -55,6 +57,9 @@ class Kernels final : public CellKernels {
             side_points = 1;
         }
     }
+
+    /// Degree of the rule for conduction of triangles of order 1.
+    [[nodiscard]] static constexpr int conduction_degree(int extra_degree) noexcept { return 1 + extra_degree; }
 
     [[nodiscard]] int side_node(int s, int j) const override { return E::side_node(s, j); }
     [[nodiscard]] const double* shape_at(int q) const override {
@@ -95,9 +100,10 @@ class Kernels final : public CellKernels {
   private:
     static constexpr int W = block_width;
     static constexpr int N = E::nodes;
-    /// Straight simplices: the gradients are the same at every point.
+    /// Straight simplices of order 1: the gradients are the same at every point.
+    static constexpr bool flat_triangle = E::shape_of_cell == CellShape::triangle && E::order == 1 && N == 3;
     static constexpr bool constant_gradient =
-        (E::shape_of_cell == CellShape::triangle || E::shape_of_cell == CellShape::segment) && E::order == 1;
+        flat_triangle || (E::shape_of_cell == CellShape::segment && E::order == 1 && N == 2);
 
     struct SideTable {
         std::vector<double> weight, shape, gradient;
@@ -146,16 +152,42 @@ class Kernels final : public CellKernels {
         return power_ == 0 ? factor_ : (power_ == 1 ? factor_ * r : factor_ * r * r);
     }
 
+    /// Jacobian of a triangle over (x1 - x0) (y2 - y0) - (x2 - x0) (y1 - y0): 1 where the reference nodes go counter-clockwise too.
+    [[nodiscard]] double reference_turn() const noexcept {
+        const double* g = reference_gradient_.data();
+        return g[2] * g[5] - g[4] * g[3];
+    }
+
+    template <class R>
+    void add_points(const R& rule) {
+        for (Index q = 0; q < rule.size(); ++q) {
+            const typename E::point xi = rule.point(q);
+            rule_weight_.push_back(rule.weight(q));
+            const auto n = E::shape(xi);
+            const auto g = E::gradient(xi);
+            for (int i = 0; i < E::nodes; ++i) {
+                shape_.push_back(n[i]);
+                for (int d = 0; d < E::dim; ++d) reference_gradient_.push_back(g(i, d));
+            }
+        }
+    }
+
     void map_segment_point(int q, int count, const double* left, const double* right, double* place,
                            double* weight) const;
     void map_segments(CellBlock& block) const;
     void map_plane(CellBlock& block) const;
-    void map_triangles(CellBlock& block) const;
     void add_conduction(CellBlock& block, Wanted wanted) const;
     void sum_conductivity(int count, const double* weight, int stride, const double* k, double k_value,
                           double* total) const;
-    void add_uniform_conduction(CellBlock& block, Wanted wanted) const;
+    void form_segment_conduction(CellBlock& block, Wanted wanted) const;
     void add_source(CellBlock& block, Wanted wanted) const;
+
+    // triangles of order 1: kernels_triangles.hpp
+    void map_triangles(CellBlock& block) const;
+    void triangle_points(CellBlock& block, int from, int to, const double* twice) const;
+    void integrate_on_triangle(const CellBlock& block, const double* k, double* total) const;
+    void form_triangle_conduction(CellBlock& block, Wanted wanted) const;
+    void add_triangle_slope(CellBlock& block) const;
 
     int power_;
     double factor_;
@@ -170,3 +202,4 @@ class Kernels final : public CellKernels {
 #include <tepor/assembly/kernels_chain.hpp>
 #include <tepor/assembly/kernels_maps.hpp>
 #include <tepor/assembly/kernels_sides.hpp>
+#include <tepor/assembly/kernels_triangles.hpp>

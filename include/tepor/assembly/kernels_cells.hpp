@@ -9,16 +9,21 @@ template <Element E>
 void Kernels<E>::form(CellBlock& block, Wanted wanted) const {
     if (wanted.residual)
         for (int i = 0; i < N * W; ++i) block.residual[i] = 0.0;
-    // constant gradients and one conductivity: the matrix is set, not added to
-    const bool uniform = constant_gradient && block.conductivities == 1 && !wanted.slope;
-    if (wanted.matrix && !uniform)
+    // constant gradients: the matrix is set, not added to
+    const bool set =
+        flat_triangle ? block.conductivities > 0 : constant_gradient && block.conductivities == 1 && !wanted.slope;
+    if (wanted.matrix && !set)
         for (int i = 0; i < N * (N + 1) / 2 * W; ++i) block.matrix[i] = 0.0;
     if (wanted.slope)
         for (int i = 0; i < N * N * W; ++i) block.slope[i] = 0.0;
-    if (uniform)
-        add_uniform_conduction(block, wanted);
-    else if (block.conductivities > 0)
-        add_conduction(block, wanted);
+    if (block.conductivities > 0) {
+        if constexpr (flat_triangle)
+            form_triangle_conduction(block, wanted);
+        else if (set)
+            form_segment_conduction(block, wanted);
+        else
+            add_conduction(block, wanted);
+    }
     if (block.source) add_source(block, wanted);
 }
 
@@ -40,55 +45,28 @@ void Kernels<E>::sum_conductivity(int count, const double* weight, int stride, c
     }
 }
 
+/// Two-node segments: the matrix is total / h^2 [1 -1; -1 1], and the heat that flows comes from the difference of two temperatures.
 template <Element E>
-void Kernels<E>::add_uniform_conduction(CellBlock& block, Wanted wanted) const {
-    // constant gradients: the point weights add up first
+void Kernels<E>::form_segment_conduction(CellBlock& block, Wanted wanted) const {
     double total[W];
     sum_conductivity(W, block.weight, W, block.k_uniform ? nullptr : block.k[0], block.k[0][0], total);
-    const double* TEPOR_RESTRICT gx = block.gradient_x;
-    const double* TEPOR_RESTRICT gy = block.gradient_y;
+    const double* TEPOR_RESTRICT left = block.gradient_x;
+    const double* TEPOR_RESTRICT right = block.gradient_x + W;
     if (wanted.matrix) {
-        // the gradients of a cell add up to zero, so its rows do
-        for (int i = 0; i < N; ++i)
-            for (int j = 0; j < i; ++j) {
-                double* TEPOR_RESTRICT m = block.matrix + (i * (i + 1) / 2 + j) * W;
-                if constexpr (E::dim == 1)
-                    for (int c = 0; c < W; ++c) m[c] = total[c] * (gx[i * W + c] * gx[j * W + c]);
-                else
-                    for (int c = 0; c < W; ++c)
-                        m[c] = total[c] * (gx[i * W + c] * gx[j * W + c] + gy[i * W + c] * gy[j * W + c]);
-            }
-        const auto at = [&block](int i, int j) {
-            return block.matrix + (i > j ? i * (i + 1) / 2 + j : j * (j + 1) / 2 + i) * W;
-        };
-        for (int i = 0; i < N; ++i) {
-            double* TEPOR_RESTRICT m = at(i, i);
-            if constexpr (N == 2) {
-                const double* TEPOR_RESTRICT other = at(i, 1 - i);
-                for (int c = 0; c < W; ++c) m[c] = -other[c];
-            } else {
-                static_assert(!constant_gradient || N == 3);
-                const double* TEPOR_RESTRICT one = at(i, (i + 1) % N);
-                const double* TEPOR_RESTRICT two = at(i, (i + 2) % N);
-                for (int c = 0; c < W; ++c) m[c] = -(one[c] + two[c]);
-            }
+        double* TEPOR_RESTRICT m = block.matrix;
+        for (int c = 0; c < W; ++c) {
+            const double coupling = total[c] * (left[c] * right[c]);
+            m[c] = -coupling;
+            m[W + c] = coupling;
+            m[2 * W + c] = -coupling;
         }
     }
     if (wanted.residual) {
-        double tx[W];
-        double ty[W];
-        for (int c = 0; c < W; ++c) tx[c] = ty[c] = 0.0;
-        for (int i = 0; i < N; ++i)
-            for (int c = 0; c < W; ++c) {
-                tx[c] += gx[i * W + c] * block.T[i * W + c];
-                if constexpr (E::dim == 2) ty[c] += gy[i * W + c] * block.T[i * W + c];
-            }
-        for (int i = 0; i < N; ++i) {
-            double* TEPOR_RESTRICT r = block.residual + i * W;
-            if constexpr (E::dim == 1)
-                for (int c = 0; c < W; ++c) r[c] += total[c] * (gx[i * W + c] * tx[c]);
-            else
-                for (int c = 0; c < W; ++c) r[c] += total[c] * (gx[i * W + c] * tx[c] + gy[i * W + c] * ty[c]);
+        double* TEPOR_RESTRICT r = block.residual;
+        for (int c = 0; c < W; ++c) {
+            const double slope = left[c] * block.T[c] + right[c] * block.T[W + c];
+            r[c] += total[c] * (left[c] * slope);
+            r[W + c] += total[c] * (right[c] * slope);
         }
     }
 }
@@ -223,7 +201,10 @@ void Kernels<E>::profile(CellBlock& block, double* shape) const {
             for (int i = 0; i < N; ++i)
                 for (int c = 0; c < W; ++c) shape[(q * N + i) * W + c] = shape_[detail::as_size(q * N + i)];
     if (!block.T) return;
-    for (int q = 0; q < points; ++q) {
+    const bool own = own_conduction_points > 0;
+    const int first = own && block.unread.sources ? points : 0;
+    const int last = own && block.unread.conduction ? points : all_points();
+    for (int q = first; q < last; ++q) {
         const double* n = shape_.data() + static_cast<Index>(q) * N;
         double* TEPOR_RESTRICT T = block.point_T + q * W;
         for (int c = 0; c < W; ++c) T[c] = 0.0;

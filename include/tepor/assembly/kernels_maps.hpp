@@ -40,7 +40,7 @@ void Kernels<E>::map_segments(CellBlock& block) const {
         }
         for (int q = 0; q < points; ++q) {
             map_segment_point(q, W, x, x + W, block.point_x + q * W, block.weight + q * W);
-            if (q > 0 && !block.brief)
+            if (q > 0 && !block.unread.gradients)
                 for (int i = 0; i < 2 * W; ++i) block.gradient_x[q * 2 * W + i] = block.gradient_x[i];
         }
         return;
@@ -62,79 +62,6 @@ void Kernels<E>::map_segments(CellBlock& block) const {
         for (int i = 0; i < N; ++i) {
             double* TEPOR_RESTRICT gx = block.gradient_x + (q * N + i) * W;
             for (int c = 0; c < W; ++c) gx[c] = g[i] / jacobian[c];
-        }
-    }
-}
-
-/// Straight triangles of three nodes: one Jacobian and one set of gradients per cell.
-template <Element E>
-void Kernels<E>::map_triangles(CellBlock& block) const {
-    const double* TEPOR_RESTRICT x = block.x;
-    const double* TEPOR_RESTRICT y = block.y;
-    const double* g = reference_gradient_.data();
-    double twice[W]; // the area
-    double xx[W];    // derivatives of the map, over the Jacobian
-    double xe[W];
-    double yx[W];
-    double ye[W];
-    // the functions add up to 1, so their gradients to zero: the first follows from the others
-    const double g1x = g[2];
-    const double g1y = g[3];
-    const double g2x = g[4];
-    const double g2y = g[5];
-    for (int c = 0; c < W; ++c) {
-        const double x1 = x[W + c] - x[c];
-        const double x2 = x[2 * W + c] - x[c];
-        const double y1 = y[W + c] - y[c];
-        const double y2 = y[2 * W + c] - y[c];
-        xx[c] = g1x * x1 + g2x * x2;
-        xe[c] = g1y * x1 + g2y * x2;
-        yx[c] = g1x * y1 + g2x * y2;
-        ye[c] = g1y * y1 + g2y * y2;
-        twice[c] = xx[c] * ye[c] - xe[c] * yx[c];
-    }
-    for (int c = 0; c < W; ++c) {
-        const double inverse = 1.0 / twice[c];
-        xx[c] *= inverse;
-        xe[c] *= inverse;
-        yx[c] *= inverse;
-        ye[c] *= inverse;
-    }
-    double* TEPOR_RESTRICT gx = block.gradient_x;
-    double* TEPOR_RESTRICT gy = block.gradient_y;
-    for (int c = 0; c < W; ++c) {
-        const double one = ye[c] * g1x - yx[c] * g1y;
-        const double two = ye[c] * g2x - yx[c] * g2y;
-        gx[W + c] = one;
-        gx[2 * W + c] = two;
-        gx[c] = -(one + two);
-    }
-    for (int c = 0; c < W; ++c) {
-        const double one = xx[c] * g1y - xe[c] * g1x;
-        const double two = xx[c] * g2y - xe[c] * g2x;
-        gy[W + c] = one;
-        gy[2 * W + c] = two;
-        gy[c] = -(one + two);
-    }
-    for (int q = 0; q < points; ++q) {
-        const double* n = shape_.data() + static_cast<Index>(q) * N;
-        const double w = rule_weight_[detail::as_size(q)];
-        double* TEPOR_RESTRICT px = block.point_x + q * W;
-        double* TEPOR_RESTRICT py = block.point_y + q * W;
-        double* TEPOR_RESTRICT weight = block.weight + q * W;
-        const double n0 = n[0];
-        const double n1 = n[1];
-        const double n2 = n[2];
-        for (int c = 0; c < W; ++c) px[c] = n0 * x[c] + n1 * x[W + c] + n2 * x[2 * W + c];
-        for (int c = 0; c < W; ++c) py[c] = n0 * y[c] + n1 * y[W + c] + n2 * y[2 * W + c];
-        if (power_ == 0)
-            for (int c = 0; c < W; ++c) weight[c] = (w * factor_) * twice[c];
-        else
-            for (int c = 0; c < W; ++c) weight[c] = w * twice[c] * measure(px[c]);
-        if (q == 0 || block.brief) continue;
-        for (int i = 0; i < 3 * W; ++i) {
-            block.gradient_x[q * 3 * W + i] = block.gradient_x[i];
-            block.gradient_y[q * 3 * W + i] = block.gradient_y[i];
         }
     }
 }
@@ -189,12 +116,12 @@ template <Element E>
 void Kernels<E>::open(CellBlock& block) const {
     if constexpr (E::dim == 1) {
         map_segments(block);
-    } else if constexpr (constant_gradient && N == 3) {
+    } else if constexpr (flat_triangle) {
         map_triangles(block);
     } else {
         map_plane(block);
     }
-    if (!block.brief) profile(block, nullptr);
+    if (!block.unread.temperatures) profile(block, nullptr);
 }
 
 } // namespace tepor

@@ -127,11 +127,31 @@ TEST_CASE_TEMPLATE_DEFINE("batch functions agree with the matrices of one elemen
                           1e-14 * E::nodes * (scale + r.cwiseAbs().maxCoeff()));
             }
 
+            // k' N_j grad T . grad N_i
+            block.source = block.source_slope = nullptr;
+            block.k_slope[0] = work.coefficient[1];
+            kernels.form(block, Wanted{.residual = false, .matrix = true, .slope = true});
+            for (int c = 0; c < cells; ++c) {
+                const auto x = bent_cell<E>(c);
+                ElementVector<E> T;
+                for (int i = 0; i < E::nodes; ++i) T[i] = block.T[i * W + c];
+                ElementMatrix<E> S = ElementMatrix<E>::Zero();
+                detail::at_points<E>(x, rule, frame, [&](const auto& n, const auto& g, double weight, Point p) {
+                    S += (weight * c_at(p)) * (g * (g.transpose() * T)) * n.transpose();
+                });
+                for (int i = 0; i < E::nodes; ++i)
+                    for (int j = 0; j < E::nodes; ++j)
+                        CHECK(std::abs(S(i, j) - block.slope[(i * E::nodes + j) * W + c]) <=
+                              1e-14 * E::nodes * S.cwiseAbs().maxCoeff());
+                const ElementMatrix<E> K = conduction_matrix<E>(x, k_at, rule, frame);
+                CHECK(packed_difference(K, block.matrix, c) <= 1e-14 * K.cwiseAbs().maxCoeff());
+            }
+            block.k_slope[0] = nullptr;
+
             // one value in the whole block, and the capacity matrix alone
             const double k_one = 3.5;
             block.k[0] = &k_one;
             block.k_uniform = true;
-            block.source = block.source_slope = nullptr;
             kernels.form(block, both);
             for (int c = 0; c < cells; ++c) {
                 const ElementMatrix<E> K = conduction_matrix<E>(bent_cell<E>(c), k_one, rule, frame);
@@ -171,6 +191,99 @@ TEST_CASE_TEMPLATE_DEFINE("batch functions agree with the matrices of one elemen
 }
 TEST_CASE_TEMPLATE_INVOKE(agreement, Segment<1>, Segment<2>, Segment<3>, Triangle<1>, Triangle<2>, Triangle<3>,
                           Quadrilateral<1>, Quadrilateral<2>, Quadrilateral<3>, test::Serendipity8);
+
+TEST_CASE_TEMPLATE_DEFINE("a block of which only the element arrays are read gives the same to the last bit", E,
+                          unread) {
+    constexpr int W = block_width;
+    for (const Frame& frame : frames<E>()) {
+        CAPTURE(frame.power());
+        const Kernels<E> kernels(frame);
+        const Index from = static_cast<Index>(kernels.first_conduction_point()) * W;
+        // temperatures are read where conductivity depends on them, places where a source or a conductivity does
+        for (const bool source : {false, true})
+            for (const bool uniform : {false, true})
+                for (const bool nonlinear : {false, true}) {
+                    if (uniform && nonlinear) continue;
+                    CAPTURE(source);
+                    CAPTURE(uniform);
+                    CAPTURE(nonlinear);
+                    std::vector<double> seen[2];
+                    for (const bool lean : {false, true}) {
+                        Workspace work = kernels.workspace();
+                        CellBlock& block = work.cells;
+                        fill<E>(block, work.nodal_T, 7);
+                        if (lean)
+                            block.unread = {.sources = !source,
+                                            .conduction = uniform,
+                                            .temperatures = !nonlinear,
+                                            .gradients = true};
+                        kernels.open(block);
+                        double* k = work.coefficient[0];
+                        double* slope = work.coefficient[1];
+                        for (int i = 0; i < kernels.conduction_points() * W; ++i) {
+                            const Point p{block.point_x[from + i], E::dim == 2 ? block.point_y[from + i] : 0.0};
+                            k[i] = uniform ? 2.5 : k_at(p) * (nonlinear ? 1.0 + 0.01 * block.point_T[from + i] : 1.0);
+                            slope[i] = 0.01;
+                        }
+                        if (source)
+                            for (int i = 0; i < kernels.points * W; ++i)
+                                work.coefficient[2][i] = f_at({block.point_x[i], E::dim == 2 ? block.point_y[i] : 0.0});
+                        block.conductivities = 1;
+                        block.k_uniform = uniform;
+                        block.k[0] = k;
+                        block.k_slope[0] = nonlinear ? slope : nullptr;
+                        block.source = source ? work.coefficient[2] : nullptr;
+                        kernels.form(block, Wanted{.residual = true, .matrix = true, .slope = nonlinear});
+                        std::vector<double>& all = seen[lean ? 1 : 0];
+                        all.insert(all.end(), block.matrix, block.matrix + E::nodes * (E::nodes + 1) / 2 * W);
+                        all.insert(all.end(), block.residual, block.residual + E::nodes * W);
+                        if (nonlinear) all.insert(all.end(), block.slope, block.slope + E::nodes * E::nodes * W);
+                    }
+                    CHECK(seen[0] == seen[1]);
+                }
+    }
+}
+TEST_CASE_TEMPLATE_INVOKE(unread, Segment<1>, Segment<2>, Triangle<1>, Triangle<2>, Quadrilateral<1>, Quadrilateral<2>,
+                          test::Serendipity8);
+
+TEST_CASE("triangles of order 1 conduct by the conductivity at their centroid, and by more points when asked") {
+    // The mean of a linear function over a triangle is its value at the centroid, its integral against r by the rule of degree 2.
+    constexpr int W = block_width;
+    const auto linear = [](Point p) { return 1.0 + 0.4 * p.x + 0.7 * p.y; };
+    for (const Frame& frame : frames<Triangle<1>>())
+        for (const int extra : {0, 1, 4}) {
+            CAPTURE(frame.power());
+            CAPTURE(extra);
+            const Kernels<Triangle<1>> kernels(frame, extra);
+            const auto rule = triangle_rule(1 + extra);
+            CHECK(kernels.conduction_points() == rule.size());
+            CHECK(kernels.points == triangle_rule(2 + frame.power() + extra).size());
+            Workspace work = kernels.workspace();
+            CellBlock& block = work.cells;
+            fill<Triangle<1>>(block, work.nodal_T, 5);
+            kernels.open(block);
+            const Index from = static_cast<Index>(kernels.first_conduction_point()) * W;
+            const auto form = [&](const auto& k) {
+                for (int i = 0; i < kernels.conduction_points() * W; ++i)
+                    work.coefficient[0][i] = k(Point{block.point_x[from + i], block.point_y[from + i]});
+                block.conductivities = 1;
+                block.k[0] = work.coefficient[0];
+                kernels.form(block, Wanted{.residual = true, .matrix = true});
+            };
+            form(k_at);
+            for (int c = 0; c < 5; ++c) {
+                const auto K = conduction_matrix<Triangle<1>>(bent_cell<Triangle<1>>(c), k_at, rule, frame);
+                CHECK(packed_difference(K, block.matrix, c) <= 1e-14 * K.cwiseAbs().maxCoeff());
+            }
+            if (frame.power() > extra) continue;
+            form(linear);
+            for (int c = 0; c < 5; ++c) {
+                const auto K =
+                    conduction_matrix<Triangle<1>>(bent_cell<Triangle<1>>(c), linear, triangle_rule(8), frame);
+                CHECK(packed_difference(K, block.matrix, c) <= 1e-13 * K.cwiseAbs().maxCoeff());
+            }
+        }
+}
 
 TEST_CASE_TEMPLATE_DEFINE("side functions agree with the matrices of one side to rounding", E, side_agreement) {
     constexpr int W = block_width;

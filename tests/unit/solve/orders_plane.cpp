@@ -82,7 +82,7 @@ TEST_CASE_TEMPLATE("2D elements of order P: L2 error falls as h^(P+1), energy as
     constexpr bool triangle = E::shape_of_cell == CellShape::triangle;
     // [shape][P][frame]: errors on the finest regular mesh in L2, energy, heat flow
     static constexpr double level[2][3][2][3] = {
-        {{{4.294e-03, 8.177e-01, 3.300e-04}, {6.903e-03, 1.267e+00, 4.336e-04}},
+        {{{4.294e-03, 8.177e-01, 5.159e-05}, {6.903e-03, 1.267e+00, 5.985e-04}},
          {{1.562e-04, 2.857e-02, 6.106e-07}, {3.058e-04, 5.318e-02, 1.722e-06}},
          {{6.726e-06, 1.233e-03, 7.133e-10}, {1.031e-05, 1.814e-03, 1.736e-09}}},
         {{{2.437e-03, 5.756e-01, 2.768e-04}, {4.152e-03, 9.368e-01, 8.748e-04}},
@@ -115,7 +115,7 @@ TEST_CASE_TEMPLATE("2D elements of order P: L2 error falls as h^(P+1), energy as
                 CHECK(std::abs(study[i].order() - order[i]) <= (distorted ? 0.35 : 0.05));
                 const double relative = study[i].error.back() / level[triangle ? 0 : 1][P - 1][frame.power()][i];
                 CHECK(relative <= (distorted ? 3.0 : 1.02));
-                CHECK(relative >= (distorted ? 1.0 : 0.98));
+                CHECK(relative >= (distorted ? 0.95 : 0.98));
             }
         }
 }

@@ -187,12 +187,17 @@ class Assembler {
         const RegionPass pass = prepare(r, wanted);
         if (pass_.fault) return;
         struct Reset { // whatever a law throws, others find the block as they expect it
-            bool& flag;
-            ~Reset() { flag = false; }
-        } const reset{block.brief};
-        block.brief = !pass.by_temperature && !pass_.content && !kernel_.exact;
+            CellBlock::Unread& unread;
+            ~Reset() { unread = {}; }
+        } const reset{block.unread};
+        if (!kernel_.exact) {
+            block.unread.gradients = true;
+            block.unread.conduction = block.k_uniform;
+            block.unread.sources = !pass.sources && !pass_.content;
+            block.unread.temperatures = !pass.by_temperature && !pass_.content;
+        }
         // a linear cell's temperatures enter its residual alone
-        const double* T = block.brief && !wanted.residual ? nullptr : pass_.T;
+        const double* T = block.unread.temperatures && !wanted.residual ? nullptr : pass_.T;
         Id ids[W];
         for (Id c = region.first_cell; c < region.last_cell; c += W) {
             block.count = gather_cells(model_, place_, T, work_.nodal_T, c, region.last_cell, block, ids);
@@ -207,16 +212,17 @@ class Assembler {
         const RegionModel& region = model_.regions[pass.region];
         CellBlock& block = work_.cells;
         kernel_.open(block);
-        const Points at{static_cast<Index>(kernel_.points) * W, block.T && !block.brief ? block.point_T : nullptr,
-                        nullptr, block.point_x, block.point_y};
+        const double* const point_T = block.T && !block.unread.temperatures ? block.point_T : nullptr;
         if (pass.own_mean) {
             if (!mean_conductivity(region.k[0], ids)) return false;
         } else if (!block.k_uniform) {
+            const Points at = conduction_points(kernel_, block, point_T);
             for (int m = 0; m < region.conductivities; ++m)
                 if (!evaluate(region.k[m], at, work_.coefficient[m],
                               pass.wanted.slope ? work_.coefficient[3 + m] : nullptr, ids, block.count))
                     return false;
         }
+        const Points at{static_cast<Index>(kernel_.points) * W, point_T, nullptr, block.point_x, block.point_y};
         Accounts* const a = pass_.accounts;
         const std::size_t r = pass.region;
         const double generated = a ? a->generated[r] : 0.0;

@@ -6,6 +6,15 @@
 
 namespace tepor::detail {
 
+/// The first `count` matrices of a block to their places in one triangle.
+template <class N>
+void add_packed(N nodes, int count, const Id* TEPOR_RESTRICT map, const double* TEPOR_RESTRICT from,
+                double* TEPOR_RESTRICT to) {
+    const int pairs = nodes * (nodes + 1) / 2;
+    for (int b = 0; b < count; ++b, map += pairs)
+        for (int p = 0; p < pairs; ++p) to[map[p]] += from[p * block_width + b];
+}
+
 inline void Assembler::scatter(const CellBlock& block, Id first, Wanted wanted) {
     const int n = kernel_.nodes;
     const int pairs = n * (n + 1) / 2;
@@ -47,14 +56,8 @@ inline void Assembler::scatter(const CellBlock& block, Id first, Wanted wanted) 
     }
 }
 
-/// The cell matrices to their places in one triangle.
 inline void Assembler::add_matrices(const CellBlock& block, const Id* TEPOR_RESTRICT map, double* to) const {
-    with_nodes(kernel_.nodes, [&](auto nodes) {
-        const int pairs = nodes * (nodes + 1) / 2;
-        const double* TEPOR_RESTRICT from = block.matrix;
-        for (int b = 0; b < block.count; ++b, map += pairs)
-            for (int p = 0; p < pairs; ++p) to[map[p]] += from[p * W + b];
-    });
+    with_nodes(kernel_.nodes, [&](auto nodes) { add_packed(nodes, block.count, map, block.matrix, to); });
 }
 
 inline void Assembler::weigh_cells(const CellBlock& block, Id first, Wanted wanted) {

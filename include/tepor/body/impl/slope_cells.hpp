@@ -1,6 +1,7 @@
 #pragma once
 // Derivatives of the weak form by slots and places, cell by cell: what is the same for cells and sides, and the cells.
 
+#include <algorithm>
 #include <cmath>
 #include <tepor/body/gather.hpp>
 #include <tepor/body/residual_slope.hpp>
@@ -65,8 +66,8 @@ class SlopeCollector {
                 give(c.slots()[j], p, lanes + (law_parameter_lane + static_cast<Index>(j)) * n, n);
             if (moves)
                 for (Index i = 0; i < n; ++i) {
-                    by_x_[as_size(i)] += p[i] * lanes[law_x_lane * n + i];
-                    by_y_[as_size(i)] += p[i] * lanes[law_y_lane * n + i];
+                    by_x_[as_size(first_ + i)] += p[i] * lanes[law_x_lane * n + i];
+                    by_y_[as_size(first_ + i)] += p[i] * lanes[law_y_lane * n + i];
                 }
             if (wets)
                 for (Index i = 0; i < n; ++i) fluid[i] += p[i] * lanes[law_fluid_lane * n + i];
@@ -132,6 +133,7 @@ class SlopeCollector {
     Id slot_ = -1;
     const Point* velocity_ = nullptr;
     bool with_places_ = false;
+    Index first_ = 0;     // of the points a coefficient is at, among those of by_x_ and by_y_
     double lane_[W] = {}; // column: sums of each cell of the block
     std::vector<double> by_x_, by_y_;
     std::vector<double> lanes_;
@@ -144,7 +146,7 @@ class CellSlopes : public SlopeCollector {
 
   protected:
     void reserve_cells() {
-        const auto entries = as_size(kernel_.points * W);
+        const auto entries = as_size(kernel_.all_points() * W);
         for (std::vector<double>* v : {&l_, &lx_, &ly_, &tx_, &ty_, &p_, &value_, &density_, &fluid_, &extent_,
                                        &by_fluid_, &k_[0], &k_[1], &k_[2], &by_x_, &by_y_})
             v->assign(entries, 0.0);
@@ -157,17 +159,18 @@ class CellSlopes : public SlopeCollector {
         const CellBlock& block = work_.cells;
         const Index n = static_cast<Index>(kernel_.points) * W;
         const Points at{n, block.point_T, nullptr, block.point_x, block.point_y};
-        at_points(l);
+        at_points(l, kernel_.all_points());
         if (with_places_)
-            for (std::size_t i = 0; i < as_size(n); ++i) by_x_[i] = by_y_[i] = density_[i] = 0.0;
-        conduction(region, at);
+            for (std::vector<double>* v : {&by_x_, &by_y_, &density_, &k_[0], &k_[1], &k_[2]})
+                std::fill(v->begin(), v->end(), 0.0);
+        conduction(region);
         for (const VolumeTerm& term : region.volume) {
             if (term.kind == VolumeTerm::Kind::side_film)
                 side_film(term, at);
             else
                 generation(term, at, region_volume, generated);
         }
-        if (with_places_) move_cells(cells, region.conductivities);
+        if (with_places_) move_cells(cells, region.conductivities, kernel_.all_points());
     }
 
     /// Heat stored: density times specific heat times the rise in block.T, against the weights `l`.
@@ -175,7 +178,7 @@ class CellSlopes : public SlopeCollector {
         const CellBlock& block = work_.cells;
         const auto n = as_size(kernel_.points * W);
         const Points at{static_cast<Index>(n), value_.data(), nullptr, block.point_x, block.point_y};
-        at_points(l);
+        at_points(l, kernel_.points);
         // what capacity per volume multiplies: at the points where consistent, node by node where lumped
         for (int q = 0; q < kernel_.points; ++q) {
             const double* shape = kernel_.shape_at(q);
@@ -199,15 +202,15 @@ class CellSlopes : public SlopeCollector {
             density_[i] = fluid_[i] * extent_[i];
             k_[0][i] = k_[1][i] = k_[2][i] = 0.0;
         }
-        move_cells(cells, 1);
+        move_cells(cells, 1, kernel_.points);
     }
 
-    /// Weights, their gradient and that of the temperature at the points.
-    void at_points(const double* TEPOR_RESTRICT l) {
+    /// Weights, their gradient and that of the temperature at the first `count` points.
+    void at_points(const double* TEPOR_RESTRICT l, int count) {
         const CellBlock& block = work_.cells;
         const int nodes = kernel_.nodes;
         const bool plane = kernel_.dim == 2;
-        for (int q = 0; q < kernel_.points; ++q) {
+        for (int q = 0; q < count; ++q) {
             const double* shape = kernel_.shape_at(q);
             double v[W] = {};
             double vx[W] = {};
@@ -241,21 +244,29 @@ class CellSlopes : public SlopeCollector {
         }
     }
 
-    void conduction(const RegionModel& region, const Points& at) {
-        const double* TEPOR_RESTRICT w = work_.cells.weight;
+    void conduction(const RegionModel& region) {
+        const Points at = conduction_points(kernel_, work_.cells, work_.cells.point_T);
         const auto n = as_size(at.count);
+        const std::size_t first = as_size(kernel_.first_conduction_point() * W);
+        const double* TEPOR_RESTRICT w = work_.cells.weight + first;
+        const double* TEPOR_RESTRICT tx = tx_.data() + first;
+        const double* TEPOR_RESTRICT ty = ty_.data() + first;
+        const double* TEPOR_RESTRICT lx = lx_.data() + first;
+        const double* TEPOR_RESTRICT ly = ly_.data() + first;
+        first_ = static_cast<Index>(first);
         for (int m = 0; m < region.conductivities; ++m) {
-            if (with_places_) evaluate(region.k[m], at, k_[m].data());
+            if (with_places_) evaluate(region.k[m], at, k_[m].data() + first);
             if (!with_places_ && !wants(region.k[m])) continue;
             for (std::size_t i = 0; i < n; ++i) {
-                const double xx = tx_[i] * lx_[i];
-                const double yy = ty_[i] * ly_[i];
-                p_[i] = w[i] * (region.conductivities == 1
-                                    ? xx + yy
-                                    : (m == 0 ? xx : (m == 1 ? yy : tx_[i] * ly_[i] + ty_[i] * lx_[i])));
+                const double xx = tx[i] * lx[i];
+                const double yy = ty[i] * ly[i];
+                p_[i] =
+                    w[i] * (region.conductivities == 1 ? xx + yy
+                                                       : (m == 0 ? xx : (m == 1 ? yy : tx[i] * ly[i] + ty[i] * lx[i])));
             }
             back(region.k[m], at, p_.data());
         }
+        first_ = 0;
     }
 
     void generation(const VolumeTerm& term, const Points& at, double volume, double* generated) {
@@ -304,14 +315,14 @@ class CellSlopes : public SlopeCollector {
     }
 
     /// The shape derivative: the measure grows by div v + n v_r / r, a gradient turns by -(grad v)^T, coefficients are met
-    /// elsewhere; v = N_a e_d for node a and direction d.
-    void move_cells(const Id* cells, int conductivities) {
+    /// elsewhere; v = N_a e_d for node a and direction d. Over the first `count` points.
+    void move_cells(const Id* cells, int conductivities, int count) {
         const CellBlock& block = work_.cells;
         const int nodes = kernel_.nodes;
         const bool plane = kernel_.dim == 2;
         sum_x_.assign(as_size(nodes * W), 0.0);
         sum_y_.assign(as_size(nodes * W), 0.0);
-        for (int q = 0; q < kernel_.points; ++q) {
+        for (int q = 0; q < count; ++q) {
             const double* shape = kernel_.shape_at(q);
             const std::size_t from = as_size(q * W);
             double xx[W], xy[W], yx[W], yy[W], dx[W], dy[W];

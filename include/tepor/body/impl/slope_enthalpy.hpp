@@ -120,7 +120,7 @@ class EnthalpySlopes : public CellSlopes {
             lx_[i] = ly_[i] = tx_[i] = ty_[i] = k_[0][i] = k_[1][i] = k_[2][i] = 0.0;
     }
     void move(const Id* cell) {
-        if (with_places_) move_cells(cell, 1);
+        if (with_places_) move_cells(cell, 1, kernel_.points);
     }
 
     /// Heat at the points: the integral of weight times the rise of the heat content.

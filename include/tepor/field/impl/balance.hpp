@@ -54,16 +54,17 @@ inline double largest_conductance(const Model& model, const Values& values, Work
             block.count =
                 gather_cells(model, model.places_of(values), T, work.nodal_T, c, region.last_cell, block, ids);
             kernel.open(block);
-            const Points at{static_cast<Index>(kernel.points) * block_width, block.point_T, nullptr, block.point_x,
-                            block.point_y};
+            const Points at = conduction_points(kernel, block, block.point_T);
+            const int first = kernel.first_conduction_point();
             double* k = work.coefficient[0];
             for (int m = 0; m < (region.conductivities > 1 ? 2 : 1); ++m) {
                 if (const Fault fault = region.k[m].evaluate(values.slots.data(), {}, at, k, nullptr)) raise(fault);
-                const int last = kernel.points - 1; // around a solid centre the slope vanishes at the first point
+                const int last =
+                    kernel.conduction_points() - 1; // around a solid centre the slope vanishes at the first point
                 for (int q = 0; q <= last; q += std::max(last, 1))
                     for (int i = 0; i < kernel.nodes; ++i)
                         for (int b = 0; b < block.count; ++b) {
-                            const int entry = (q * kernel.nodes + i) * block_width + b;
+                            const int entry = ((first + q) * kernel.nodes + i) * block_width + b;
                             const double gx = block.gradient_x[entry];
                             const double gy = kernel.dim == 2 ? block.gradient_y[entry] : 0.0;
                             largest = std::max(largest, k[q * block_width + b] * std::sqrt(gx * gx + gy * gy));
