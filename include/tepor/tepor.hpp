@@ -88,6 +88,7 @@
 #include <tepor/linear/low_rank.hpp>
 #include <tepor/linear/multigrid.hpp>
 #include <tepor/linear/multigrid_solver.hpp>
+#include <tepor/linear/plane_solver.hpp>
 #include <tepor/linear/sparse_matrix.hpp>
 #include <tepor/linear/tridiagonal.hpp>
 

@@ -9,6 +9,7 @@
 #include <tepor/body/model.hpp>
 #include <tepor/body/statements.hpp>
 #include <tepor/describe/conditions.hpp>
+#include <tepor/linear/plane_solver.hpp>
 #include <tepor/mesh/cell_kind.hpp>
 #include <tepor/mesh/mesh.hpp>
 #include <utility>
@@ -35,18 +36,21 @@ class Body {
   public:
     template <class E>
     Body(Mesh<E> mesh, BodyOptions options = {}) // NOLINT: a mesh is a body nothing has been said about
-        : Body(std::make_shared<const MeshData>(static_cast<MeshData&&>(mesh)), nullptr, detail::cell_kind<E>(),
-               options) {
+        : Body(static_cast<MeshData&&>(mesh), detail::cell_kind<E>(), plane_solver_maker<E>(), options) {
         kernels_ = detail::make_kernels<E>(mesh_->frame, options.extra_degree);
     }
     template <class E>
     Body(Mesh<E> mesh, TemperatureScale scale) : Body(std::move(mesh), BodyOptions{.scale = scale}) {}
 
     /// A body on cell integrals of one's own.
-    Body(std::shared_ptr<const MeshData> mesh, std::shared_ptr<const CellKernels> kernels, const detail::CellKind& kind,
-         BodyOptions options = {})
-        : mesh_(std::move(mesh)), kernels_(std::move(kernels)), kind_(&kind), options_(options),
-          cache_(std::make_shared<Cache>()) {}
+    TEPOR_INLINE Body(std::shared_ptr<const MeshData> mesh, std::shared_ptr<const CellKernels> kernels,
+                      const detail::CellKind& kind, BodyOptions options = {});
+
+    TEPOR_INLINE Body(const Body& other);
+    TEPOR_INLINE Body(Body&& other) noexcept;
+    TEPOR_INLINE Body& operator=(const Body& other);
+    TEPOR_INLINE Body& operator=(Body&& other) noexcept;
+    TEPOR_INLINE ~Body();
 
     // ---- in a region
     /// What a region is made of; once per region.
@@ -120,11 +124,7 @@ class Body {
     }
 
     /// The same on a shared mesh of this body's element type, for verbs that refine.
-    [[nodiscard]] Body on_mesh(std::shared_ptr<const MeshData> mesh) const {
-        Body other(std::move(mesh), kernels_, *kind_, options_);
-        other.adopt(*this);
-        return other;
-    }
+    [[nodiscard]] TEPOR_INLINE Body on_mesh(std::shared_ptr<const MeshData> mesh) const;
 
     /// Room for what verbs keep between calls on this body (factors); shared by copies that were described alike.
     struct Store {
@@ -156,6 +156,17 @@ class Body {
         double value;
     };
 
+    TEPOR_INLINE Body(MeshData&& mesh, const detail::CellKind& kind, PlaneSolverMaker maker, BodyOptions options);
+    TEPOR_INLINE Body(std::shared_ptr<const MeshData> mesh, std::shared_ptr<const CellKernels> kernels,
+                      const detail::CellKind& kind, PlaneSolverMaker maker, BodyOptions options);
+
+    // Named only where the element is two-dimensional: what nobody names is not compiled.
+    template <class E>
+    static constexpr PlaneSolverMaker plane_solver_maker() noexcept {
+        if constexpr (E::dim == 2) return &make_plane_solver;
+        return nullptr;
+    }
+
     [[nodiscard]] TEPOR_INLINE Id region(std::string_view name) const;
     [[nodiscard]] TEPOR_INLINE Id face(std::string_view name) const;
     TEPOR_INLINE void changed();
@@ -164,6 +175,7 @@ class Body {
     std::shared_ptr<const MeshData> mesh_;
     std::shared_ptr<const CellKernels> kernels_;
     const detail::CellKind* kind_;
+    PlaneSolverMaker make_plane_solver_;
     BodyOptions options_;
     detail::Statements said_;
     std::vector<Setting> settings_;

@@ -9,6 +9,7 @@
 #include <tepor/body/coefficient.hpp>
 #include <tepor/body/pattern.hpp>
 #include <tepor/body/statements.hpp>
+#include <tepor/linear/plane_solver.hpp>
 #include <tepor/mesh/locate.hpp>
 #include <tepor/mesh/mesh.hpp>
 #include <vector>
@@ -106,7 +107,8 @@ class Model {
   public:
     std::shared_ptr<const MeshData> mesh;
     std::shared_ptr<const CellKernels> kernels;
-    const detail::CellKind* kind = nullptr; ///< the element type for the mesh room
+    const detail::CellKind* kind = nullptr;       ///< the element type for the mesh room
+    PlaneSolverMaker make_plane_solver = nullptr; ///< in 2D
     TemperatureScale scale = TemperatureScale::celsius;
     bool lumped_faces = false;
     double frame_area = 1.0; ///< the frame's size that a wetted perimeter refers to
@@ -203,7 +205,7 @@ class Model {
 /// @throws Error for everything a description can get wrong: missing, contradiction, bad_contact, bad_value ...
 [[nodiscard]] TEPOR_INLINE std::shared_ptr<const Model>
 compile(std::shared_ptr<const MeshData> mesh, std::shared_ptr<const CellKernels> kernels, const detail::CellKind& kind,
-        const detail::Statements& said, TemperatureScale scale, bool lumped_faces);
+        PlaneSolverMaker make_plane_solver, const detail::Statements& said, TemperatureScale scale, bool lumped_faces);
 
 } // namespace tepor
 

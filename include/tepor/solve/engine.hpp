@@ -8,12 +8,8 @@
 #include <tepor/body/body.hpp>
 #include <tepor/body/model.hpp>
 #include <tepor/linear/banded.hpp>
-#include <tepor/linear/cholesky.hpp>
-#include <tepor/linear/choose.hpp>
 #include <tepor/linear/concept.hpp>
-#include <tepor/linear/conjugate_gradient.hpp>
-#include <tepor/linear/krylov.hpp>
-#include <tepor/linear/multigrid.hpp>
+#include <tepor/linear/plane_solver.hpp>
 #include <tepor/linear/tridiagonal.hpp>
 #include <tepor/solve/line_sweep.hpp>
 #include <vector>
@@ -45,8 +41,8 @@ class Engine {
 
     /// Iterative solves and their set-up use this many threads, the caller's included; the results keep the same bits.
     void use_threads(int threads) {
-        multigrid_.use_threads(threads);
-        cg_work_.crew = multigrid_.crew();
+        threads_ = threads;
+        if (plane_) plane_->use_threads(threads);
     }
 
     /// b := A^-1 b for the free unknowns, in place; with a direct factor it allocates nothing.
@@ -60,10 +56,12 @@ class Engine {
     [[nodiscard]] const Model& model() const noexcept { return *model_; }
     [[nodiscard]] const std::shared_ptr<const Model>& shared_model() const noexcept { return model_; }
     /// The factor in use is exact up to rounding.
-    [[nodiscard]] bool direct() const noexcept { return method_ != Method::multigrid && method_ != Method::outside; }
+    [[nodiscard]] bool direct() const noexcept {
+        return method_ == Method::plane ? plane_->direct() : method_ != Method::outside;
+    }
     /// Iterations of the last solve; 0 for direct ones. An iteration that proves slow gives way to a factor, for this solve and
     /// those after it.
-    [[nodiscard]] Index iterations() const noexcept { return iterations_; }
+    [[nodiscard]] Index iterations() const noexcept { return method_ == Method::plane ? plane_->iterations() : 0; }
 
     SparseMatrix matrix;
     std::vector<double> residual; ///< all unknowns
@@ -75,33 +73,20 @@ class Engine {
     std::vector<double> key;
 
   private:
-    enum class Method { none, outside, tridiagonal, banded, banded_lu, cholesky, multigrid };
+    enum class Method { none, outside, tridiagonal, banded, banded_lu, plane };
 
     [[nodiscard]] TEPOR_INLINE bool factor_line();
-    [[nodiscard]] TEPOR_INLINE bool factor_direct(const SparseMatrix& definite);
-    [[nodiscard]] TEPOR_INLINE bool iterate(double* b, double limit);
-    [[nodiscard]] TEPOR_INLINE bool solve_unsymmetric(double* b, double limit, bool transposed);
-    TEPOR_INLINE void precondition(const double* r, double* z) noexcept;
 
     std::shared_ptr<const Model> model_;
     Method method_ = Method::none;
     AnySolver* outside_ = nullptr;
     bool outside_knows_ = false; // the pattern
     Id singular_ = -1;
-    Index iterations_ = 0;
-    Index solves_ = 0; // since the matrix was decomposed
-    bool analyzed_ = false;
-    bool thinned_ = false; // multigrid works on thin_
     Tridiagonal tridiagonal_;
     BandedCholesky banded_;
     BandedLu banded_lu_;
-    SparseCholesky cholesky_;
-    Multigrid multigrid_;
-    ConjugateGradientWork cg_work_;
-    KrylovWork krylov_work_;
-    SparseMatrix symmetric_part_;
-    SparseMatrix thin_; // the free block without zeros, where there are many
-    std::vector<double> cg_x_;
+    std::unique_ptr<PlaneSolver> plane_;
+    int threads_ = 1;
 };
 
 /// The values that enter the matrix, in slot order: the key an engine is reused by.

@@ -2,6 +2,7 @@
 #include <cmath>
 #include <doctest/doctest.h>
 #include <tepor/element/triangle.hpp>
+#include <tepor/linear/cholesky.hpp>
 #include <tepor/mesh/tiles.hpp>
 #include <tepor/solve/engine.hpp>
 #include <tepor/solve/march.hpp>

@@ -81,6 +81,30 @@ inline void check(const Contact& contact, std::string_view region) {
 
 } // namespace detail
 
+TEPOR_INLINE Body::Body(std::shared_ptr<const MeshData> mesh, std::shared_ptr<const CellKernels> kernels,
+                        const detail::CellKind& kind, BodyOptions options)
+    : Body(std::move(mesh), std::move(kernels), kind, &make_plane_solver, options) {}
+
+TEPOR_INLINE Body::Body(std::shared_ptr<const MeshData> mesh, std::shared_ptr<const CellKernels> kernels,
+                        const detail::CellKind& kind, PlaneSolverMaker maker, BodyOptions options)
+    : mesh_(std::move(mesh)), kernels_(std::move(kernels)), kind_(&kind), make_plane_solver_(maker), options_(options),
+      cache_(std::make_shared<Cache>()) {}
+
+TEPOR_INLINE Body::Body(MeshData&& mesh, const detail::CellKind& kind, PlaneSolverMaker maker, BodyOptions options)
+    : Body(std::make_shared<const MeshData>(std::move(mesh)), nullptr, kind, maker, options) {}
+
+TEPOR_INLINE Body::Body(const Body&) = default;
+TEPOR_INLINE Body::Body(Body&&) noexcept = default;
+TEPOR_INLINE Body& Body::operator=(const Body&) = default;
+TEPOR_INLINE Body& Body::operator=(Body&&) noexcept = default;
+TEPOR_INLINE Body::~Body() = default;
+
+TEPOR_INLINE Body Body::on_mesh(std::shared_ptr<const MeshData> mesh) const {
+    Body other(std::move(mesh), kernels_, *kind_, make_plane_solver_, options_);
+    other.adopt(*this);
+    return other;
+}
+
 TEPOR_INLINE Id Body::region(std::string_view name) const {
     const Index found = mesh_->find_region(name);
     if (found < 0)
@@ -279,7 +303,9 @@ TEPOR_INLINE Body& Body::at(Point place, LocalHeat heat) {
 
 TEPOR_INLINE const std::shared_ptr<const Model>& Body::model() const {
     const std::lock_guard<std::mutex> lock(cache_->guard);
-    if (!cache_->model) cache_->model = compile(mesh_, kernels_, *kind_, said_, options_.scale, options_.lumped_faces);
+    if (!cache_->model)
+        cache_->model =
+            compile(mesh_, kernels_, *kind_, make_plane_solver_, said_, options_.scale, options_.lumped_faces);
     return cache_->model;
 }
 

@@ -10,14 +10,14 @@
 
 namespace tepor {
 
-TEPOR_INLINE std::shared_ptr<const Model> compile(std::shared_ptr<const MeshData> mesh,
-                                                  std::shared_ptr<const CellKernels> kernels,
-                                                  const detail::CellKind& kind, const detail::Statements& said,
-                                                  TemperatureScale scale, bool lumped_faces) {
+TEPOR_INLINE std::shared_ptr<const Model>
+compile(std::shared_ptr<const MeshData> mesh, std::shared_ptr<const CellKernels> kernels, const detail::CellKind& kind,
+        PlaneSolverMaker make_plane_solver, const detail::Statements& said, TemperatureScale scale, bool lumped_faces) {
     auto model = std::make_shared<Model>();
     model->mesh = std::move(mesh);
     model->kernels = std::move(kernels);
     model->kind = &kind;
+    model->make_plane_solver = make_plane_solver;
     model->scale = scale;
     model->lumped_faces = lumped_faces;
     model->frame_area = model->mesh->frame.size(model->mesh->dim);

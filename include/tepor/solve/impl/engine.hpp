@@ -1,41 +1,10 @@
 #pragma once
 // Which factor for which matrix, and the pool.
 
-#include <cmath>
-#include <limits>
 #include <tepor/base/detail/huge_pages.hpp>
 #include <tepor/solve/engine.hpp>
 
 namespace tepor {
-
-namespace detail {
-
-/// An iteration is done when the sum of |r| is below `limit`, or below what rounding leaves: each row of r sums terms of
-/// the size of its diagonal times x. `scale` is the norm of the right-hand side, which the iteration's own norms are relative
-/// to: the sum is never less than the Euclidean norm, so that most iterations need not form it.
-inline auto stop_below(const SparseMatrix& matrix, Index n, double limit, const double* x, double scale) {
-    return [&matrix, n, limit, x, scale](const double* r, double relative) {
-        constexpr double rounding = 8.0 * std::numeric_limits<double>::epsilon();
-        const double norm = relative * scale;
-        if (norm > limit && relative > 1e-7) return false;
-        double even = 0.0, odd = 0.0;
-        for (Index i = 0; i + 1 < n; i += 2) {
-            even += std::abs(r[i]);
-            odd += std::abs(r[i + 1]);
-        }
-        const double sum = even + odd + (n % 2 != 0 ? std::abs(r[n - 1]) : 0.0);
-        if (sum <= limit) return true;
-        double terms = 0.0;
-        for (Index i = 0; i < n; ++i) terms += std::abs(matrix.diagonal(i) * x[i]);
-        return sum <= rounding * terms;
-    };
-}
-
-inline double euclidean_norm(const double* b, Index n) noexcept {
-    return std::sqrt(dot_product(b, b, n));
-}
-
-} // namespace detail
 
 TEPOR_INLINE Engine::Engine(std::shared_ptr<const Model> model)
     : work(model->kernels->workspace()), model_(std::move(model)) {
@@ -66,7 +35,6 @@ TEPOR_INLINE bool Engine::factor_line() {
 
 TEPOR_INLINE bool Engine::factor(Index solves) {
     singular_ = -1;
-    solves_ = 0;
     const Index n = model_->free;
     if (n == 0) return true;
     if (outside_ && matrix.symmetric()) {
@@ -78,85 +46,27 @@ TEPOR_INLINE bool Engine::factor(Index solves) {
         return fine;
     }
     if (model_->mesh->dim == 1) return factor_line();
-    // an unsymmetric slope is preconditioned by its symmetric part
-    if (!matrix.symmetric()) {
-        symmetric_part_.rows = matrix.rows;
-        symmetric_part_.start = matrix.start;
-        symmetric_part_.column = matrix.column;
-        symmetric_part_.lower.resize(matrix.lower.size());
-        for (std::size_t e = 0; e < matrix.lower.size(); ++e)
-            symmetric_part_.lower[e] = 0.5 * (matrix.lower[e] + matrix.upper[e]);
+    method_ = Method::plane;
+    if (!plane_) {
+        plane_ = model_->make_plane_solver();
+        plane_->use_threads(threads_);
     }
-    const SparseMatrix& definite = matrix.symmetric() ? matrix : symmetric_part_;
-    if (choose_solver(n, 2, solves) == SolverKind::multigrid) {
-        method_ = Method::multigrid;
-        thinned_ = without_zeros(definite, n, thin_);
-        const bool fine = multigrid_.setup(thinned_ ? thin_ : definite, n);
-        singular_ = fine ? -1 : detail::as_id(multigrid_.singular_row());
-        if (fine) return true;
-        method_ = Method::none;
-    }
-    return factor_direct(definite);
-}
-
-TEPOR_INLINE bool Engine::factor_direct(const SparseMatrix& definite) {
-    if (!analyzed_) cholesky_.analyze(definite, model_->free, model_->places.data());
-    analyzed_ = true;
-    const bool fine = cholesky_.factor(definite);
-    if (fine || method_ != Method::multigrid) method_ = Method::cholesky; // multigrid may manage all the same
-    singular_ = fine ? -1 : detail::as_id(cholesky_.singular_row());
+    const bool fine = plane_->factor(matrix, n, model_->places.data(), solves);
+    singular_ = fine ? -1 : plane_->singular_unknown();
     return fine;
 }
 
-TEPOR_INLINE void Engine::precondition(const double* r, double* z) noexcept {
-    const Index n = model_->free;
-    if (method_ == Method::multigrid) {
-        multigrid_.cycle(r, z);
-        return;
-    }
-    for (Index i = 0; i < n; ++i) z[i] = r[i];
-    cholesky_.solve(z);
-}
-
 TEPOR_INLINE bool Engine::solve(double* b, double limit) {
-    iterations_ = 0;
-    const Index n = model_->free;
-    if (n == 0) return true;
+    if (model_->free == 0) return true;
     switch (method_) {
     case Method::none: return false;
     case Method::outside: return outside_->solve(b);
     case Method::tridiagonal: tridiagonal_.solve(b); return true;
     case Method::banded: banded_.solve(b); return true;
     case Method::banded_lu: banded_lu_.solve(b); return true;
-    case Method::cholesky:
-    case Method::multigrid: break;
+    case Method::plane: return plane_->solve(b, limit, false);
     }
-    if (!matrix.symmetric()) return solve_unsymmetric(b, limit, false);
-    ++solves_;
-    if (method_ == Method::multigrid && choose_solver(n, 2, solves_) == SolverKind::cholesky)
-        static_cast<void>(factor_direct(matrix)); // if it fails: multigrid has managed until now
-    if (method_ == Method::multigrid) return iterate(b, limit);
-    cholesky_.solve(b);
-    return true;
-}
-
-TEPOR_INLINE bool Engine::iterate(double* b, double limit) {
-    const Index n = model_->free;
-    cg_x_.assign(detail::as_size(n), 0.0);
-    const SparseMatrix& a = thinned_ ? thin_ : matrix;
-    const auto cycle = [this](const double* r, double* z) { return multigrid_.cycle(r, z); };
-    // More than 40 iterations to 1e-8 are dearer than a factor, as long as that fits in memory.
-    const IterationLimits limits{.trial = n <= 1000000 ? 30 : 0};
-    const IterationReport report =
-        conjugate_gradient(a, n, b, cg_x_.data(), cycle, limits, cg_work_,
-                           detail::stop_below(a, n, limit, cg_x_.data(), detail::euclidean_norm(b, n)));
-    iterations_ = report.iterations;
-    if ((report.slow || !(report.converged || report.residual < 1e-6)) && factor_direct(matrix)) {
-        cholesky_.solve(b);
-        return true;
-    }
-    for (Index i = 0; i < n; ++i) b[i] = cg_x_[detail::as_size(i)];
-    return report.converged || report.residual < 1e-6; // the caller measures what is left and may come again
+    return false;
 }
 
 TEPOR_INLINE bool Engine::solve_transposed(double* b, double limit) {
@@ -164,31 +74,8 @@ TEPOR_INLINE bool Engine::solve_transposed(double* b, double limit) {
         banded_lu_.solve_transposed(b);
         return true;
     }
-    if (matrix.symmetric()) return solve(b, limit);
-    return solve_unsymmetric(b, limit, true);
-}
-
-TEPOR_INLINE bool Engine::solve_unsymmetric(double* b, double limit, bool transposed) {
-    const Index n = model_->free;
-    cg_x_.assign(detail::as_size(n), 0.0);
-    const auto apply = [&](const double* x, double* y) {
-        transposed ? multiply_transposed(matrix, n, x, y) : multiply(matrix, n, x, y);
-    };
-    const auto run = [&] {
-        const IterationReport made = bicgstab(
-            apply, n, b, cg_x_.data(), [this](const double* r, double* z) { precondition(r, z); }, IterationLimits{},
-            krylov_work_, detail::stop_below(matrix, n, limit, cg_x_.data(), detail::euclidean_norm(b, n)));
-        iterations_ = made.iterations;
-        return made;
-    };
-    IterationReport report = run();
-    if (!(report.converged || report.residual < 1e-6) && method_ == Method::multigrid &&
-        factor_direct(symmetric_part_)) {
-        cg_x_.assign(detail::as_size(n), 0.0);
-        report = run();
-    }
-    for (Index i = 0; i < n; ++i) b[i] = cg_x_[detail::as_size(i)];
-    return report.converged || report.residual < 1e-6;
+    if (method_ == Method::plane) return plane_->solve(b, limit, true);
+    return solve(b, limit);
 }
 
 TEPOR_INLINE std::vector<double> matrix_key(const Model& model, const Values& values) {
