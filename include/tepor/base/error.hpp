@@ -3,9 +3,9 @@
 
 #include <stdexcept>
 #include <string>
+#include <string_view>
 #include <tepor/base/config.hpp>
 #include <tepor/base/numbers.hpp>
-#include <utility>
 
 // Code, value (pinned: the C wrapper shows it), and its short text, in one list.
 // clang-format off
@@ -71,8 +71,11 @@ constexpr const char* text_of(ErrorCode code) noexcept {
 /// `what()` names what was given, what is wrong and what to do about it.
 class Error : public std::runtime_error {
   public:
-    Error(ErrorCode code, std::string offender, const std::string& message, Index cell = -1)
-        : std::runtime_error(message), code_(code), offender_(std::move(offender)), cell_(cell) {}
+    [[gnu::cold]] TEPOR_INLINE Error(ErrorCode code, std::string_view offender, std::string_view message,
+                                     Index cell = -1);
+    Error(const Error&) = default;
+    Error& operator=(const Error&) = default;
+    [[gnu::cold]] TEPOR_INLINE ~Error() override;
 
     /// The cause, for programs to act on.
     [[nodiscard]] ErrorCode code() const noexcept { return code_; }
@@ -88,3 +91,7 @@ class Error : public std::runtime_error {
 };
 
 } // namespace tepor
+
+#ifndef TEPOR_COMPILED
+#include <tepor/base/impl/error.hpp>
+#endif

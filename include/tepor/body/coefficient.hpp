@@ -75,12 +75,16 @@ struct Fault {
 /// 16 parameters excepted).
 class Coefficient {
   public:
-    Coefficient() = default;
+    [[gnu::cold]] TEPOR_INLINE Coefficient();
 
     /// @param slots  slot of each parameter in the order the value lists them
     /// @param label  for messages, such as `conductivity of "backing"`
-    Coefficient(Value value, std::vector<Id> slots, std::string label, Range range)
-        : value_(std::move(value)), slots_(std::move(slots)), label_(std::move(label)), range_(range) {}
+    [[gnu::cold]] TEPOR_INLINE Coefficient(Value value, std::vector<Id> slots, std::string label, Range range);
+    [[gnu::cold]] TEPOR_INLINE Coefficient(const Coefficient& other);
+    [[gnu::cold]] TEPOR_INLINE Coefficient(Coefficient&& other) noexcept;
+    [[gnu::cold]] TEPOR_INLINE Coefficient& operator=(const Coefficient& other);
+    [[gnu::cold]] TEPOR_INLINE Coefficient& operator=(Coefficient&& other) noexcept;
+    [[gnu::cold]] TEPOR_INLINE ~Coefficient();
 
     [[nodiscard]] bool given() const noexcept { return value_.given(); }
     [[nodiscard]] const Value& value() const noexcept { return value_; }

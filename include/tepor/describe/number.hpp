@@ -2,7 +2,6 @@
 // A number or a Parameter.
 
 #include <concepts>
-#include <optional>
 #include <tepor/describe/parameter.hpp>
 #include <utility>
 
@@ -19,11 +18,11 @@ class Number {
     /// The plain number, or the value the parameter was made with.
     [[nodiscard]] double number() const noexcept { return number_; }
     /// The parameter, null when it is a plain number.
-    [[nodiscard]] const Parameter* parameter() const noexcept { return parameter_ ? &*parameter_ : nullptr; }
+    [[nodiscard]] const Parameter* parameter() const noexcept { return parameter_.given() ? &parameter_ : nullptr; }
 
   private:
     double number_;
-    std::optional<Parameter> parameter_;
+    Parameter parameter_{Parameter::Nothing{}};
 };
 
 } // namespace tepor

@@ -1,12 +1,9 @@
 #pragma once
 // A named number: set it, differentiate by it, drive it, fit it.
 
-#include <cmath>
 #include <memory>
 #include <string>
-#include <tepor/base/error.hpp>
-#include <tepor/base/text.hpp>
-#include <utility>
+#include <tepor/base/config.hpp>
 
 namespace tepor {
 
@@ -17,14 +14,7 @@ namespace tepor {
 class Parameter {
   public:
     /// @throws Error bad_name (empty name), bad_value (value not finite)
-    Parameter(std::string name, double value) {
-        if (name.empty())
-            throw Error(ErrorCode::bad_name, "", "Parameter: the name is empty; give it the name reports should show");
-        if (!std::isfinite(value))
-            throw Error(ErrorCode::bad_value, name,
-                        detail::text("Parameter \"", name, "\": value = ", value, ", expected a finite number"));
-        info_ = std::make_shared<const Info>(Info{std::move(name), value});
-    }
+    TEPOR_INLINE Parameter(std::string name, double value);
 
     [[nodiscard]] const std::string& name() const noexcept { return info_->name; }
 
@@ -35,6 +25,11 @@ class Parameter {
     friend bool operator==(const Parameter& a, const Parameter& b) noexcept { return a.info_ == b.info_; }
 
   private:
+    friend class Number;
+    struct Nothing {};
+    explicit Parameter(Nothing) noexcept {} // of a Number that is a plain number
+    [[nodiscard]] bool given() const noexcept { return info_ != nullptr; }
+
     struct Info {
         std::string name;
         double value;
@@ -43,3 +38,7 @@ class Parameter {
 };
 
 } // namespace tepor
+
+#ifndef TEPOR_COMPILED
+#include <tepor/describe/impl/parameter.hpp>
+#endif

@@ -3,8 +3,8 @@
 
 #include <memory>
 #include <string>
+#include <tepor/base/config.hpp>
 #include <tepor/base/point.hpp>
-#include <tepor/base/text.hpp>
 #include <utility>
 
 namespace tepor {
@@ -29,9 +29,7 @@ class Quantity {
         conductance_between ///< [W/K]
     };
 
-    Quantity(Kind kind, std::string first, std::string second, Point place, double radius, double sign)
-        : kind_(kind), sign_(sign), place_(place), radius_(radius),
-          names_(std::make_shared<const Names>(Names{std::move(first), std::move(second), {}})) {}
+    TEPOR_INLINE Quantity(Kind kind, std::string first, std::string second, Point place, double radius, double sign);
 
     [[nodiscard]] Kind kind() const noexcept { return kind_; }
     [[nodiscard]] double sign() const noexcept { return sign_; } ///< -1 for `heat_in_through`
@@ -41,13 +39,9 @@ class Quantity {
     [[nodiscard]] const std::string& second() const noexcept { return names_->second; }
 
     /// The same quantity under a name of your own, for reports.
-    [[nodiscard]] Quantity named(std::string label) const {
-        Quantity copy = *this;
-        copy.names_ = std::make_shared<const Names>(Names{first(), second(), std::move(label)});
-        return copy;
-    }
+    [[nodiscard]] TEPOR_INLINE Quantity named(std::string label) const;
     /// The given name, or one made from the question, such as `heat out through "outer"`.
-    [[nodiscard]] std::string label() const;
+    [[nodiscard]] TEPOR_INLINE std::string label() const;
 
     /// Unit for reports: "degC", "W", "J" or "W/K" (a kelvin body shows K for degC).
     [[nodiscard]] const char* unit() const noexcept {
@@ -130,29 +124,8 @@ inline Quantity conductance_between(std::string face, std::string to) {
     return {Quantity::Kind::conductance_between, std::move(face), std::move(to), {}, 0.0, 1.0};
 }
 
-inline std::string Quantity::label() const {
-    if (!names_->label.empty()) return names_->label;
-    const auto quoted = [](const std::string& name) { return '"' + name + '"'; };
-    switch (kind_) {
-    case Kind::at: {
-        std::string text = detail::text("temperature at (", place_.x, ", ", place_.y, ")");
-        if (!first().empty()) text += " in " + quoted(first());
-        return text;
-    }
-    case Kind::mean_in: return "mean in " + quoted(first());
-    case Kind::mean_on: return "mean on " + quoted(first());
-    case Kind::mean_around: return detail::text("mean around (", place_.x, ", ", place_.y, ")");
-    case Kind::hottest_in: return "hottest in " + quoted(first());
-    case Kind::coldest_in: return "coldest in " + quoted(first());
-    case Kind::hottest_on: return "hottest on " + quoted(first());
-    case Kind::coldest_on: return "coldest on " + quoted(first());
-    case Kind::heat_out_through: return (sign_ < 0 ? "heat in through " : "heat out through ") + quoted(first());
-    case Kind::heat_from: return "heat from " + quoted(first()) + " to " + quoted(second());
-    case Kind::generated_in: return "generated in " + quoted(first());
-    case Kind::stored_in: return "stored in " + quoted(first());
-    case Kind::conductance_between: return "conductance between " + quoted(first()) + " and " + quoted(second());
-    }
-    return {};
-}
-
 } // namespace tepor
+
+#ifndef TEPOR_COMPILED
+#include <tepor/describe/impl/quantity.hpp>
+#endif

@@ -1,13 +1,11 @@
 #pragma once
 // A value over time whose integral over any step is exact, and whose jumps marching lands on.
 
-#include <cmath>
 #include <initializer_list>
 #include <limits>
 #include <memory>
-#include <tepor/base/error.hpp>
+#include <tepor/base/config.hpp>
 #include <tepor/base/numbers.hpp>
-#include <tepor/base/text.hpp>
 #include <utility>
 #include <vector>
 
@@ -29,22 +27,7 @@ enum class Between {
 class Schedule {
   public:
     /// @throws Error bad_value: no entries, something not finite, times not strictly rising
-    explicit Schedule(std::vector<ScheduleEntry> entries, Between between = Between::steps) {
-        if (entries.empty())
-            throw Error(ErrorCode::bad_value, "schedule",
-                        "schedule: it has no entries; give at least one {time, value}");
-        for (std::size_t i = 0; i < entries.size(); ++i) {
-            if (!std::isfinite(entries[i].time) || !std::isfinite(entries[i].value))
-                throw Error(ErrorCode::bad_value, "schedule",
-                            detail::text("schedule: entry ", i, " is (", entries[i].time, ", ", entries[i].value,
-                                         "), expected finite numbers"));
-            if (i > 0 && !(entries[i - 1].time < entries[i].time))
-                throw Error(ErrorCode::bad_value, "schedule",
-                            detail::text("schedule: time ", entries[i].time, " follows ", entries[i - 1].time,
-                                         ", expected rising times; sort the entries"));
-        }
-        data_ = std::make_shared<const Data>(Data{std::move(entries), between});
-    }
+    TEPOR_INLINE explicit Schedule(std::vector<ScheduleEntry> entries, Between between = Between::steps);
 
     /// Value at time t; at a jump the value after it.
     [[nodiscard]] double at(double t) const noexcept {
@@ -125,3 +108,7 @@ inline Schedule schedule(std::vector<ScheduleEntry> entries, Between between = B
 }
 
 } // namespace tepor
+
+#ifndef TEPOR_COMPILED
+#include <tepor/describe/impl/schedule.hpp>
+#endif

@@ -1,10 +1,10 @@
 #pragma once
 // A property tabled over temperature, linear between its points.
 
-#include <cmath>
 #include <initializer_list>
 #include <memory>
 #include <string>
+#include <tepor/base/config.hpp>
 #include <tepor/base/numbers.hpp>
 #include <tepor/describe/number.hpp>
 #include <utility>
@@ -28,23 +28,7 @@ struct TablePoint {
 class Table {
   public:
     /// @throws Error bad_value: no points, a temperature or value not finite, temperatures not strictly rising
-    explicit Table(std::vector<TablePoint> points, Outside outside = Outside::refuse) {
-        if (points.empty())
-            throw Error(ErrorCode::bad_value, "table",
-                        "table: it has no points; give at least one {temperature, value}");
-        for (std::size_t i = 0; i < points.size(); ++i) {
-            const TablePoint& p = points[i];
-            if (!std::isfinite(p.at) || !std::isfinite(p.value.number()))
-                throw Error(ErrorCode::bad_value, "table",
-                            detail::text("table: point ", i, " is (", p.at, ", ", p.value.number(),
-                                         "), expected finite numbers"));
-            if (i > 0 && !(points[i - 1].at < p.at))
-                throw Error(ErrorCode::bad_value, "table",
-                            detail::text("table: temperature ", p.at, " at point ", i, " follows ", points[i - 1].at,
-                                         ", expected rising temperatures; sort the points"));
-        }
-        data_ = std::make_shared<const Data>(Data{std::move(points), outside});
-    }
+    TEPOR_INLINE explicit Table(std::vector<TablePoint> points, Outside outside = Outside::refuse);
 
     [[nodiscard]] const std::vector<TablePoint>& points() const noexcept { return data_->points; }
     [[nodiscard]] Outside outside() const noexcept { return data_->outside; }
@@ -68,3 +52,7 @@ inline Table table(std::vector<TablePoint> points, Outside outside = Outside::re
 }
 
 } // namespace tepor
+
+#ifndef TEPOR_COMPILED
+#include <tepor/describe/impl/table.hpp>
+#endif

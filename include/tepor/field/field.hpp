@@ -32,13 +32,16 @@ struct Spotted {
 /// touch it. Temperatures are in the body's scale. Safe to read from many threads.
 class Field {
   public:
-    Field() = default;
+    TEPOR_INLINE Field();
+    TEPOR_INLINE Field(const Field& other);
+    TEPOR_INLINE Field(Field&& other) noexcept;
+    TEPOR_INLINE Field& operator=(const Field& other);
+    TEPOR_INLINE Field& operator=(Field&& other) noexcept;
+    TEPOR_INLINE ~Field();
 
     /// @param temperature  all unknowns; @param reaction  residual at all unknowns (capacity terms included)
-    Field(std::shared_ptr<const Model> model, Values values, std::vector<double> temperature,
-          std::vector<double> reaction, double time = 0.0)
-        : model_(std::move(model)), values_(std::move(values)), temperature_(std::move(temperature)),
-          reaction_(std::move(reaction)), time_(time) {}
+    TEPOR_INLINE Field(std::shared_ptr<const Model> model, Values values, std::vector<double> temperature,
+                       std::vector<double> reaction, double time = 0.0);
 
     /// The value of a quantity.
     /// @throws Error bad_name, outside, no_answer (unbounded flow), wrong_dimension
@@ -99,13 +102,7 @@ class Field {
 
     // for the solvers
     /// Becomes the field of another solve; vectors keep their memory.
-    void begin(std::shared_ptr<const Model> model, const Values& values, double time) {
-        model_ = std::move(model);
-        values_ = values;
-        storage_.clear();
-        passes_.clear();
-        time_ = time;
-    }
+    TEPOR_INLINE void begin(std::shared_ptr<const Model> model, const Values& values, double time);
     std::vector<double>& temperature() noexcept { return temperature_; }
     std::vector<double>& reaction() noexcept { return reaction_; }
     std::vector<double>& storage() noexcept { return storage_; }

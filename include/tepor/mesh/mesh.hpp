@@ -3,6 +3,7 @@
 
 #include <string>
 #include <string_view>
+#include <tepor/base/config.hpp>
 #include <tepor/base/frame.hpp>
 #include <tepor/base/numbers.hpp>
 #include <tepor/base/point.hpp>
@@ -40,6 +41,13 @@ struct CurvedSide {
 
 /// The arrays of a mesh, without its element type.
 struct MeshData {
+    TEPOR_INLINE MeshData();
+    TEPOR_INLINE MeshData(const MeshData& other);
+    TEPOR_INLINE MeshData(MeshData&& other) noexcept;
+    TEPOR_INLINE MeshData& operator=(const MeshData& other);
+    TEPOR_INLINE MeshData& operator=(MeshData&& other) noexcept;
+    TEPOR_INLINE ~MeshData();
+
     int dim = 0;
     int order = 0;
     int nodes_per_cell = 0;
@@ -95,3 +103,7 @@ struct Mesh : MeshData {
 };
 
 } // namespace tepor
+
+#ifndef TEPOR_COMPILED
+#include <tepor/mesh/impl/mesh.hpp>
+#endif

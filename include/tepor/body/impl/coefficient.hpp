@@ -10,6 +10,16 @@
 
 namespace tepor {
 
+// Models are full of coefficients: their copies and ends are written once.
+TEPOR_INLINE Coefficient::Coefficient() = default;
+TEPOR_INLINE Coefficient::Coefficient(Value value, std::vector<Id> slots, std::string label, Range range)
+    : value_(std::move(value)), slots_(std::move(slots)), label_(std::move(label)), range_(range) {}
+TEPOR_INLINE Coefficient::Coefficient(const Coefficient&) = default;
+TEPOR_INLINE Coefficient::Coefficient(Coefficient&&) noexcept = default;
+TEPOR_INLINE Coefficient& Coefficient::operator=(const Coefficient&) = default;
+TEPOR_INLINE Coefficient& Coefficient::operator=(Coefficient&&) noexcept = default;
+TEPOR_INLINE Coefficient::~Coefficient() = default;
+
 namespace detail {
 
 /// Present values of a law's parameters: on the stack for the usual few.

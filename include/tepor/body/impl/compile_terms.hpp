@@ -318,36 +318,42 @@ class TermCompiler {
 
     /// One kind of condition through two faces that share a side is a contradiction.
     void overlaps() {
-        const auto check = [this](const auto& statements, const char* kind) {
-            struct Marked {
-                KeyedSide side;
-                Id face;
-            };
-            std::vector<Marked> marked;
-            std::vector<Id> seen;
-            for (const auto& s : statements) {
-                if (s.also || std::find(seen.begin(), seen.end(), s.where) != seen.end()) continue;
-                seen.push_back(s.where);
-                for (const CellSide side : mesh_.faces[as_size(s.where)].sides)
-                    marked.push_back({{side_key(mesh_, *model_.kernels, side.cell, side.side), side}, s.where});
-            }
-            if (seen.size() < 2) return;
-            std::sort(marked.begin(), marked.end(),
-                      [](const Marked& a, const Marked& b) { return a.side.key < b.side.key; });
-            for (std::size_t i = 1; i < marked.size(); ++i) {
-                if (marked[i].side.key != marked[i - 1].side.key || marked[i].face == marked[i - 1].face) continue;
-                const std::string& a = mesh_.faces[as_size(marked[i - 1].face)].name;
-                const std::string& b = mesh_.faces[as_size(marked[i].face)].name;
-                throw Error(ErrorCode::contradiction, b,
-                            text("faces \"", a, "\" and \"", b, "\" share an edge (cell ", marked[i].side.side.cell,
-                                 ") and both have a ", kind, "; keep one, or say also_on when both are meant"),
-                            marked[i].side.side.cell);
-            }
+        overlaps(faces_of(said_.films), "Film");
+        overlaps(faces_of(said_.radiations), "Radiation");
+        overlaps(faces_of(said_.fluxes), "Flux");
+        overlaps(faces_of(said_.fixed), "FixedTemperature");
+    }
+
+    /// Faces with a condition that is not said to be one more on purpose.
+    template <class Kind>
+    static std::vector<Id> faces_of(const std::vector<Said<Kind>>& statements) {
+        std::vector<Id> faces;
+        for (const Said<Kind>& s : statements)
+            if (!s.also && std::find(faces.begin(), faces.end(), s.where) == faces.end()) faces.push_back(s.where);
+        return faces;
+    }
+
+    void overlaps(const std::vector<Id>& faces, const char* kind) const {
+        if (faces.size() < 2) return;
+        struct Marked {
+            KeyedSide side;
+            Id face;
         };
-        check(said_.films, "Film");
-        check(said_.radiations, "Radiation");
-        check(said_.fluxes, "Flux");
-        check(said_.fixed, "FixedTemperature");
+        std::vector<Marked> marked;
+        for (const Id face : faces)
+            for (const CellSide side : mesh_.faces[as_size(face)].sides)
+                marked.push_back({{side_key(mesh_, *model_.kernels, side.cell, side.side), side}, face});
+        std::sort(marked.begin(), marked.end(),
+                  [](const Marked& a, const Marked& b) { return a.side.key < b.side.key; });
+        for (std::size_t i = 1; i < marked.size(); ++i) {
+            if (marked[i].side.key != marked[i - 1].side.key || marked[i].face == marked[i - 1].face) continue;
+            const std::string& a = mesh_.faces[as_size(marked[i - 1].face)].name;
+            const std::string& b = mesh_.faces[as_size(marked[i].face)].name;
+            throw Error(ErrorCode::contradiction, b,
+                        text("faces \"", a, "\" and \"", b, "\" share an edge (cell ", marked[i].side.side.cell,
+                             ") and both have a ", kind, "; keep one, or say also_on when both are meant"),
+                        marked[i].side.side.cell);
+        }
     }
 
     Model& model_;

@@ -7,6 +7,26 @@
 
 namespace tepor {
 
+TEPOR_INLINE Field::Field() = default;
+TEPOR_INLINE Field::Field(const Field&) = default;
+TEPOR_INLINE Field::Field(Field&&) noexcept = default;
+TEPOR_INLINE Field& Field::operator=(const Field&) = default;
+TEPOR_INLINE Field& Field::operator=(Field&&) noexcept = default;
+TEPOR_INLINE Field::~Field() = default;
+
+TEPOR_INLINE Field::Field(std::shared_ptr<const Model> model, Values values, std::vector<double> temperature,
+                          std::vector<double> reaction, double time)
+    : model_(std::move(model)), values_(std::move(values)), temperature_(std::move(temperature)),
+      reaction_(std::move(reaction)), time_(time) {}
+
+TEPOR_INLINE void Field::begin(std::shared_ptr<const Model> model, const Values& values, double time) {
+    model_ = std::move(model);
+    values_ = values;
+    storage_.clear();
+    passes_.clear();
+    time_ = time;
+}
+
 TEPOR_INLINE double Field::operator[](const Quantity& quantity) const {
     Workspace work = model_->kernels->workspace();
     const Functional functional = compile(*model_, values_, quantity);
