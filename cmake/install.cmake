@@ -20,5 +20,6 @@ configure_package_config_file("${CMAKE_CURRENT_LIST_DIR}/tepor-config.cmake.in"
 write_basic_package_version_file("${PROJECT_BINARY_DIR}/tepor-config-version.cmake" COMPATIBILITY SameMinorVersion
     ARCH_INDEPENDENT)
 install(FILES "${PROJECT_BINARY_DIR}/tepor-config.cmake" "${PROJECT_BINARY_DIR}/tepor-config-version.cmake"
-    "${CMAKE_CURRENT_LIST_DIR}/compiled.cmake" DESTINATION "${tepor_package_dir}")
+    "${CMAKE_CURRENT_LIST_DIR}/compiled.cmake" "${CMAKE_CURRENT_LIST_DIR}/precompile.cmake"
+    DESTINATION "${tepor_package_dir}")
 install(FILES "${PROJECT_SOURCE_DIR}/LICENSE" DESTINATION "${CMAKE_INSTALL_DATADIR}/licenses/tepor")

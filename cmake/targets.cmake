@@ -27,6 +27,9 @@ if(TARGET fmt::fmt)
     target_link_libraries(tepor_output INTERFACE tepor fmt::fmt)
 endif()
 
+# One precompiled header for all sources of a target.
+include("${CMAKE_CURRENT_LIST_DIR}/precompile.cmake")
+
 # The heavy functions compiled once, built only when something links it.
 include("${CMAKE_CURRENT_LIST_DIR}/compiled.cmake")
 tepor_add_compiled("${PROJECT_SOURCE_DIR}/include" "${PROJECT_BINARY_DIR}/tepor_compiled")

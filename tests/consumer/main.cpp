@@ -5,7 +5,7 @@
 #include <fmt/core.h> // the light variant: the front door is included by the others
 #include <tepor/base/frame.hpp>
 #include <tepor/version.hpp>
-#else
+#elif !defined(EXPECT_PRECOMPILED) // which has been read already, or nothing below compiles
 #include <tepor/tepor.hpp>
 #endif
 
