@@ -1,4 +1,5 @@
-# Writes include/tepor/tepor.hpp anew: every public header of the numerical rooms, in the order of the house.
+# Writes include/tepor/tepor.hpp anew: every public header of the numerical rooms, in the order of the house. Headers that
+# have nothing in the namespace tepor itself serve the library alone; who needs them includes them.
 # `cmake/run script front_door`; the test rooms.include_table says when it is due.
 
 cmake_minimum_required(VERSION 3.24)
@@ -17,6 +18,10 @@ foreach(room base quadrature element describe mesh assembly linear body flux fie
         string(APPEND text "\n")
     endif()
     foreach(header IN LISTS headers)
+        file(STRINGS "${root}/include/${header}" opens REGEX "^(namespace tepor {|#define TEPOR_)")
+        if(NOT opens)
+            continue()
+        endif()
         string(APPEND text "#include <${header}>\n")
     endforeach()
 endforeach()

@@ -10,7 +10,6 @@
 #include <tepor/base/memory.hpp>
 #include <tepor/base/numbers.hpp>
 #include <tepor/base/point.hpp>
-#include <tepor/base/text.hpp>
 
 #include <tepor/quadrature/gauss.hpp>
 #include <tepor/quadrature/rule.hpp>
@@ -19,7 +18,6 @@
 
 #include <tepor/element/concept.hpp>
 #include <tepor/element/exact_segment.hpp>
-#include <tepor/element/lagrange.hpp>
 #include <tepor/element/map.hpp>
 #include <tepor/element/quadrilateral.hpp>
 #include <tepor/element/segment.hpp>
@@ -37,28 +35,17 @@
 
 #include <tepor/mesh/bisect.hpp>
 #include <tepor/mesh/cell_kind.hpp>
-#include <tepor/mesh/curve.hpp>
-#include <tepor/mesh/delaunay.hpp>
-#include <tepor/mesh/drawing.hpp>
-#include <tepor/mesh/edge_grid.hpp>
 #include <tepor/mesh/from_arrays.hpp>
 #include <tepor/mesh/grading.hpp>
-#include <tepor/mesh/inner_nodes.hpp>
 #include <tepor/mesh/layers.hpp>
 #include <tepor/mesh/locate.hpp>
 #include <tepor/mesh/mesh.hpp>
 #include <tepor/mesh/of_place.hpp>
-#include <tepor/mesh/plane_graph.hpp>
-#include <tepor/mesh/predicates.hpp>
-#include <tepor/mesh/quality.hpp>
 #include <tepor/mesh/refine.hpp>
 #include <tepor/mesh/section.hpp>
 #include <tepor/mesh/shapes.hpp>
 #include <tepor/mesh/sides.hpp>
-#include <tepor/mesh/space_order.hpp>
 #include <tepor/mesh/stack.hpp>
-#include <tepor/mesh/strip_order.hpp>
-#include <tepor/mesh/subdivide.hpp>
 #include <tepor/mesh/tile_axis.hpp>
 #include <tepor/mesh/tiles.hpp>
 #include <tepor/mesh/triangulate.hpp>
@@ -96,34 +83,18 @@
 #include <tepor/body/body.hpp>
 #include <tepor/body/coefficient.hpp>
 #include <tepor/body/enthalpy.hpp>
-#include <tepor/body/gather.hpp>
 #include <tepor/body/line.hpp>
 #include <tepor/body/model.hpp>
-#include <tepor/body/pattern.hpp>
 #include <tepor/body/residual_slope.hpp>
-#include <tepor/body/side_tangent.hpp>
-#include <tepor/body/split.hpp>
-#include <tepor/body/statements.hpp>
 
 #include <tepor/flux/conductance.hpp>
-#include <tepor/flux/defect.hpp>
 #include <tepor/flux/disc.hpp>
 #include <tepor/flux/equilibrate.hpp>
 #include <tepor/flux/equilibrated.hpp>
-#include <tepor/flux/fan.hpp>
 #include <tepor/flux/flux_load.hpp>
-#include <tepor/flux/given_trace.hpp>
-#include <tepor/flux/line.hpp>
-#include <tepor/flux/line_cell.hpp>
-#include <tepor/flux/loads.hpp>
 #include <tepor/flux/model_problem.hpp>
-#include <tepor/flux/neighbours.hpp>
 #include <tepor/flux/problem.hpp>
 #include <tepor/flux/radiating.hpp>
-#include <tepor/flux/residual.hpp>
-#include <tepor/flux/round.hpp>
-#include <tepor/flux/sweep.hpp>
-#include <tepor/flux/tables2.hpp>
 #include <tepor/flux/weak_form.hpp>
 
 #include <tepor/field/balance.hpp>
@@ -141,11 +112,9 @@
 #include <tepor/solve/loads.hpp>
 #include <tepor/solve/march.hpp>
 #include <tepor/solve/march_handles.hpp>
-#include <tepor/solve/march_states.hpp>
 #include <tepor/solve/periodic.hpp>
 #include <tepor/solve/steady.hpp>
 #include <tepor/solve/step.hpp>
-#include <tepor/solve/tape.hpp>
 #include <tepor/solve/theta.hpp>
 
 #include <tepor/answers/bracket.hpp>
@@ -155,7 +124,6 @@
 #include <tepor/answers/fit_march.hpp>
 #include <tepor/answers/gradient.hpp>
 #include <tepor/answers/gradient_march.hpp>
-#include <tepor/answers/linear_quantity.hpp>
 #include <tepor/answers/size_for.hpp>
 #include <tepor/answers/sized.hpp>
 #include <tepor/answers/state_space.hpp>

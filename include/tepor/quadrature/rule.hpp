@@ -65,7 +65,4 @@ class Rule {
     std::vector<double> weights_;
 };
 
-static_assert(QuadratureRule<Rule<1>>);
-static_assert(QuadratureRule<Rule<2>>);
-
 } // namespace tepor

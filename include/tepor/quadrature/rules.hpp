@@ -1,7 +1,7 @@
 #pragma once
 // Rules by the degree they must integrate exactly: on the segment, on the square, and for any element.
 
-#include <tepor/base/numbers.hpp>
+#include <tepor/base/config.hpp>
 #include <tepor/quadrature/gauss.hpp>
 #include <tepor/quadrature/rule.hpp>
 #include <tepor/quadrature/triangle_rules.hpp>
@@ -10,20 +10,11 @@
 namespace tepor {
 
 /// Gauss-Legendre rule on [0,1] exact to at least `degree`; a degree below 1 gives the midpoint.
-inline Rule<1> line_rule(int degree) {
-    return gauss_legendre(degree < 1 ? 1 : degree / 2 + 1);
-}
+[[nodiscard]] TEPOR_INLINE Rule<1> line_rule(int degree);
 
 /// Gauss-Legendre points in both directions of the unit square, n^2 of them, exact to degree 2n - 1 in each coordinate.
 /// @throws Error bad_value  n < 1
-inline Rule<2> square_rule(int n) {
-    const auto line = gauss_legendre(n);
-    Rule<2> rule(line.degree, line.size() * line.size());
-    for (Index j = 0; j < line.size(); ++j)
-        for (Index i = 0; i < line.size(); ++i)
-            rule.add({line.point(i)[0], line.point(j)[0]}, line.weight(i) * line.weight(j));
-    return rule;
-}
+[[nodiscard]] TEPOR_INLINE Rule<2> square_rule(int n);
 
 /// The rule on the reference cell of element E exact to at least `degree` (on the square: in each coordinate).
 /// E is any type with `shape_of_cell` and `dim`, the element of a user included. Cheap: built per body, not kept.
@@ -39,3 +30,7 @@ Rule<E::dim> rule_for(int degree) {
 }
 
 } // namespace tepor
+
+#ifndef TEPOR_COMPILED
+#include <tepor/quadrature/impl/rules.hpp>
+#endif

@@ -10,7 +10,6 @@
 #include <tepor/solve/initial.hpp>
 #include <tepor/solve/march_handles.hpp>
 #include <tepor/solve/step.hpp>
-#include <tepor/solve/tape.hpp>
 #include <tepor/solve/theta.hpp>
 #include <utility>
 

@@ -9,7 +9,8 @@ namespace tepor {
 
 namespace detail {
 class Marcher;
-}
+struct MarchTape;
+} // namespace detail
 
 /// How an advance ended.
 enum class Verdict : int {
