@@ -6,6 +6,7 @@
 #include <tepor/element/triangle.hpp>
 #include <tepor/mesh/layers.hpp>
 #include <tepor/mesh/tiles.hpp>
+#include <tepor/solve/tape.hpp>
 #include <tests/support/refused.hpp>
 
 using namespace tepor;
