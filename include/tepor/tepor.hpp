@@ -10,6 +10,7 @@
 #include <tepor/base/memory.hpp>
 #include <tepor/base/numbers.hpp>
 #include <tepor/base/point.hpp>
+#include <tepor/base/processor.hpp>
 
 #include <tepor/quadrature/gauss.hpp>
 #include <tepor/quadrature/rule.hpp>

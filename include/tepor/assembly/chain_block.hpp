@@ -9,11 +9,17 @@ namespace tepor {
 /// Most cells handled together.
 inline constexpr int chain_width = 128;
 
+/// A full run may be laid in lanes: cut into `chain_lanes` runs of `chain_steps` cells that are walked side by side, so that sums
+/// along the chain take whole registers. Cell lane * chain_steps + step is then entry step * chain_lanes + lane.
+inline constexpr int chain_lanes = 8;
+inline constexpr int chain_steps = chain_width / chain_lanes;
+
 /// A run of `count` two-node cells, each beginning where the one before ends: nodes in, quadrature points out, then
 /// coefficients in, resistances and loads out. Entry (point q, cell c) of an array is at [q * count + c].
 struct ChainBlock {
     int count = 0;
-    double* x = nullptr; ///< count + 1 nodes, set by the caller
+    int next = 1;        ///< the cell of x[c] ends at x[c + next]: 1, or chain_lanes where laid in lanes
+    double* x = nullptr; ///< count + next nodes, set by the caller
 
     double* point_x = nullptr; ///< set by CellKernels::open_chain
     double* weight = nullptr;  ///< quadrature weight times measure of the frame
@@ -25,6 +31,7 @@ struct ChainBlock {
     double* resistance = nullptr; ///< set by CellKernels::form_chain: per cell [K/W]
     double* load_left = nullptr;  ///< heat of the source to the left node [W]; untouched without a source
     double* load_right = nullptr;
+    double traffic = 0.0; ///< sum of |load_left + load_right| [W]
 };
 
 /// Owns the arrays of a ChainBlock and room for coefficients.
@@ -32,7 +39,7 @@ class ChainWorkspace {
   public:
     explicit ChainWorkspace(int points) {
         const Index at_points = static_cast<Index>(points) * chain_width;
-        store_.resize(detail::as_size(6 * at_points + 4 * (chain_width + 1)), 0.0);
+        store_.resize(detail::as_size(6 * at_points + 4 * (chain_width + chain_lanes)), 0.0);
         double* next = store_.data();
         const auto take = [&next](Index entries) {
             double* here = next;
@@ -45,7 +52,7 @@ class ChainWorkspace {
         k = take(at_points);
         source = take(at_points);
         amount = take(at_points);
-        block.x = take(chain_width + 1);
+        block.x = take(chain_width + chain_lanes);
         block.resistance = take(chain_width + 1);
         block.load_left = take(chain_width + 1);
         block.load_right = take(chain_width + 1);

@@ -18,4 +18,11 @@ inline void fetch_ahead([[maybe_unused]] const double* from, [[maybe_unused]] In
 #endif
 }
 
+/// The same for values that are only read; what is fetched may lie beyond an array's end.
+inline void fetch_to_read([[maybe_unused]] const double* from, [[maybe_unused]] Index count) noexcept {
+#if defined(__GNUC__)
+    for (Index i = 0; i < count; i += 8) __builtin_prefetch(from + i);
+#endif
+}
+
 } // namespace tepor::detail

@@ -60,6 +60,8 @@ class LineCells {
     [[nodiscard]] TEPOR_INLINE bool fill(std::size_t p);
 
     [[nodiscard]] const ChainBlock& block() const noexcept { return work_.block; }
+    /// Piece p is laid in lanes, see chain_lanes.
+    [[nodiscard]] bool in_lanes(std::size_t p) const noexcept { return plan_.pieces[p].links == chain_width; }
     /// The piece filled last generates heat.
     [[nodiscard]] bool loaded() const noexcept { return work_.block.source != nullptr; }
     /// Sum of |heat generated| over the cells filled since open() [W].
@@ -77,7 +79,7 @@ class LineCells {
   private:
     [[nodiscard]] TEPOR_INLINE bool open_region(Id region);
     [[nodiscard]] TEPOR_INLINE bool sources(const RegionModel& region);
-    TEPOR_INLINE void add_traffic() noexcept;
+    TEPOR_INLINE void place(const LinePlan::Piece& piece);
 
     const Model& model_;
     const LinePlan& plan_;

@@ -9,7 +9,7 @@
 
 namespace tepor {
 
-/// What a sweep over one model keeps between solves. Needs nothing of the size of the body but the two vectors it fills.
+/// What a sweep over one model keeps between solves. Beside the two vectors it fills it needs two bytes per cell.
 ///
 /// On the way there it integrates the cells and eliminates, on the way back it solves and forms the residual, so that the
 /// answer is judged like that of any other solve. One thread at a time.
@@ -42,7 +42,8 @@ class LineSweep {
     std::shared_ptr<const LinePlan> plan_;
     LineCells cells_;
     Workspace work_;
-    std::vector<ChainState> state_; // before the first link of each piece
+    std::vector<ChainState> state_; // at the last row of each piece, reached but not entered
+    std::vector<ChainLanes> lanes_; // of the pieces laid in lanes
     ChainState end_;
     double carried_ = 0.0; // load on the present node from the cell to its left
     double first_ = 0.0;   // the link at a held left end

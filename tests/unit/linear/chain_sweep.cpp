@@ -45,16 +45,16 @@ std::vector<double> swept(const Chain& chain, int most, std::vector<double>& res
     const int last = static_cast<int>(chain.load.size()) - 1;
     const auto at = [](int i) { return static_cast<std::size_t>(i); };
     std::vector<int> start;
-    std::vector<ChainState> before;
+    std::vector<ChainState> reached;
     ChainState state;
     int row = 0;
     while (row < last) {
         state.enter(chain.load[at(row)], chain.sink[at(row)]);
         start.push_back(row);
-        before.push_back(state);
         int end = row + 1;
         while (end < last && end - row < most && chain.sink[at(end)] == 0.0) ++end;
         run_chain(end - row, chain.resistance.data() + row, chain.load.data() + row, state);
+        reached.push_back(state);
         row = end;
     }
     state.enter(chain.load[at(last)], chain.sink[at(last)]);
@@ -66,7 +66,7 @@ std::vector<double> swept(const Chain& chain, int most, std::vector<double>& res
     for (std::size_t p = start.size(); p-- > 0;) {
         const int end = p + 1 < start.size() ? start[p + 1] : last;
         const ChainSums sums =
-            return_chain(end - start[p], T.data() + start[p], residual.data() + start[p], before[p], T[at(end)]);
+            return_chain(end - start[p], T.data() + start[p], residual.data() + start[p], reached[p], T[at(end)]);
         residual[at(end)] = flow - sums.flow_last + chain.sink[at(end)] * T[at(end)] - residual[at(end)];
         flow = sums.flow_first;
     }
@@ -103,13 +103,14 @@ TEST_CASE("a row held at a temperature is where a chain may begin") {
     const double given[3] = {0.0, 2.0, 0.0}; // heat at row 1
     double load[3] = {0.0, 2.0, 0.0};
     ChainState state{true, 0.0, 10.0};
-    const ChainState from = state;
     run_chain(3, r, given, state);
+    const ChainState reached = state;
+    const double held = 10.0;
     // by hand: all heat but what the last row takes flows through 0.5 K/W to the row held at 10
     state.enter(0.0, 4.0); // 1 / 4 K/W to ground
     const double flow = (10.0 + 2.0 * 0.5) / (0.5 + 1.0 + 0.25 + 0.25);
     CHECK(std::abs(state.sum - flow * 0.25) <= 1e-15);
-    const ChainSums sums = return_chain(3, T, load, from, state.sum);
+    const ChainSums sums = return_chain(3, T, load, reached, state.sum, &held);
     CHECK(T[0] == 10.0);
     CHECK(std::abs(T[1] - flow * 1.5) <= 1e-14);
     CHECK(std::abs(T[2] - flow * 0.5) <= 1e-14);
@@ -118,6 +119,53 @@ TEST_CASE("a row held at a temperature is where a chain may begin") {
     CHECK(sums.residual <= 1e-14);
     CHECK(sums.hottest == 10.0);
     CHECK(sums.conductance == 7.0);
+}
+
+TEST_CASE("a full piece in lanes gives what its rows give one after the other") {
+    test::Random random(77);
+    for (const int tie : {0, 1, 2}) { // to the left, to nothing there, and to the left by next to nothing
+        for (const bool loaded : {true, false}) {
+            CAPTURE(tie);
+            CAPTURE(loaded);
+            std::vector<double> r(chain_piece), load(chain_piece), in_lanes(chain_piece), left(chain_piece),
+                right(chain_piece);
+            for (int c = 0; c < chain_piece; ++c) {
+                const auto entry = static_cast<std::size_t>((c % chain_steps) * chain_lanes + c / chain_steps);
+                r[static_cast<std::size_t>(c)] = in_lanes[entry] = random.between(0.2, 5.0);
+                if (!loaded) continue;
+                left[entry] = random.between(-1.0, 2.0);
+                right[entry] = random.between(-1.0, 2.0);
+                load[static_cast<std::size_t>(c)] += left[entry];
+                if (c + 1 < chain_piece) load[static_cast<std::size_t>(c + 1)] += right[entry];
+            }
+            load[0] = 3.0;
+            ChainState state;
+            state.enter(load[0], tie == 0 ? 0.7 : tie == 1 ? 0.0 : 1e-9);
+            ChainState other = state;
+            run_chain(chain_piece, r.data(), load.data(), state);
+            std::vector<double> T(chain_piece), residual(chain_piece);
+            residual[0] = 3.0;
+            ChainLanes lanes;
+            run_lanes(in_lanes.data(), loaded ? left.data() : nullptr, right.data(), T.data(), residual.data(), lanes,
+                      other);
+            CHECK(other.grounded == state.grounded);
+            CHECK(std::abs(other.resistance - state.resistance) <= 1e-14 * state.resistance);
+            CHECK(std::abs(other.sum - state.sum) <= 1e-13 * std::abs(state.sum));
+
+            const ChainSums got = return_lanes(T.data(), residual.data(), lanes, other, 40.0);
+            const ChainSums expected = return_chain(chain_piece, r.data(), load.data(), state, 40.0);
+            const double size = test::largest(r); // temperatures by now
+            CHECK(test::largest_difference(T, r) <= 1e-12 * size);
+            CHECK(residual[0] == 3.0);
+            residual[0] = 0.0;
+            CHECK(test::largest(residual) <= 1e-13 * size);
+            CHECK(got.residual <= 1e-11 * size);
+            CHECK(std::abs(got.conductance - expected.conductance) <= 1e-13 * expected.conductance);
+            CHECK(std::abs(got.hottest - expected.hottest) <= 1e-12 * size);
+            CHECK(std::abs(got.flow_first - expected.flow_first) <= 1e-12 * size);
+            CHECK(std::abs(got.flow_last - expected.flow_last) <= 1e-12 * size);
+        }
+    }
 }
 
 TEST_CASE("no digits are lost in a chain of a million links") {

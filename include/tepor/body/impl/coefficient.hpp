@@ -5,6 +5,7 @@
 #include <cmath>
 #include <cstdint>
 #include <limits>
+#include <tepor/base/processor.hpp>
 #include <tepor/base/text.hpp>
 #include <tepor/body/coefficient.hpp>
 
@@ -52,6 +53,35 @@ inline std::size_t table_interval(const std::vector<TablePoint>& points, double 
         (points[middle].at <= t ? low : high) = middle;
     }
     return low;
+}
+
+/// Whether values need a closer look. One pass over the bits, which vectorises where comparisons of doubles do not: the top bit is
+/// the sign, one more in the exponent carries into it when the value is infinite or no number, and the bits of zero less one have it.
+TEPOR_IN_BOTH bool strange(Range range, Index count, const double* value) noexcept {
+    static_assert(std::numeric_limits<double>::is_iec559);
+    constexpr std::uint64_t top = std::uint64_t{1} << 63U;
+    constexpr std::uint64_t one_exponent = std::uint64_t{1} << 52U;
+    std::uint64_t found = 0;
+    if (range == Range::any) {
+        for (Index i = 0; i < count; ++i) found |= (std::bit_cast<std::uint64_t>(value[i]) & ~top) + one_exponent;
+    } else if (range == Range::positive) {
+        for (Index i = 0; i < count; ++i) {
+            const auto bits = std::bit_cast<std::uint64_t>(value[i]);
+            found |= bits | (bits + one_exponent) | (bits - 1);
+        }
+    } else if (range == Range::not_negative) {
+        for (Index i = 0; i < count; ++i) {
+            const auto bits = std::bit_cast<std::uint64_t>(value[i]);
+            found |= bits | (bits + one_exponent);
+        }
+    } else {
+        return true;
+    }
+    return (found & top) != 0;
+}
+
+TEPOR_WIDE inline bool strange_wide(Range range, Index count, const double* value) noexcept {
+    return strange(range, count, value);
 }
 
 inline double table_entry(const TablePoint& point, Id slot, const double* slots) noexcept {
@@ -221,27 +251,9 @@ TEPOR_INLINE Fault Coefficient::evaluate(const double* slot_values, TimeSpan tim
 }
 
 TEPOR_INLINE Fault Coefficient::check(const Points& points, TimeSpan time, const double* value) const noexcept {
-    // One pass over the bits tells whether a closer look is needed, and vectorises where comparisons of doubles do not: the top
-    // bit is the sign, one more in the exponent carries into it when the value is infinite or no number, and the bits of
-    // zero less one have it.
-    static_assert(std::numeric_limits<double>::is_iec559);
-    constexpr std::uint64_t top = std::uint64_t{1} << 63U;
-    constexpr std::uint64_t one_exponent = std::uint64_t{1} << 52U;
-    const auto bits = [value](Index i) { return std::bit_cast<std::uint64_t>(value[i]); };
-    std::uint64_t strange = 0;
-    switch (range_) {
-    case Range::any:
-        for (Index i = 0; i < points.count; ++i) strange |= (bits(i) & ~top) + one_exponent;
-        break;
-    case Range::positive:
-        for (Index i = 0; i < points.count; ++i) strange |= bits(i) | (bits(i) + one_exponent) | (bits(i) - 1);
-        break;
-    case Range::not_negative:
-        for (Index i = 0; i < points.count; ++i) strange |= bits(i) | (bits(i) + one_exponent);
-        break;
-    default: strange = top;
-    }
-    if ((strange & top) == 0) return {};
+    if (!(detail::wide_processor() ? detail::strange_wide(range_, points.count, value)
+                                   : detail::strange(range_, points.count, value)))
+        return {};
     for (Index i = 0; i < points.count; ++i) {
         if (allows(value[i])) continue;
         Fault fault;

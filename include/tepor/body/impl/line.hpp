@@ -3,6 +3,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <tepor/base/memory.hpp>
 #include <tepor/body/line.hpp>
 
 namespace tepor {
@@ -188,13 +189,7 @@ TEPOR_INLINE bool LineCells::fill(std::size_t p) {
     }
     if (piece.region != region_ && !open_region(piece.region)) return false;
     const RegionModel& region = model_.regions[detail::as_size(piece.region)];
-    const Point* place = model_.places_of(*values_);
-    block.count = piece.links;
-    // inside the piece the nodes are neighbours in memory; its first and last may be held ends
-    block.x[0] = place[plan_.unknown(piece.first)].x;
-    const Point* inner = place + plan_.unknown(piece.first + (piece.links > 1 ? 1 : 0)) - 1;
-    for (int j = 1; j < piece.links; ++j) block.x[j] = inner[j].x;
-    block.x[piece.links] = place[plan_.unknown(piece.first + piece.links)].x;
+    place(piece);
     model_.kernels->open_chain(block);
     if (block.k) {
         const Points at{static_cast<Index>(model_.kernels->points) * block.count, nullptr, nullptr, block.point_x,
@@ -203,7 +198,7 @@ TEPOR_INLINE bool LineCells::fill(std::size_t p) {
     }
     if (block.source && !sources(region)) return false;
     model_.kernels->form_chain(block);
-    if (block.source) add_traffic();
+    if (block.source) source_traffic_ += block.traffic;
     return true;
 }
 
@@ -224,14 +219,27 @@ TEPOR_INLINE bool LineCells::sources(const RegionModel& region) {
     return true;
 }
 
-TEPOR_INLINE void LineCells::add_traffic() noexcept {
-    const ChainBlock& block = work_.block;
-    double sum[4] = {};
-    int c = 0;
-    for (; c + 4 <= block.count; c += 4)
-        for (int i = 0; i < 4; ++i) sum[i] += std::abs(block.load_left[c + i] + block.load_right[c + i]);
-    for (; c < block.count; ++c) sum[0] += std::abs(block.load_left[c] + block.load_right[c]);
-    source_traffic_ += (sum[0] + sum[1]) + (sum[2] + sum[3]);
+TEPOR_INLINE void LineCells::place(const LinePlan::Piece& piece) {
+    ChainBlock& block = work_.block;
+    block.count = piece.links;
+    const Point* all = model_.places_of(*values_);
+    // inside the piece the nodes are neighbours in memory; its first and last may be held ends
+    const Point* inner = all + plan_.unknown(piece.first + (piece.links > 1 ? 1 : 0)) - 1;
+    double* TEPOR_RESTRICT x = block.x;
+    if (piece.links == chain_width) {
+        block.next = chain_lanes;
+        detail::fetch_to_read(&inner[chain_width].x, 2 * chain_width); // the next piece
+        for (int lane = 0; lane < chain_lanes; ++lane) {
+            const Point* at = inner + lane * chain_steps;
+            for (int step = 0; step < chain_steps; ++step) x[step * chain_lanes + lane] = at[step].x;
+        }
+        for (int lane = 0; lane + 1 < chain_lanes; ++lane) x[chain_width + lane] = x[lane + 1];
+    } else {
+        block.next = 1;
+        for (int j = 1; j < piece.links; ++j) x[j] = inner[j].x;
+    }
+    x[0] = all[plan_.unknown(piece.first)].x;
+    x[piece.links + block.next - 1] = all[plan_.unknown(piece.first + piece.links)].x;
 }
 
 } // namespace tepor

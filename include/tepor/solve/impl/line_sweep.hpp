@@ -11,7 +11,11 @@ namespace tepor {
 
 TEPOR_INLINE LineSweep::LineSweep(std::shared_ptr<const Model> model, std::shared_ptr<const LinePlan> plan)
     : model_(std::move(model)), plan_(std::move(plan)), cells_(*model_, *plan_), work_(model_->kernels->workspace()),
-      state_(plan_->pieces.size()) {}
+      state_(plan_->pieces.size()) {
+    std::size_t full = 0;
+    for (std::size_t p = 0; p < plan_->pieces.size(); ++p) full += cells_.in_lanes(p) ? 1U : 0U;
+    lanes_.resize(full);
+}
 
 TEPOR_INLINE bool LineSweep::run(const Values& values, TimeSpan time, double* T, double* residual, Report& report) {
     const Index last = plan_->positions - 1;
@@ -25,8 +29,8 @@ TEPOR_INLINE bool LineSweep::run(const Values& values, TimeSpan time, double* T,
         end_.enter(carried_ + acting.load, acting.sink);
         if (!end_.grounded) return false;
     }
+    if (plan_->left_held) T[plan_->left_unknown] = left; // the way there has used it for a link where it ends a piece
     come_back(plan_->right_held ? right : end_.sum, T, residual, report);
-    if (plan_->left_held) T[plan_->left_unknown] = left;
     report.source_traffic = report.given = cells_.source_traffic();
     for (std::size_t s = 0; s < plan_->special.size(); ++s)
         report.given += std::abs(cells_.acting(detail::as_id(s)).load);
@@ -36,6 +40,7 @@ TEPOR_INLINE bool LineSweep::run(const Values& values, TimeSpan time, double* T,
 TEPOR_INLINE bool LineSweep::go(double left, double* T, double* load) {
     end_ = ChainState{plan_->left_held, 0.0, left};
     carried_ = 0.0; // load on the present node from the cell to its left
+    ChainLanes* lanes = lanes_.data();
     for (std::size_t p = 0; p < plan_->pieces.size(); ++p) {
         const LinePlan::Piece& piece = plan_->pieces[p];
         if (!cells_.fill(p)) return false;
@@ -46,16 +51,18 @@ TEPOR_INLINE bool LineSweep::go(double left, double* T, double* load) {
         const bool loaded = cells_.loaded();
         load[u] = carried_ + acting.load + (loaded ? block.load_left[0] : 0.0);
         if (!held) end_.enter(load[u], acting.sink);
-        state_[p] = end_;
         double* TEPOR_RESTRICT r = held ? &first_ : T + u;
         const int links = piece.links;
-        for (int j = 0; j < links; ++j) r[j] = block.resistance[j];
-        if (loaded)
-            for (int j = 1; j < links; ++j) load[u + j] = block.load_right[j - 1] + block.load_left[j];
-        else
-            for (int j = 1; j < links; ++j) load[u + j] = 0.0;
         carried_ = loaded ? block.load_right[links - 1] : 0.0;
-        run_chain(links, block.resistance, load + u, end_);
+        if (cells_.in_lanes(p)) {
+            run_lanes(block.resistance, loaded ? block.load_left : nullptr, block.load_right, r, load + u, *lanes++,
+                      end_);
+        } else {
+            for (int j = 0; j < links; ++j) r[j] = block.resistance[j];
+            for (int j = 1; j < links; ++j) load[u + j] = loaded ? block.load_right[j - 1] + block.load_left[j] : 0.0;
+            run_chain(links, block.resistance, load + u, end_);
+        }
+        state_[p] = end_;
     }
     return true;
 }
@@ -80,6 +87,7 @@ TEPOR_INLINE void LineSweep::come_back(double last, double* T, double* residual,
     Index position = end;
     double by_sink = sink;
     double T_here = last;
+    const ChainLanes* lanes = lanes_.data() + lanes_.size();
     for (std::size_t p = plan_->pieces.size(); p-- > 0;) {
         const LinePlan::Piece& piece = plan_->pieces[p];
         const Index u = plan_->unknown(piece.first);
@@ -89,7 +97,10 @@ TEPOR_INLINE void LineSweep::come_back(double last, double* T, double* residual,
             detail::fetch_ahead(T + plan_->unknown(next.first), next.links);
             detail::fetch_ahead(residual + plan_->unknown(next.first), next.links);
         }
-        const ChainSums sums = return_chain(piece.links, r, residual + u, state_[p], T_here);
+        const ChainSums sums = cells_.in_lanes(p)
+                                   ? return_lanes(r, residual + u, *--lanes, state_[p], T_here)
+                                   : return_chain(piece.links, r, residual + u, state_[p], T_here,
+                                                  p == 0 && plan_->left_held ? T + plan_->left_unknown : nullptr);
         sum += sums.residual;
         hottest = std::max(hottest, sums.hottest);
         diagonal += 2.0 * sums.conductance;
