@@ -4,6 +4,7 @@
 
 #include <tepor/base/config.hpp>
 #include <tepor/base/numbers.hpp>
+#include <type_traits>
 #include <vector>
 
 namespace tepor {
@@ -15,7 +16,8 @@ namespace tepor {
 /// D may be singular or indefinite as long as the changed matrix is regular.
 class LowRankUpdate {
   public:
-    /// Solves for Z. `solve(b)` turns n values into A^-1 b in place. Rows must differ from each other.
+    /// Solves for Z. `solve(b)` turns n values into A^-1 b in place, or `solve(b, k)` k columns of n values each, one after the
+    /// other. Rows must differ from each other.
     template <class Solve>
     void prepare(Index n, const std::vector<Id>& rows, Solve&& solve) {
         size_ = n;
@@ -25,8 +27,9 @@ class LowRankUpdate {
         for (Index c = 0; c < k; ++c) {
             double* column = columns_.data() + c * n;
             column[rows_[detail::as_size(c)]] = 1.0;
-            solve(column);
+            if constexpr (std::is_invocable_v<Solve, double*>) solve(column);
         }
+        if constexpr (!std::is_invocable_v<Solve, double*>) solve(columns_.data(), k);
         block_.assign(detail::as_size(k * k), 0.0);
         factor_.assign(detail::as_size(k * k), 0.0);
         pivot_.resize(detail::as_size(k));

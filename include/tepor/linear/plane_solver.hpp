@@ -33,6 +33,16 @@ class PlaneSolver {
     /// @return false when an iteration stalled
     [[nodiscard]] virtual bool solve(double* b, double limit, bool transposed) = 0;
 
+    /// For direct factors of symmetric matrices: notes the values of the factored matrix before others take their place.
+    /// @return whether they were not known before
+    virtual bool keep_base() = 0;
+    /// Makes the factor serve the matrix as it stands, which differs from the factored one in at most `most` rows, by a low-rank
+    /// update (see linear/low_rank.hpp): new rows cost a solve each, other values in the same rows next to nothing.
+    /// @return 0, or how many rows differ when they are too many or the update fails: the factor then serves the old matrix
+    [[nodiscard]] virtual Index update(Index most) = 0;
+    /// Gives the matrix the values of keep_base() and ends the update.
+    virtual void restore_base(SparseMatrix& matrix) = 0;
+
     [[nodiscard]] virtual Id singular_unknown() const noexcept = 0;
     /// The factor in use is exact up to rounding.
     [[nodiscard]] virtual bool direct() const noexcept = 0;

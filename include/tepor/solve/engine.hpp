@@ -72,6 +72,17 @@ class Engine {
     /// Values that entered the matrix when it was factored, for reuse; empty when it may not be reused.
     std::vector<double> key;
 
+    /// Whether the factor can serve other matrices by update().
+    [[nodiscard]] bool updatable() const noexcept {
+        return method_ == Method::plane && plane_->direct() && matrix.symmetric();
+    }
+    /// Before another matrix is put in the place of the factored one: notes its values.
+    TEPOR_INLINE void keep_base();
+    /// Makes the factor serve `matrix` as it stands; see PlaneSolver::update.
+    [[nodiscard]] Index update(Index most) { return plane_->update(most); }
+    /// Back to the matrix that was factored and its key.
+    TEPOR_INLINE void restore_base();
+
   private:
     enum class Method { none, outside, tridiagonal, banded, banded_lu, plane };
 
@@ -87,6 +98,7 @@ class Engine {
     BandedLu banded_lu_;
     std::unique_ptr<PlaneSolver> plane_;
     int threads_ = 1;
+    std::vector<double> base_key_; // of the factored matrix, where updates are made
 };
 
 /// The values that enter the matrix, in slot order: the key an engine is reused by.
@@ -99,6 +111,14 @@ class EnginePool final : public Body::Store {
     /// An engine factored for this key if there is one, else any idle or a new one.
     [[nodiscard]] TEPOR_INLINE std::unique_ptr<Engine> borrow(const std::shared_ptr<const Model>& model,
                                                               const std::vector<double>& key);
+    /// An engine whose factor may serve this key by a low-rank update, since few values differ; null where there is none, or
+    /// where a factor for the key itself is at hand.
+    [[nodiscard]] TEPOR_INLINE std::unique_ptr<Engine> borrow_near(const std::vector<double>& key);
+    /// Rows an update may have now. Each refusal raises it: a sweep that goes on is worth the solves of a wider update.
+    [[nodiscard]] TEPOR_INLINE Index update_rows(Index unknowns);
+    /// An update to this key would have had too many rows: `rows`.
+    TEPOR_INLINE void refused(const std::vector<double>& from, const std::vector<double>& key, Index rows,
+                              Index unknowns);
     /// Gives it back for reuse.
     TEPOR_INLINE void give_back(std::unique_ptr<Engine> engine);
 
@@ -113,10 +133,14 @@ class EnginePool final : public Body::Store {
     std::vector<std::unique_ptr<LineSweep>> idle_sweeps_;
     std::shared_ptr<const LinePlan> plan_;
     bool planned_ = false;
+    Index refusals_ = 0;
+    Index mixed_refusals_ = 0;      // of keys with several differences at once
+    std::vector<std::size_t> wide_; // places in the key whose values touch more rows than an update can have
 };
 
 } // namespace tepor
 
 #ifndef TEPOR_COMPILED
 #include <tepor/solve/impl/engine.hpp>
+#include <tepor/solve/impl/engine_update.hpp>
 #endif

@@ -6,6 +6,7 @@
 #include <tepor/linear/cholesky.hpp>
 #include <tepor/linear/choose.hpp>
 #include <tepor/linear/conjugate_gradient.hpp>
+#include <tepor/linear/impl/updated_factor.hpp>
 #include <tepor/linear/krylov.hpp>
 #include <tepor/linear/multigrid.hpp>
 #include <tepor/linear/plane_solver.hpp>
@@ -55,6 +56,7 @@ class OwnPlaneSolver final : public PlaneSolver {
         singular_ = -1;
         solves_ = 0;
         by_multigrid_ = false;
+        few_.forget();
         if (!matrix.symmetric()) {
             symmetric_part_.rows = matrix.rows;
             symmetric_part_.start = matrix.start;
@@ -81,8 +83,13 @@ class OwnPlaneSolver final : public PlaneSolver {
             static_cast<void>(factor_direct(*matrix_)); // if it fails: multigrid has managed until now
         if (by_multigrid_) return iterate(b, limit);
         cholesky_.solve(b);
+        few_.apply(b);
         return true;
     }
+
+    bool keep_base() override { return few_.keep_base(*matrix_); }
+    Index update(Index most) override { return few_.update(*matrix_, size_, cholesky_, most); }
+    void restore_base(SparseMatrix& matrix) override { few_.restore_base(matrix); }
 
     Id singular_unknown() const noexcept override { return singular_; }
     bool direct() const noexcept override { return !by_multigrid_; }
@@ -167,6 +174,7 @@ class OwnPlaneSolver final : public PlaneSolver {
     ConjugateGradientWork cg_work_;
     KrylovWork krylov_work_;
     SparseMatrix symmetric_part_;
+    FewRows few_;
     SparseMatrix thin_; // the free block without zeros, where there are many
     std::vector<double> x_;
 };

@@ -21,10 +21,18 @@ class SteadySolve {
     SteadySolve(Engine& engine, const Values& values, const SteadyOptions& options)
         : engine_(engine), model_(engine.model()), values_(values), options_(options), at_(instant(options)) {}
 
-    /// Fills T (prescribed part set already), leaves the residual of the result in the engine.
-    void run(double* T, bool factored) {
+    /// Fills T (prescribed part set already), leaves the residual of the result in the engine. With `update_rows` the factor of a
+    /// similar matrix is used by a low-rank update of so many rows.
+    /// @return 0, or the rows such an update would need when these are more; nothing has then been done
+    Index run(double* T, bool factored, Index update_rows = 0) {
         evaluate(T, !factored);
         if (pass_.fault) raise(pass_.fault);
+        bool updated = update_rows > 0;
+        if (updated) {
+            const Index needed = engine_.update(update_rows);
+            if (needed > 0) return needed;
+            factored = true;
+        }
         for (Index pass = 0;; ++pass) {
             const double limit = options_.tolerance * gross_traffic(model_, pass_, engine_.residual.data()) +
                                  residual_rounding(model_, engine_.matrix, T);
@@ -38,6 +46,7 @@ class SteadySolve {
                 ++refinements_;
             else if (model_.nonlinear ? pass >= options_.most_passes : pass >= 4)
                 stalled(T, "the passes ran out");
+            if (updated && !solved && pass == 2) updated = factored = false; // the update has lost digits
             if (!factored && !engine_.factor(Purpose::one_solve)) {
                 if (!model_.nonlinear) raise_singular(model_, engine_.singular_unknown());
                 restore(T);
@@ -51,6 +60,7 @@ class SteadySolve {
             find_step(T, now, limit);
             advance(T, now, limit);
         }
+        return 0;
     }
 
     [[nodiscard]] std::vector<SolvePass> take_history() { return std::move(history_); }
@@ -259,18 +269,42 @@ inline bool steady_sweep(const std::shared_ptr<const Model>& model, EnginePool& 
     return fine;
 }
 
+/// A linear body whose matrix differs little from one that is factored; see Engine::update. False when it does not.
+inline bool steady_update(EnginePool& pool, const std::vector<double>& key, const SteadyOptions& options, Field& into) {
+    std::unique_ptr<Engine> engine = pool.borrow_near(key);
+    if (!engine) return false;
+    const std::vector<double> former = engine->key;
+    engine->keep_base();
+    engine->key.clear();
+    const Index free = engine->model().free;
+    SteadySolve solve(*engine, into.values(), options);
+    const Index needed = solve.run(into.temperature().data(), false, pool.update_rows(free));
+    if (needed > 0) {
+        engine->restore_base();
+        pool.refused(former, key, needed, free);
+    } else {
+        check_tables(engine->model(), into.values(), engine->work, into.temperature().data());
+        into.reaction() = engine->residual;
+        into.passes() = solve.take_history();
+        engine->key = key;
+    }
+    pool.give_back(std::move(engine));
+    return needed == 0;
+}
+
 /// The plain way: a matrix, a factor, and Newton's method where it is needed.
 inline void steady_solve(const std::shared_ptr<const Model>& model, EnginePool& pool, const SteadyOptions& options,
                          Field& into) {
     std::vector<double>& T = into.temperature();
     const std::vector<double> key = matrix_key(*model, into.values());
+    if (!options.solver && !model->nonlinear && steady_update(pool, key, options, into)) return;
     std::unique_ptr<Engine> engine = options.solver ? std::make_unique<Engine>(model) : pool.borrow(model, key);
     if (options.solver) engine->use(options.solver);
     engine->use_threads(options.threads);
     const bool factored = !model->nonlinear && engine->key == key;
     engine->key.clear();
     SteadySolve solve(*engine, into.values(), options);
-    solve.run(T.data(), factored);
+    static_cast<void>(solve.run(T.data(), factored));
     check_tables(*model, into.values(), engine->work, T.data());
     into.reaction() = engine->residual;
     into.passes() = solve.take_history();
