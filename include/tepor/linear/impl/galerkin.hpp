@@ -13,17 +13,6 @@ struct HalfProduct {
     Buffer<Id> start, end;
     Buffer<Id> column;
     Buffer<double> value;
-
-    /// Room for `room` more entries (and one to write ahead).
-    void grow(Index used, Index room) {
-        if (column.size() > used + room) return;
-        Buffer<Id> columns(used + used / 2 + room + 64);
-        Buffer<double> values(columns.size());
-        std::copy_n(column.data(), used, columns.data());
-        std::copy_n(value.data(), used, values.data());
-        column = std::move(columns);
-        value = std::move(values);
-    }
 };
 
 /// P by columns.

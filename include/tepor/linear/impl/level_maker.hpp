@@ -65,8 +65,8 @@ class LevelMaker {
         if (p_) {
             t.start.reset(n_);
             t.end.reset(n_);
-            t.column.reset(apart ? part.back().coarse_room : 3 * n_ + 64);
-            t.value.reset(t.column.size());
+            t.column.reset(part.back().coarse_room); // far more than is used, as above
+            t.value.reset(part.back().coarse_room);
         }
         TaskScratch<RowSums<double>> scratch(crew, pairs, level.columns);
         Index used = 0;
@@ -78,7 +78,7 @@ class LevelMaker {
             Index& products = apart ? own.t_used : t_used;
             try {
                 for (std::size_t b = as_size(2 * k); b < std::min(as_size(2 * k + 2), blocks_.count()); ++b)
-                    make_block(level, b, coarse_block, own, scratch[k], entries, products, apart, t);
+                    make_block(level, b, coarse_block, own, scratch[k], entries, products, t);
             } catch (const std::bad_alloc&) { // no exception may leave a task
                 own.fits = false;
             }
@@ -139,7 +139,7 @@ class LevelMaker {
     }
 
     void make_block(MultigridLevel<Real>& level, std::size_t b, const std::vector<Index>& coarse_block, Part& part,
-                    RowSums<double>& sums, Index& used, Index& t_used, bool apart, HalfProduct& t) {
+                    RowSums<double>& sums, Index& used, Index& t_used, HalfProduct& t) {
         Entry* const entry = level.entry.data();
         Id* const start = level.start.data() + b;
         const auto after = [&](Id e, Index i) { return level.cross[as_size(e)].column < i; };
@@ -150,7 +150,6 @@ class LevelMaker {
             used += own_row(entry + used, i, blocks_.begin[b]);
             start[2 * i + 1] = as_id(used);
             if (!p_) continue;
-            if (!apart) t.grow(t_used, row_room(i));
             t.start[i] = as_id(t_used);
             const CoarseBlock own{coarse_block[b], coarse_block[b + 1], part.coarse_cross};
             used += coarse_row(entry + used, i, own, level, cross, sums, t_used, t);
