@@ -39,7 +39,8 @@ class Loads {
         const Coefficient* coefficient = nullptr;
         Id slot = -1; ///< -1: a schedule or function of time
         SparseRow row;
-        double value = 0.0; ///< what the sum holds
+        double value = 0.0;          ///< what the sum holds
+        std::vector<double> dense{}; ///< the row where it fills most of the body
     };
     TEPOR_INLINE void classify();
     TEPOR_INLINE void integrate(const Values& values, Workspace& work, const std::vector<const Coefficient*>& loads,

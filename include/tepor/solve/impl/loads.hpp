@@ -1,6 +1,7 @@
 #pragma once
 // Load vectors by input.
 
+#include <tepor/base/memory.hpp>
 #include <tepor/solve/loads.hpp>
 
 namespace tepor {
@@ -17,6 +18,10 @@ void for_each_load(const Model& model, const Visit& visit) {
         for (const FaceTerm& term : model.faces[f].terms)
             visit(term.kind == FaceTerm::Kind::flux ? term.amount : term.outside, 1, f);
     for (std::size_t l = 0; l < model.locals.size(); ++l) visit(model.locals[l].total, 2, l);
+}
+
+inline void add_times(std::size_t n, double a, const double* TEPOR_RESTRICT x, double* TEPOR_RESTRICT y) noexcept {
+    for (std::size_t i = 0; i < n; ++i) y[i] += a * x[i];
 }
 
 } // namespace detail
@@ -93,6 +98,8 @@ TEPOR_INLINE void Loads::rebuild(const Values& values, Workspace& work) {
         unit.row = {};
         for (std::size_t u = 0; u < row.size(); ++u)
             if (row[u] != 0.0) unit.row.add(detail::as_id(u), row[u]);
+        unit.dense.clear();
+        if (2 * unit.row.unknown.size() > row.size()) unit.dense = row;
     }
     changed_ = fresh_ = true;
 }
@@ -124,6 +131,10 @@ TEPOR_INLINE Fault Loads::update(const Values& values, Workspace& work, TimeSpan
     else
         for (std::size_t u = 0; u < n; ++u) sum_[u] = constant_[u] + from_samples_[u];
     for (const Unit& unit : units_) {
+        if (!unit.dense.empty()) {
+            detail::add_times(n, unit.value, unit.dense.data(), sum_.data());
+            continue;
+        }
         const Id* ids = unit.row.unknown.data();
         const double* weights = unit.row.weight.data();
         const std::size_t entries = unit.row.unknown.size();

@@ -191,7 +191,7 @@ class Marcher {
     void invert_latent(std::size_t first, std::size_t last, double a, double heat) noexcept;
     void melt_prescribed() noexcept;
     [[nodiscard]] bool inside_tables() noexcept;
-    void product(const double* v, double* out) const noexcept;
+    void unbalanced_line(const double* T, const double* load, double dt, double* b) const noexcept;
     Verdict fail(const Fault& fault) noexcept;
     [[nodiscard]] static Verdict verdict_of(const Error& error) noexcept;
 
@@ -248,6 +248,7 @@ class Marcher {
     int start_damp_ = 0;
     std::size_t start_legs_ = 0;      ///< of the tape
     double whole_ = 1.0;              ///< size of the step in hand [s]
+    bool whole_leg_ = false;          ///< the substep in hand is all of it and enters the run's sums itself
     std::vector<double> piece_T_;     ///< before the substep
     std::vector<double> early_T_;     ///< the same with prescribed temperatures after their jump
     std::vector<double> try_T_;       ///< before a Newton pass

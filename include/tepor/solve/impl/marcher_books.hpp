@@ -47,8 +47,7 @@ TEPOR_INLINE void Marcher::begin_books(double dt) noexcept {
     least_leg_ = std::numeric_limits<double>::infinity();
     instant_fresh_ = false;
     for (Summed& one : integrals) one.pending = 0.0;
-    std::fill(mean_.begin(), mean_.end(), 0.0);
-    std::fill(step_rise_.begin(), step_rise_.end(), 0.0);
+    whole_leg_ = false;
     if (!lazy_books_) clear(step_book_);
 }
 
@@ -98,9 +97,7 @@ TEPOR_INLINE Verdict Marcher::book_storage(const double* stored) {
 TEPOR_INLINE void Marcher::end_books(double from, double dt) {
     step_span_ = {from, time, 1.0};
     if (lazy_books_) {
-        const double* mean = mean_.data();
-        double* sum = run_mean_.data();
-        for (Index u = 0; u < model->unknowns; ++u) sum[u] += dt * mean[u];
+        if (!whole_leg_) add_scaled(run_mean_, mean_, dt);
         for (std::size_t s = 0; s < run_slots_.size(); ++s) run_slots_[s] += dt * values.slots[s];
     } else {
         add(run_book_, step_book_);

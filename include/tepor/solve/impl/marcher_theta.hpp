@@ -5,6 +5,7 @@
 #include <cmath>
 #include <limits>
 #include <new>
+#include <tepor/base/memory.hpp>
 #include <tepor/solve/impl/marcher.hpp>
 
 namespace tepor::detail {
@@ -108,7 +109,13 @@ TEPOR_INLINE Verdict Marcher::interval(double end, double dt) {
 }
 
 TEPOR_INLINE Verdict Marcher::piece(double end, double dt) {
-    if (damp_ <= 0 || scheme.theta >= 1.0) return substep(end, dt, scheme.theta);
+    const bool in_one = damp_ <= 0 || scheme.theta >= 1.0;
+    whole_leg_ = in_one && lazy_books_ && dt == whole_ && time == start_time_;
+    if (!whole_leg_ && time == start_time_) {
+        std::fill(mean_.begin(), mean_.end(), 0.0);
+        std::fill(step_rise_.begin(), step_rise_.end(), 0.0);
+    }
+    if (in_one) return substep(end, dt, scheme.theta);
     damp_ = damp_ > 2 ? damp_ - 2 : 0;
     const Verdict first = substep(time + 0.5 * dt, 0.5 * dt, 1.0);
     return first == Verdict::ok ? substep(end, 0.5 * dt, 1.0) : first;
@@ -141,22 +148,21 @@ TEPOR_INLINE const std::vector<double>& Marcher::prescribed_end(double at) {
     return prescribed_to_;
 }
 
-TEPOR_INLINE void Marcher::product(const double* v, double* out) const noexcept {
-    if (!line_.on) {
-        multiply(K_, model->unknowns, v, out);
-        return;
-    }
+/// dt (F - K T) of a line, row by row.
+TEPOR_INLINE void Marcher::unbalanced_line(const double* TEPOR_RESTRICT T, const double* TEPOR_RESTRICT load, double dt,
+                                           double* TEPOR_RESTRICT b) const noexcept {
     const Index n = model->free;
-    const double* d = line_.diagonal.data();
-    const double* o = line_.off.data();
+    const double* TEPOR_RESTRICT d = line_.diagonal.data();
+    const double* TEPOR_RESTRICT o = line_.off.data();
     if (n == 1) {
-        out[0] = d[0] * v[0];
+        b[0] = dt * (load[0] - d[0] * T[0]);
     } else {
-        out[0] = d[0] * v[0] + o[0] * v[1];
-        for (Index i = 1; i < n - 1; ++i) out[i] = d[i] * v[i] + (o[i - 1] * v[i - 1] + o[i] * v[i + 1]);
-        out[n - 1] = d[n - 1] * v[n - 1] + o[n - 2] * v[n - 2];
+        b[0] = dt * (load[0] - (d[0] * T[0] + o[0] * T[1]));
+        for (Index i = 1; i < n - 1; ++i)
+            b[i] = dt * (load[i] - (d[i] * T[i] + (o[i - 1] * T[i - 1] + o[i] * T[i + 1])));
+        b[n - 1] = dt * (load[n - 1] - (d[n - 1] * T[n - 1] + o[n - 2] * T[n - 2]));
     }
-    for (const Line::Coupling& c : line_.couplings) out[c.row] += c.value * v[c.column];
+    for (const Line::Coupling& c : line_.couplings) b[c.row] -= dt * (c.value * T[c.column]);
 }
 
 TEPOR_INLINE Verdict Marcher::linear_substep(double end, double dt, double theta) {
@@ -180,8 +186,12 @@ TEPOR_INLINE Verdict Marcher::linear_substep(double end, double dt, double theta
         T[u] = from[u];
     }
     // (M + theta dt K) rise = dt (F - K T), less what the prescribed unknowns do
-    product(T, b);
-    for (Index u = 0; u < n; ++u) b[u] = dt * (load[u] - b[u]);
+    if (line_.on) {
+        unbalanced_line(T, load, dt, b);
+    } else {
+        multiply(K_, all, T, b);
+        for (Index u = 0; u < n; ++u) b[u] = dt * (load[u] - b[u]);
+    }
     if (moved) {
         storage_->couple(rise, b);
         const double a = theta * dt;
@@ -202,17 +212,36 @@ TEPOR_INLINE Verdict Marcher::linear_substep(double end, double dt, double theta
     const double back = 1.0 - theta;
     double* TEPOR_RESTRICT mean = mean_.data();
     double* TEPOR_RESTRICT sum = step_rise_.data();
+    double* TEPOR_RESTRICT run = run_mean_.data();
     double* TEPOR_RESTRICT now = T;
     const double* TEPOR_RESTRICT d = b;
-    for (Index u = 0; u < n; ++u) {
-        now[u] += d[u];
-        sum[u] += d[u];
-        mean[u] += share * (now[u] - back * d[u]);
-    }
-    for (Index u = n; u < all; ++u) {
-        T[u] = to[u];
-        sum[u] += rise[u];
-        mean[u] += share * (theta * to[u] + back * from[u]);
+    if (whole_leg_) {
+        for (Index u = 0; u < n; ++u) {
+            const double rise_here = d[u];
+            const double end_here = now[u] + rise_here;
+            const double mean_here = end_here - back * rise_here;
+            now[u] = end_here;
+            sum[u] = rise_here;
+            mean[u] = mean_here;
+            run[u] += dt * mean_here;
+        }
+        for (Index u = n; u < all; ++u) {
+            T[u] = to[u];
+            sum[u] = rise[u];
+            mean[u] = theta * to[u] + back * from[u];
+            run[u] += dt * mean[u];
+        }
+    } else {
+        for (Index u = 0; u < n; ++u) {
+            now[u] += d[u];
+            sum[u] += d[u];
+            mean[u] += share * (now[u] - back * d[u]);
+        }
+        for (Index u = n; u < all; ++u) {
+            T[u] = to[u];
+            sum[u] += rise[u];
+            mean[u] += share * (theta * to[u] + back * from[u]);
+        }
     }
     prescribed_dt_ = dt;
     if (lazy_books_) return Verdict::ok;
