@@ -70,3 +70,38 @@ TEST_CASE("over exact cells the gradient agrees with differences of whole solves
         }
     }
 }
+
+TEST_CASE("over exact cells a film law that turns at its fluid's temperature keeps its slope near there, and a steep "
+          "law its own") {
+    const Parameter oven{"oven", 900.0}, strength{"strength", 30.0}, k_cold{"k cold", 0.11}, rise{"rise", 0.012};
+    Body body(layers<ExactSegment>({{.region = "lining", .thickness = 0.1, .cells = 3}}));
+    body.in("lining", Material{.conductivity = law({k_cold, rise}, [](const auto& s, auto k, auto r) {
+                                   return k * exp(r * s.temperature);
+                               })});
+    body.on("inner", Film{.coefficient =
+                              law({strength}, [](const auto& s,
+                                                 auto c) { return c * pow(abs(s.temperature - s.fluid) + 1.0, 0.25); }),
+                          .fluid = oven});
+    body.on("outer", Film{.coefficient = 9.0, .fluid = 20.0});
+    for (const double hot : {30.0, 120.0, 400.0}) { // 1 % of it is more than the fluid is off the face
+        body.set(oven, hot);
+        const Field field = steady(body);
+        for (const Quantity& quantity : {mean_on("inner"), heat_out_through("outer"), at(0.04)}) {
+            const Gradient slope = gradient(field, quantity);
+            for (const Parameter& p : {oven, strength, k_cold, rise}) {
+                CAPTURE(hot);
+                CAPTURE(p.name());
+                CAPTURE(quantity.label());
+                const double here = body.value(p), h = 1e-6 * here;
+                body.set(p, here + h);
+                const double above = steady(body)[quantity];
+                body.set(p, here - h);
+                const double below = steady(body)[quantity];
+                body.set(p, here);
+                const double difference = (above - below) / (2.0 * h);
+                CHECK(std::abs(slope[p] - difference) <=
+                      1e-6 * (std::abs(difference) + std::abs(field[quantity]) / here));
+            }
+        }
+    }
+}

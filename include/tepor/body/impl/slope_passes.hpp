@@ -66,15 +66,27 @@ class SlopePasses : public SideSlopes {
         reserve();
         for (std::size_t r = 0; r < model_.regions.size(); ++r)
             if (with_places_ || acts_in(model_.regions[r])) cells(r);
+        for (const LocalModel& l : model_.locals)
+            if (wants(l.total)) local(l);
+        sides_column();
+    }
+    /// The part of it that comes through faces and contacts, places left out; added to `column`.
+    void column_of_sides(const double* T, Id slot, double* column) {
+        collect_column(slot, {});
+        T_ = T;
+        column_ = column;
+        reserve();
+        sides_column();
+    }
+
+  private:
+    void sides_column() {
         for (const FaceModel& f : model_.faces)
             if (with_places_ || acts_on(f)) face(f, f.sides);
         for (const ContactModel& c : model_.contacts)
             if (with_places_ || wants(c.amount)) contact(c);
-        for (const LocalModel& l : model_.locals)
-            if (wants(l.total)) local(l);
     }
 
-  private:
     void storage(const double* rise, double lumped_share) {
         reserve_cells();
         l_nodes_.assign(as_size(kernel_.nodes * W), 0.0);
