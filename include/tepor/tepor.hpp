@@ -62,6 +62,7 @@
 #include <tepor/assembly/kernels_cells.hpp>
 #include <tepor/assembly/kernels_chain.hpp>
 #include <tepor/assembly/kernels_maps.hpp>
+#include <tepor/assembly/kernels_plane.hpp>
 #include <tepor/assembly/kernels_sides.hpp>
 #include <tepor/assembly/kernels_triangles.hpp>
 #include <tepor/assembly/make_kernels.hpp>

@@ -42,6 +42,8 @@ struct CellBlock {
     double* point_T = nullptr;    ///< when T is given
     double* gradient_x = nullptr; ///< (points x nodes): physical gradients of the shape functions
     double* gradient_y = nullptr;
+    double* map_slope = nullptr; ///< for form(): derivatives of the map at points, dx/dxi, dx/deta, dy/dxi, dy/deta
+    double* metric = nullptr;    ///< form()'s own: conductivity at points in reference coordinates
 
     // coefficients at points, set by the caller before CellKernels::form; conductivities at the points of conduction
     int conductivities = 0;                                 ///< 0 none, 1 isotropic, 2 along x and y, 3 also xy
@@ -96,7 +98,7 @@ class Workspace {
         const int pairs = nodes * (nodes + 1) / 2;
         const int side_pairs = side_nodes * (side_nodes + 1) / 2;
         const int total =
-            w * (3 * nodes + 4 * points + 2 * points * nodes + nodes + pairs + nodes * nodes + 12 * points +
+            w * (3 * nodes + 11 * points + 2 * points * nodes + nodes + pairs + nodes * nodes + 12 * points +
                  3 * side_nodes + 6 * side_points + side_nodes + side_pairs + 8 * side_points);
         store_.resize(detail::as_size(total), 0.0);
         double* next = store_.data();
@@ -114,6 +116,8 @@ class Workspace {
         cells.point_T = take(points);
         cells.gradient_x = take(points * nodes);
         cells.gradient_y = take(points * nodes);
+        cells.map_slope = take(4 * points);
+        cells.metric = take(3 * points);
         cells.residual = take(nodes);
         cells.matrix = take(pairs);
         cells.slope = take(nodes * nodes);

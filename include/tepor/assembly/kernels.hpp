@@ -46,6 +46,7 @@ class Kernels final : public CellKernels {
         chain = E::dim == 1 && constant_gradient;
         points = static_cast<int>(rule.size());
         add_points(rule);
+        if constexpr (E::dim == 2 && !flat_triangle) multiply_gradients();
         if constexpr (E::dim == 2) {
             const Rule<1> along = line_rule(2 * E::order + power_ + extra_degree);
             side_points = static_cast<int>(along.size());
@@ -172,26 +173,35 @@ class Kernels final : public CellKernels {
         }
     }
 
+    void multiply_gradients();
     void map_segment_point(int q, int count, const double* left, const double* right, double* place,
                            double* weight) const;
     void map_segments(CellBlock& block) const;
-    void map_plane(CellBlock& block) const;
     void add_conduction(CellBlock& block, Wanted wanted) const;
     void sum_conductivity(int count, const double* weight, int stride, const double* k, double k_value,
                           double* total) const;
     void form_segment_conduction(CellBlock& block, Wanted wanted) const;
     void add_source(CellBlock& block, Wanted wanted) const;
 
+    // all other plane cells: kernels_plane.hpp
+    void map_plane(CellBlock& block) const;
+    void reference_conductivity(const CellBlock& block, const double* const* k, bool uniform, double* metric) const;
+    void form_plane_conduction(CellBlock& block, Wanted wanted) const;
+    void reference_flow(const CellBlock& block, int q, double* one, double* two) const;
+    void add_plane_residual(CellBlock& block) const;
+    void form_plane_slope(CellBlock& block) const;
+
     // triangles of order 1: kernels_triangles.hpp
     void map_triangles(CellBlock& block) const;
     void triangle_points(CellBlock& block, int from, int to, const double* twice) const;
     void integrate_on_triangle(const CellBlock& block, const double* k, double* total) const;
     void form_triangle_conduction(CellBlock& block, Wanted wanted) const;
-    void add_triangle_slope(CellBlock& block) const;
+    void form_triangle_slope(CellBlock& block) const;
 
     int power_;
     double factor_;
     std::vector<double> rule_weight_, shape_, reference_gradient_;
+    std::vector<double> gradient_products_; // see kernels_plane.hpp
     SideTable side_, lumped_side_;
 };
 
@@ -201,5 +211,6 @@ class Kernels final : public CellKernels {
 #include <tepor/assembly/kernels_cells.hpp>
 #include <tepor/assembly/kernels_chain.hpp>
 #include <tepor/assembly/kernels_maps.hpp>
+#include <tepor/assembly/kernels_plane.hpp>
 #include <tepor/assembly/kernels_sides.hpp>
 #include <tepor/assembly/kernels_triangles.hpp>

@@ -9,17 +9,19 @@ template <Element E>
 void Kernels<E>::form(CellBlock& block, Wanted wanted) const {
     if (wanted.residual)
         for (int i = 0; i < N * W; ++i) block.residual[i] = 0.0;
-    // constant gradients: the matrix is set, not added to
-    const bool set =
-        flat_triangle ? block.conductivities > 0 : constant_gradient && block.conductivities == 1 && !wanted.slope;
-    if (wanted.matrix && !set)
+    // what comes first is set, not added to
+    const bool plane = E::dim == 2 && block.conductivities > 0;
+    const bool resistance = E::dim == 1 && constant_gradient && block.conductivities == 1 && !wanted.slope;
+    if (wanted.matrix && !plane && !resistance)
         for (int i = 0; i < N * (N + 1) / 2 * W; ++i) block.matrix[i] = 0.0;
-    if (wanted.slope)
+    if (wanted.slope && !plane)
         for (int i = 0; i < N * N * W; ++i) block.slope[i] = 0.0;
     if (block.conductivities > 0) {
         if constexpr (flat_triangle)
             form_triangle_conduction(block, wanted);
-        else if (set)
+        else if constexpr (E::dim == 2)
+            form_plane_conduction(block, wanted);
+        else if (resistance)
             form_segment_conduction(block, wanted);
         else
             add_conduction(block, wanted);
@@ -71,79 +73,43 @@ void Kernels<E>::form_segment_conduction(CellBlock& block, Wanted wanted) const 
     }
 }
 
+/// Segments in general.
 template <Element E>
 void Kernels<E>::add_conduction(CellBlock& block, Wanted wanted) const {
-    const bool isotropic = block.conductivities == 1;
-    const bool two = E::dim == 2;
-    constexpr auto entries = detail::as_size(N * W);
-    double ax[entries]; // k grad N_i at a point, times its weight
-    double ay[entries];
-    double tx[W];
-    double ty[W];
+    double a[detail::as_size(N * W)]; // k grad N_i at a point, times its weight
+    double slope[W];                  // of the temperature
     for (int q = 0; q < points; ++q) {
         const double* TEPOR_RESTRICT weight = block.weight + q * W;
-        const int from = constant_gradient ? 0 : q * N * W;
-        const double* TEPOR_RESTRICT gx = block.gradient_x + from;
-        const double* TEPOR_RESTRICT gy = block.gradient_y + from;
-        double kxx[W];
-        double kyy[W];
-        double kxy[W];
-        for (int c = 0; c < W; ++c) {
-            const int at = block.k_uniform ? 0 : q * W + c;
-            kxx[c] = weight[c] * block.k[0][at];
-            kyy[c] = isotropic ? kxx[c] : weight[c] * block.k[1][at];
-            kxy[c] = block.conductivities == 3 ? weight[c] * block.k[2][at] : 0.0;
-        }
-        const bool crossed = block.conductivities == 3;
+        const double* TEPOR_RESTRICT g = block.gradient_x + (constant_gradient ? 0 : q * N * W);
+        double k[W];
+        for (int c = 0; c < W; ++c) k[c] = weight[c] * block.k[0][block.k_uniform ? 0 : q * W + c];
         for (int i = 0; i < N; ++i)
-            for (int c = 0; c < W; ++c) {
-                if constexpr (E::dim == 1) {
-                    ax[i * W + c] = kxx[c] * gx[i * W + c];
-                } else {
-                    ax[i * W + c] = kxx[c] * gx[i * W + c] + (crossed ? kxy[c] * gy[i * W + c] : 0.0);
-                    ay[i * W + c] = kyy[c] * gy[i * W + c] + (crossed ? kxy[c] * gx[i * W + c] : 0.0);
-                }
-            }
+            for (int c = 0; c < W; ++c) a[i * W + c] = k[c] * g[i * W + c];
         if (wanted.matrix) {
             int pair = 0;
             for (int i = 0; i < N; ++i)
                 for (int j = 0; j <= i; ++j, ++pair) {
                     double* TEPOR_RESTRICT m = block.matrix + pair * W;
-                    if constexpr (E::dim == 1)
-                        for (int c = 0; c < W; ++c) m[c] += ax[i * W + c] * gx[j * W + c];
-                    else
-                        for (int c = 0; c < W; ++c)
-                            m[c] += ax[i * W + c] * gx[j * W + c] + ay[i * W + c] * gy[j * W + c];
+                    for (int c = 0; c < W; ++c) m[c] += a[i * W + c] * g[j * W + c];
                 }
         }
         if (!wanted.residual && !wanted.slope) continue;
-        for (int c = 0; c < W; ++c) tx[c] = ty[c] = 0.0;
+        for (int c = 0; c < W; ++c) slope[c] = 0.0;
         for (int i = 0; i < N; ++i)
-            for (int c = 0; c < W; ++c) {
-                tx[c] += gx[i * W + c] * block.T[i * W + c];
-                if constexpr (E::dim == 2) ty[c] += gy[i * W + c] * block.T[i * W + c];
-            }
+            for (int c = 0; c < W; ++c) slope[c] += g[i * W + c] * block.T[i * W + c];
         if (wanted.residual)
             for (int i = 0; i < N; ++i) {
                 double* TEPOR_RESTRICT r = block.residual + i * W;
-                for (int c = 0; c < W; ++c) r[c] += ax[i * W + c] * tx[c] + (two ? ay[i * W + c] * ty[c] : 0.0);
+                for (int c = 0; c < W; ++c) r[c] += a[i * W + c] * slope[c];
             }
-        if (!wanted.slope) continue;
-        // k' N_j (grad T . grad N_i): the tensor's slope on grad T, then on grad N_i
+        if (!wanted.slope || !block.k_slope[0]) continue;
+        // k' N_j (dT/dx dN_i/dx)
         const double* n = shape_.data() + static_cast<Index>(q) * N;
-        double fx[W];
-        double fy[W];
-        for (int c = 0; c < W; ++c) {
-            const int at = q * W + c;
-            const double dxx = block.k_slope[0] ? weight[c] * block.k_slope[0][at] : 0.0;
-            const double dyy = isotropic ? dxx : (block.k_slope[1] ? weight[c] * block.k_slope[1][at] : 0.0);
-            const double dxy = block.k_slope[2] ? weight[c] * block.k_slope[2][at] : 0.0;
-            fx[c] = dxx * tx[c] + dxy * ty[c];
-            fy[c] = dyy * ty[c] + dxy * tx[c];
-        }
+        double change[W];
+        for (int c = 0; c < W; ++c) change[c] = weight[c] * block.k_slope[0][q * W + c] * slope[c];
         for (int i = 0; i < N; ++i) {
             double along[W];
-            for (int c = 0; c < W; ++c) along[c] = fx[c] * gx[i * W + c] + (two ? fy[c] * gy[i * W + c] : 0.0);
+            for (int c = 0; c < W; ++c) along[c] = change[c] * g[i * W + c];
             for (int j = 0; j < N; ++j) {
                 double* TEPOR_RESTRICT u = block.slope + (i * N + j) * W;
                 for (int c = 0; c < W; ++c) u[c] += along[c] * n[j];

@@ -67,52 +67,6 @@ void Kernels<E>::map_segments(CellBlock& block) const {
 }
 
 template <Element E>
-void Kernels<E>::map_plane(CellBlock& block) const {
-    const double* TEPOR_RESTRICT x = block.x;
-    const double* TEPOR_RESTRICT y = block.y;
-    for (int q = 0; q < points; ++q) {
-        const double* n = shape_.data() + static_cast<Index>(q) * N;
-        const double* g = reference_gradient_.data() + static_cast<Index>(q) * 2 * N;
-        double* TEPOR_RESTRICT px = block.point_x + q * W;
-        double* TEPOR_RESTRICT py = block.point_y + q * W;
-        for (int c = 0; c < W; ++c) px[c] = py[c] = 0.0;
-        for (int i = 0; i < N; ++i)
-            for (int c = 0; c < W; ++c) {
-                px[c] += n[i] * x[i * W + c];
-                py[c] += n[i] * y[i * W + c];
-            }
-        double* TEPOR_RESTRICT weight = block.weight + q * W;
-        const double w = rule_weight_[detail::as_size(q)];
-        double xx[W];
-        double xe[W];
-        double yx[W];
-        double ye[W];
-        double inverse[W];
-        for (int c = 0; c < W; ++c) xx[c] = xe[c] = yx[c] = ye[c] = 0.0;
-        for (int i = 0; i < N; ++i)
-            for (int c = 0; c < W; ++c) {
-                xx[c] += g[2 * i] * x[i * W + c];
-                xe[c] += g[2 * i + 1] * x[i * W + c];
-                yx[c] += g[2 * i] * y[i * W + c];
-                ye[c] += g[2 * i + 1] * y[i * W + c];
-            }
-        for (int c = 0; c < W; ++c) {
-            const double jacobian = xx[c] * ye[c] - xe[c] * yx[c];
-            weight[c] = w * jacobian * measure(px[c]);
-            inverse[c] = 1.0 / jacobian;
-        }
-        for (int i = 0; i < N; ++i) {
-            double* TEPOR_RESTRICT gx = block.gradient_x + (q * N + i) * W;
-            double* TEPOR_RESTRICT gy = block.gradient_y + (q * N + i) * W;
-            for (int c = 0; c < W; ++c) {
-                gx[c] = (ye[c] * g[2 * i] - yx[c] * g[2 * i + 1]) * inverse[c];
-                gy[c] = (xx[c] * g[2 * i + 1] - xe[c] * g[2 * i]) * inverse[c];
-            }
-        }
-    }
-}
-
-template <Element E>
 void Kernels<E>::open(CellBlock& block) const {
     if constexpr (E::dim == 1) {
         map_segments(block);

@@ -107,10 +107,8 @@ void Kernels<E>::form_triangle_conduction(CellBlock& block, Wanted wanted) const
     double xx[W];
     integrate_on_triangle(block, block.k[0], xx);
     // the gradients of a cell add up to zero: the couplings of its nodes hold all
-    double coupling[3 * W];
-    double* TEPOR_RESTRICT m10 = wanted.matrix ? block.matrix + W : coupling;
-    double* TEPOR_RESTRICT m20 = wanted.matrix ? block.matrix + 3 * W : coupling + W;
-    double* TEPOR_RESTRICT m21 = wanted.matrix ? block.matrix + 4 * W : coupling + 2 * W;
+    double scratch[6 * W];
+    double* TEPOR_RESTRICT m = wanted.matrix ? block.matrix : scratch;
     if (block.conductivities == 1) {
         for (int c = 0; c < W; ++c) {
             const double bx0 = y[W + c] - y[2 * W + c];
@@ -120,9 +118,12 @@ void Kernels<E>::form_triangle_conduction(CellBlock& block, Wanted wanted) const
             const double by1 = x[c] - x[2 * W + c];
             const double by2 = x[W + c] - x[c];
             const double scale = xx[c] / (bx0 * by1 - bx1 * by0);
-            m10[c] = scale * (bx0 * bx1 + by0 * by1);
-            m20[c] = scale * (bx0 * bx2 + by0 * by2);
-            m21[c] = scale * (bx1 * bx2 + by1 * by2);
+            const double m10 = scale * (bx0 * bx1 + by0 * by1);
+            const double m20 = scale * (bx0 * bx2 + by0 * by2);
+            const double m21 = scale * (bx1 * bx2 + by1 * by2);
+            m[W + c] = m10;
+            m[3 * W + c] = m20;
+            m[4 * W + c] = m21;
         }
     } else {
         double yy[W];
@@ -140,71 +141,92 @@ void Kernels<E>::form_triangle_conduction(CellBlock& block, Wanted wanted) const
             const double a = xx[c] * inverse;
             const double b = yy[c] * inverse;
             const double d = xy[c] * inverse;
-            m10[c] = a * bx0 * bx1 + b * by0 * by1 + d * (bx0 * by1 + bx1 * by0);
-            m20[c] = a * bx0 * bx2 + b * by0 * by2 + d * (bx0 * by2 + bx2 * by0);
-            m21[c] = a * bx1 * bx2 + b * by1 * by2 + d * (bx1 * by2 + bx2 * by1);
+            const double m10 = a * bx0 * bx1 + b * by0 * by1 + d * (bx0 * by1 + bx1 * by0);
+            const double m20 = a * bx0 * bx2 + b * by0 * by2 + d * (bx0 * by2 + bx2 * by0);
+            const double m21 = a * bx1 * bx2 + b * by1 * by2 + d * (bx1 * by2 + bx2 * by1);
+            m[W + c] = m10;
+            m[3 * W + c] = m20;
+            m[4 * W + c] = m21;
         }
     }
-    if (wanted.matrix) {
-        double* TEPOR_RESTRICT m = block.matrix;
+    if (wanted.matrix)
         for (int c = 0; c < W; ++c) {
-            m[c] = -(m10[c] + m20[c]);
-            m[2 * W + c] = -(m10[c] + m21[c]);
-            m[5 * W + c] = -(m20[c] + m21[c]);
+            m[c] = -(m[W + c] + m[3 * W + c]);
+            m[2 * W + c] = -(m[W + c] + m[4 * W + c]);
+            m[5 * W + c] = -(m[3 * W + c] + m[4 * W + c]);
         }
-    }
     if (wanted.residual) {
         const double* TEPOR_RESTRICT T = block.T;
         double* TEPOR_RESTRICT r = block.residual;
         for (int c = 0; c < W; ++c) {
-            const double heat10 = m10[c] * (T[W + c] - T[c]);
-            const double heat20 = m20[c] * (T[2 * W + c] - T[c]);
-            const double heat21 = m21[c] * (T[2 * W + c] - T[W + c]);
+            const double heat10 = m[W + c] * (T[W + c] - T[c]);
+            const double heat20 = m[3 * W + c] * (T[2 * W + c] - T[c]);
+            const double heat21 = m[4 * W + c] * (T[2 * W + c] - T[W + c]);
             r[c] += heat10 + heat20;
             r[W + c] += heat21 - heat10;
             r[2 * W + c] -= heat20 + heat21;
         }
     }
-    if (wanted.slope) add_triangle_slope(block);
+    if (wanted.slope) form_triangle_slope(block);
 }
 
 /// k' N_j (grad T . grad N_i): the tensor's slope on grad T, then on grad N_i.
 template <Element E>
-void Kernels<E>::add_triangle_slope(CellBlock& block) const {
+void Kernels<E>::form_triangle_slope(CellBlock& block) const {
     const double* TEPOR_RESTRICT x = block.x;
     const double* TEPOR_RESTRICT y = block.y;
     const double* TEPOR_RESTRICT T = block.T;
-    double along[3][3 * W]; // per conductivity and row: the change of the residual by the integral of k
     const int entries = block.conductivities;
+    double along[3][2 * W]; // per conductivity: what its integral changes in rows 1 and 2; all rows add up to zero
     for (int c = 0; c < W; ++c) {
-        const double bx[3] = {y[W + c] - y[2 * W + c], y[2 * W + c] - y[c], y[c] - y[W + c]};
-        const double by[3] = {x[2 * W + c] - x[W + c], x[c] - x[2 * W + c], x[W + c] - x[c]};
-        const double inverse = 1.0 / (bx[0] * by[1] - bx[1] * by[0]);
-        const double tx = inverse * (bx[1] * (T[W + c] - T[c]) + bx[2] * (T[2 * W + c] - T[c]));
-        const double ty = inverse * (by[1] * (T[W + c] - T[c]) + by[2] * (T[2 * W + c] - T[c]));
-        for (int i = 0; i < 3; ++i) {
-            along[0][i * W + c] = entries == 1 ? tx * bx[i] + ty * by[i] : tx * bx[i];
-            along[1][i * W + c] = ty * by[i];
-            along[2][i * W + c] = tx * by[i] + ty * bx[i];
+        const double bx1 = y[2 * W + c] - y[c];
+        const double bx2 = y[c] - y[W + c];
+        const double by1 = x[c] - x[2 * W + c];
+        const double by2 = x[W + c] - x[c];
+        const double inverse = 1.0 / (bx1 * by2 - bx2 * by1);
+        const double rise1 = T[W + c] - T[c];
+        const double rise2 = T[2 * W + c] - T[c];
+        const double tx = inverse * (bx1 * rise1 + bx2 * rise2);
+        const double ty = inverse * (by1 * rise1 + by2 * rise2);
+        if (entries == 1) {
+            along[0][c] = tx * bx1 + ty * by1;
+            along[0][W + c] = tx * bx2 + ty * by2;
+            continue;
         }
+        along[0][c] = tx * bx1;
+        along[0][W + c] = tx * bx2;
+        along[1][c] = ty * by1;
+        along[1][W + c] = ty * by2;
+        along[2][c] = tx * by1 + ty * bx1;
+        along[2][W + c] = tx * by2 + ty * bx2;
     }
     const int first = first_conduction_point();
-    for (int m = 0; m < entries; ++m) {
-        if (!block.k_slope[m]) continue;
-        for (int q = 0; q < conduction_points(); ++q) {
-            const double* n = shape_.data() + static_cast<Index>(first + q) * N;
-            const double w = rule_weight_[detail::as_size(first + q)] * reference_turn();
-            double rise[W];
-            for (int c = 0; c < W; ++c) rise[c] = w * block.k_slope[m][q * W + c];
-            for (int c = 0; c < W; ++c) rise[c] *= measure(power_ == 0 ? 1.0 : block.point_x[(first + q) * W + c]);
-            for (int i = 0; i < 3; ++i)
-                for (int j = 0; j < 3; ++j) {
-                    double* TEPOR_RESTRICT u = block.slope + (i * 3 + j) * W;
-                    const double* TEPOR_RESTRICT a = along[m] + i * W;
-                    for (int c = 0; c < W; ++c) u[c] += rise[c] * a[c] * n[j];
-                }
+    for (int q = 0; q < conduction_points(); ++q) {
+        const double* n = shape_.data() + static_cast<Index>(first + q) * N;
+        const double w = rule_weight_[detail::as_size(first + q)] * reference_turn();
+        const double* TEPOR_RESTRICT radius = block.point_x + (first + q) * W;
+        double size[W];
+        for (int c = 0; c < W; ++c) size[c] = w * (power_ == 0 ? factor_ : measure(radius[c]));
+        double row[2 * W] = {};
+        for (int m = 0; m < entries; ++m) {
+            if (!block.k_slope[m]) continue;
+            const double* TEPOR_RESTRICT rise = block.k_slope[m] + q * W;
+            for (int c = 0; c < W; ++c) {
+                row[c] += size[c] * rise[c] * along[m][c];
+                row[W + c] += size[c] * rise[c] * along[m][W + c];
+            }
         }
+        for (int i = 0; i < 2; ++i)
+            for (int j = 0; j < 3; ++j) {
+                double* TEPOR_RESTRICT u = block.slope + ((i + 1) * 3 + j) * W;
+                if (q == 0)
+                    for (int c = 0; c < W; ++c) u[c] = row[i * W + c] * n[j];
+                else
+                    for (int c = 0; c < W; ++c) u[c] += row[i * W + c] * n[j];
+            }
     }
+    double* TEPOR_RESTRICT u = block.slope;
+    for (int i = 0; i < 3 * W; ++i) u[i] = -(u[3 * W + i] + u[6 * W + i]);
 }
 
 } // namespace tepor

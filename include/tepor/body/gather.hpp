@@ -84,7 +84,8 @@ inline int gather_cells(const Model& model, const Point* place, const double* T,
     constexpr int W = block_width;
     const int count = end - first < W ? end - first : W;
     const bool plane = model.kernels->dim == 2; // in 1D all y stay zero
-    for (int b = 0; b < W; ++b) cells[b] = first + (b < count ? b : count - 1);
+    for (int b = 0; b < W; ++b) cells[b] = first + b;
+    for (int b = count; b < W; ++b) cells[b] = first + count - 1;
     const Id* const ids = model.cell(first);
     with_nodes(model.kernels->nodes, [&](auto nodes) {
         if (plane)

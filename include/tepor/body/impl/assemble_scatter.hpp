@@ -15,6 +15,31 @@ void add_packed(N nodes, int count, const Id* TEPOR_RESTRICT map, const double* 
         for (int p = 0; p < pairs; ++p) to[map[p]] += from[p * block_width + b];
 }
 
+/// The same with what the slope of the conductivity adds: its rows and columns differ, so that both triangles are written.
+template <class N>
+void add_sloped(N nodes, const CellBlock& block, const Id* TEPOR_RESTRICT ids, const Id* TEPOR_RESTRICT map,
+                double* TEPOR_RESTRICT lower, double* TEPOR_RESTRICT upper) {
+    const int n = nodes;
+    for (int b = 0; b < block.count; ++b, ids += n, map += n * (n + 1) / 2) {
+        const double* TEPOR_RESTRICT matrix = block.matrix + b;
+        const double* TEPOR_RESTRICT slope = block.slope + b;
+        int p = 0;
+        for (int i = 0; i < n; ++i) {
+            for (int j = 0; j < i; ++j, ++p) {
+                const bool as_stored = ids[i] > ids[j]; // row i, column j is below the diagonal
+                const int below = as_stored ? i * n + j : j * n + i;
+                const int above = as_stored ? j * n + i : i * n + j;
+                lower[map[p]] += matrix[p * block_width] + slope[below * block_width];
+                upper[map[p]] += matrix[p * block_width] + slope[above * block_width];
+            }
+            const double both = matrix[p * block_width] + slope[(i * n + i) * block_width];
+            lower[map[p]] += both;
+            upper[map[p]] += both;
+            ++p;
+        }
+    }
+}
+
 inline void Assembler::scatter(const CellBlock& block, Id first, Wanted wanted) {
     const int n = kernel_.nodes;
     const int pairs = n * (n + 1) / 2;
@@ -30,30 +55,14 @@ inline void Assembler::scatter(const CellBlock& block, Id first, Wanted wanted) 
     if (pass_.weights) weigh_cells(block, first, wanted);
     if (!pass_.matrix) return;
     const Id* map = model_.scatter.data() + static_cast<Index>(first) * pairs;
-    add_matrices(block, map, pass_.matrix->lower.data());
-    if (pass_.matrix->upper.empty()) return;
     double* lower = pass_.matrix->lower.data();
     double* upper = pass_.matrix->upper.data();
-    add_matrices(block, map, upper);
-    if (!wanted.slope) return;
-    for (int b = 0; b < block.count; ++b) {
-        const Id* ids = model_.cell(first + b);
-        int p = 0;
-        for (int i = 0; i < n; ++i)
-            for (int j = 0; j <= i; ++j, ++p) {
-                const double ij = block.slope[(i * n + j) * W + b];
-                const double ji = block.slope[(j * n + i) * W + b];
-                const Id at = map[b * pairs + p];
-                if (i == j) {
-                    lower[at] += ij;
-                    upper[at] += ij;
-                    continue;
-                }
-                const bool as_stored = ids[i] > ids[j]; // row i, column j is below the diagonal
-                lower[at] += as_stored ? ij : ji;
-                upper[at] += as_stored ? ji : ij;
-            }
+    if (wanted.slope) {
+        const Id* ids = model_.cell(first);
+        return with_nodes(n, [&](auto nodes) { add_sloped(nodes, block, ids, map, lower, upper); });
     }
+    add_matrices(block, map, lower);
+    if (!pass_.matrix->upper.empty()) add_matrices(block, map, upper);
 }
 
 inline void Assembler::add_matrices(const CellBlock& block, const Id* TEPOR_RESTRICT map, double* to) const {
