@@ -13,7 +13,7 @@ for source in "$root"/benchmarks/*.cpp; do
     name=$(basename "$source" .cpp)
     printf '\n==== %s\n' "$name"
     case $name in
-    bodies | transient | sweep) "$programs/bench-$name" --csv "$parts/$name.csv" ;;
+    assembly | bodies | sweep | transient) "$programs/bench-$name" --csv "$parts/$name.csv" ;;
     *) "$programs/bench-$name" ;;
     esac
 done

@@ -44,8 +44,8 @@ class Table final : public benchmark::BenchmarkReporter {
             ->MeasureProcessCPUTime()
             ->Unit(benchmark::kMillisecond);
     }
-    /// How many times faster than the best peer a topic is asked to be.
-    void ask(const std::string& topic, double factor) { asked_[topic] = factor; }
+    /// How many times faster than the best peer a topic is asked to be, at one size or (0) at all the others.
+    void ask(const std::string& topic, double factor, long size = 0) { asked_[{topic, size}] = factor; }
     /// A figure that is no time; stands in the table and in the CSV as it is.
     void note(const std::string& topic, long size, const std::string& what, double value) {
         notes_.push_back({topic, what, size, Side::beside, {value}});
@@ -81,7 +81,7 @@ class Table final : public benchmark::BenchmarkReporter {
             const double factor = e.side == Side::ours ? times_faster(e) : 0.0;
             if (factor > 0.0) std::fprintf(file, "%.2f", factor);
             std::fprintf(file, ",");
-            if (factor > 0.0 && asked_.count(e.topic) != 0) std::fprintf(file, "%.2f", asked_.at(e.topic));
+            if (factor > 0.0 && asked(e.topic, e.size) > 0.0) std::fprintf(file, "%.2f", asked(e.topic, e.size));
             std::fprintf(file, "\n");
         }
         for (const Entry& e : notes_)
@@ -111,6 +111,11 @@ class Table final : public benchmark::BenchmarkReporter {
             best = best > 0.0 ? std::min(best, least(e)) : least(e);
         }
         return best / least(ours);
+    }
+    [[nodiscard]] double asked(const std::string& topic, long size) const {
+        const auto found = asked_.find({topic, size});
+        if (found != asked_.end()) return found->second;
+        return size == 0 ? 0.0 : asked(topic, 0);
     }
     [[nodiscard]] std::vector<std::string> topics() const {
         std::vector<std::string> out;
@@ -150,8 +155,13 @@ class Table final : public benchmark::BenchmarkReporter {
                         factor = times_faster(e);
                 std::printf("%22.2f", factor);
             }
-            if (asked_.count(topic) != 0) std::printf("   (to reach: %.2f)", asked_.at(topic));
-            std::printf("\n");
+            double last = 0.0;
+            for (const long size : sizes) {
+                if (asked(topic, size) > 0.0 && asked(topic, size) != last)
+                    std::printf(last > 0.0 ? ", %.2f" : "   (to reach: %.2f", asked(topic, size));
+                last = asked(topic, size);
+            }
+            std::printf(last > 0.0 ? ")\n" : "\n");
         }
     }
     void print_cell(const std::string& topic, const std::string& row, long size) const {
@@ -165,7 +175,7 @@ class Table final : public benchmark::BenchmarkReporter {
 
     std::vector<Entry> entries_, notes_;
     std::map<std::string, std::size_t> position_;
-    std::map<std::string, double> asked_;
+    std::map<std::pair<std::string, long>, double> asked_;
 };
 
 } // namespace ratios
