@@ -113,16 +113,14 @@ class Model {
     bool lumped_faces = false;
     double frame_area = 1.0; ///< the frame's size that a wetted perimeter refers to
 
-    Index unknowns = 0;             ///< all
-    Index free = 0;                 ///< the first `free` ones are solved for, the rest prescribed
-    std::vector<Point> places;      ///< [m] of each unknown, at the values the parameters were made with
-    std::vector<Id> node_of;        ///< mesh node of each unknown
-    std::vector<Id> unknown_of;     ///< an unknown of each mesh node (the first copy), -1 for unused nodes
-    std::vector<Id> cell_unknowns;  ///< kernels->nodes per cell
-    std::vector<Id> user_cell;      ///< the cell in the user's numbering
-    std::vector<Id> model_cell;     ///< and back
-    std::vector<Id> region_of_cell; ///< in the model's numbering
-    std::vector<Id> part_of;        ///< per unknown: connected part of the body it belongs to
+    Index unknowns = 0;            ///< all
+    Index free = 0;                ///< the first `free` ones are solved for, the rest prescribed
+    std::vector<Point> places;     ///< [m] of each unknown, at the values the parameters were made with
+    std::vector<Id> node_of;       ///< mesh node of each unknown
+    std::vector<Id> unknown_of;    ///< an unknown of each mesh node (the first copy), -1 for unused nodes
+    std::vector<Id> cell_unknowns; ///< kernels->nodes per cell
+    std::vector<Id> user_cell;     ///< the cell in the user's numbering
+    std::vector<Id> part_of;       ///< per unknown: connected part of the body it belongs to; empty when there is one
     Index parts = 0;
     bool split = false; ///< a contact has given some node more than one unknown
 
@@ -186,6 +184,22 @@ class Model {
     /// The same, with what cannot be used as plain data.
     [[nodiscard]] TEPOR_INLINE Fault try_prescribe(const Values& values, TimeSpan time, double* T) const;
 
+    /// Region of a cell of the model's numbering. Cost O(log regions).
+    [[nodiscard]] Id region_of_cell(Index c) const noexcept {
+        std::size_t low = 0, high = regions.size();
+        while (high - low > 1) {
+            const std::size_t middle = (low + high) / 2;
+            (regions[middle].first_cell <= c ? low : high) = middle;
+        }
+        return static_cast<Id>(low);
+    }
+    /// Connected part of the body an unknown belongs to.
+    [[nodiscard]] Id part(Index unknown) const noexcept {
+        return part_of.empty() ? 0 : part_of[detail::as_size(unknown)];
+    }
+    /// The model's cell of one of the user's; the table is built at the first use.
+    [[nodiscard]] TEPOR_INLINE Id model_cell(Index user) const;
+
     [[nodiscard]] const Id* cell(Index c) const noexcept { return cell_unknowns.data() + c * kernels->nodes; }
 
     /// Finds places in the mesh; built at the first use. Places are those the mesh was made with.
@@ -199,6 +213,8 @@ class Model {
   private:
     mutable std::once_flag locator_made_;
     mutable std::unique_ptr<Locator> locator_;
+    mutable std::once_flag cells_made_;
+    mutable std::vector<Id> model_cell_;
 };
 
 /// Compiles statements on a mesh.

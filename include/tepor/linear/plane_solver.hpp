@@ -23,9 +23,11 @@ class PlaneSolver {
     virtual void use_threads(int threads) = 0;
 
     /// Decomposes `matrix` for `solves` right-hand sides. It must stay alive and unchanged until the next call; the pattern is
-    /// always the same, and the places (one per unknown) guide an ordering.
+    /// always the same, and the places (one per unknown) guide an ordering. With `may_drop_zeros` an iterative solver may take
+    /// entries out of `matrix` that are zero up to rounding, instead of working on a copy without them.
     /// @return false when it is singular; see singular_unknown()
-    [[nodiscard]] virtual bool factor(const SparseMatrix& matrix, Index n, const Point* places, Index solves) = 0;
+    [[nodiscard]] virtual bool factor(SparseMatrix& matrix, Index n, const Point* places, Index solves,
+                                      bool may_drop_zeros) = 0;
 
     /// b := A^-1 b in place, with the transposed matrix where asked; with a direct factor it allocates nothing. An iterative
     /// solver that meets more right-hand sides than it was made for, or proves slow, gives way to a factor where that pays.

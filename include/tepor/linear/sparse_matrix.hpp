@@ -41,6 +41,9 @@ TEPOR_INLINE void multiply_transposed(const SparseMatrix& matrix, Index rows, co
 /// leave many of them. @return whether `out` was made. Cost O(entries).
 [[nodiscard]] TEPOR_INLINE bool without_zeros(const SparseMatrix& matrix, Index n, SparseMatrix& out);
 
+/// The same in place, which spares the copy; rows from n on stay whole. @return whether entries were dropped.
+TEPOR_INLINE bool drop_zeros(SparseMatrix& matrix, Index n);
+
 /// Throws Error(bad_value) naming the row when the leading n rows break a rule of SparseMatrix: positions that do not
 /// ascend, columns out of order, a row without its diagonal, or arrays of the wrong length. Cost O(entries).
 TEPOR_INLINE void verify(const SparseMatrix& matrix, Index n);

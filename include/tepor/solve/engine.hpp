@@ -64,6 +64,9 @@ class Engine {
     [[nodiscard]] Index iterations() const noexcept { return method_ == Method::plane ? plane_->iterations() : 0; }
 
     SparseMatrix matrix;
+    /// A solver may drop entries of `matrix` that are zero up to rounding, instead of working on a copy without them. For those
+    /// who form it by assemble(), which gives it back the model's pattern.
+    bool may_drop_zeros = false;
     std::vector<double> residual; ///< all unknowns
     std::vector<double> step;     ///< all unknowns, zero where prescribed
     std::vector<double> product;  ///< all unknowns, scratch

@@ -51,7 +51,7 @@ TEST_CASE("cells of a region are contiguous and keep their nodes") {
         for (Id c = m.regions[r].first_cell; c < m.regions[r].last_cell; ++c) {
             const Id user = m.user_cell[detail::as_size(c)];
             CHECK(body.mesh().region[detail::as_size(user)] == static_cast<Id>(r));
-            CHECK(m.model_cell[detail::as_size(user)] == c);
+            CHECK(m.model_cell(user) == c);
             for (int i = 0; i < 6; ++i) CHECK(m.node_of[detail::as_size(m.cell(c)[i])] == body.mesh().cell(user)[i]);
         }
     }

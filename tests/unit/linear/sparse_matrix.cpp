@@ -1,5 +1,6 @@
 // Products of a SparseMatrix with a vector, and the check of its rules.
 #include "../../support/dense_system.hpp"
+#include <algorithm>
 #include <doctest/doctest.h>
 #include <string>
 #include <tepor/base/error.hpp>
@@ -89,7 +90,23 @@ TEST_CASE("without its zeros a matrix is the same matrix, and one with few of th
     multiply(thin, 30, x.data(), z.data());
     CHECK(test::largest_difference(y, z) <= 1e-15);
 
+    // in place: the leading rows are those of the copy, the others are left whole
+    SparseMatrix shorter = full;
+    REQUIRE(drop_zeros(shorter, 30));
+    verify(shorter, 40);
+    CHECK(shorter.entries() == thin.entries() + 10 * 3);
+    CHECK(std::equal(thin.start.begin(), thin.start.end(), shorter.start.begin()));
+    CHECK(std::equal(thin.column.begin(), thin.column.end(), shorter.column.begin()));
+    CHECK(std::equal(thin.lower.begin(), thin.lower.end(), shorter.lower.begin()));
+    const std::vector<double> all = test::random_vector(40, random);
+    std::vector<double> by_full(all.size()), by_shorter(all.size());
+    multiply(full, 40, all.data(), by_full.data());
+    multiply(shorter, 40, all.data(), by_shorter.data());
+    CHECK(test::largest_difference(by_full, by_shorter) <= 1e-15);
+
     entries.resize(39 + 2); // two zeros only
-    const SparseMatrix filled = test::sparse(std::vector<double>(40, 3.0), entries);
+    SparseMatrix filled = test::sparse(std::vector<double>(40, 3.0), entries);
     CHECK_FALSE(without_zeros(filled, 40, thin));
+    CHECK_FALSE(drop_zeros(filled, 40));
+    CHECK(filled.entries() == 40 + 39 + 2);
 }

@@ -45,7 +45,7 @@ inline LevelAnswer answer_conductance(BracketLevel& level, const Quantity& quant
             side.fluid = 1.0;
             if (side.kind == SideKind::fixed) {
                 std::vector<Id> on(as_size(model.kernels->side_nodes));
-                model.side_unknowns({model.model_cell[as_size(side.side.cell)], side.side.side}, on.data());
+                model.side_unknowns({model.model_cell(side.side.cell), side.side.side}, on.data());
                 for (const Id u : on) held[as_size(u - model.free)] = 1.0;
             }
         }

@@ -235,7 +235,7 @@ class QuantityReader {
 
     void hold(CellSide side) {
         std::vector<Id> on(as_size(model_.kernels->side_nodes));
-        const CellSide inner{model_.model_cell[as_size(side.cell)], side.side};
+        const CellSide inner{model_.model_cell(side.cell), side.side};
         model_.side_unknowns(inner, on.data());
         for (const Id u : on) out_.held[as_size(u - model_.free)] = 1.0;
     }

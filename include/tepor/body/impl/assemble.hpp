@@ -66,7 +66,9 @@ class Assembler {
     void start() {
         if (pass_.residual && !pass_.added)
             for (Index u = 0; u < model_.unknowns; ++u) pass_.residual[u] = 0.0;
-        if (pass_.matrix) {
+        if (pass_.matrix && pass_.matrix->entries() != model_.pattern.entries()) { // a solver has dropped its zeros
+            prepare_matrix(model_, *pass_.matrix);
+        } else if (pass_.matrix) {
             for (double& v : pass_.matrix->lower) v = 0.0;
             for (double& v : pass_.matrix->upper) v = 0.0;
         }

@@ -103,12 +103,14 @@ inline std::vector<Id> rank_unknowns(const Model& model, const std::vector<Id>& 
     return order;
 }
 
-inline void fill_side_list(const Model& model, const std::vector<CellSide>& user_sides, SideList& list) {
+/// `model_cell` tells the model's cell of each of the user's.
+inline void fill_side_list(const Model& model, const std::vector<Id>& model_cell,
+                           const std::vector<CellSide>& user_sides, SideList& list) {
     const auto m = as_size(model.kernels->side_nodes);
     list.side.reserve(user_sides.size());
     list.unknowns.resize(user_sides.size() * m);
     for (std::size_t s = 0; s < user_sides.size(); ++s) {
-        list.side.push_back({model.model_cell[as_size(user_sides[s].cell)], user_sides[s].side});
+        list.side.push_back({model_cell[as_size(user_sides[s].cell)], user_sides[s].side});
         model.side_unknowns(list.side.back(), list.unknowns.data() + s * m);
     }
 }
@@ -155,10 +157,12 @@ inline void find_parts(Model& model) {
         else
             number[p] = number[as_size(r)];
     }
+    if (model.parts == 1) part = {}; // the usual case takes no memory
     for (Id& p : part) p = number[as_size(p)];
 }
 
-inline void number_contacts(Model& model, const std::vector<std::vector<ContactPair>>& pairs,
+inline void number_contacts(Model& model, const std::vector<Id>& model_cell,
+                            const std::vector<std::vector<ContactPair>>& pairs,
                             std::vector<std::pair<Id, Id>>& coupled) {
     const int m = model.kernels->side_nodes;
     for (std::size_t k = 0; k < pairs.size(); ++k) {
@@ -169,8 +173,8 @@ inline void number_contacts(Model& model, const std::vector<std::vector<ContactP
             first.push_back(pair.first);
             second.push_back(pair.second);
         }
-        fill_side_list(model, first, contact.first);
-        fill_side_list(model, second, contact.second);
+        fill_side_list(model, model_cell, first, contact.first);
+        fill_side_list(model, model_cell, second, contact.second);
         for (std::size_t s = 0; s < pairs[k].size(); ++s) {
             Id* ids = contact.second.unknowns.data() + s * as_size(m);
             if (pairs[k][s].reversed) {
@@ -244,26 +248,26 @@ inline void number_unknowns(Model& model, const std::vector<std::vector<ContactP
     }
     model.user_cell = order_cells(mesh, user, model.unknowns);
     const std::size_t cells = model.user_cell.size();
-    resize_huge(model.model_cell, cells);
-    resize_huge(model.region_of_cell, cells);
+    std::vector<Id> model_cell;
+    resize_huge(model_cell, cells);
     resize_huge(model.cell_unknowns, cells * nn);
     for (std::size_t c = 0; c < cells; ++c) {
         const auto from = as_size(model.user_cell[c]);
-        model.model_cell[from] = as_id(c);
-        model.region_of_cell[c] = mesh.region[from];
+        model_cell[from] = as_id(c);
         for (std::size_t i = 0; i < nn; ++i) model.cell_unknowns[c * nn + i] = user[from * nn + i];
     }
     user = {};
-    for (std::size_t c = cells; c-- > 0;) {
-        RegionModel& region = model.regions[as_size(model.region_of_cell[c])];
-        region.first_cell = as_id(c);
-        if (region.last_cell == 0) region.last_cell = as_id(c + 1);
+    for (const Id r : mesh.region) ++model.regions[as_size(r)].last_cell; // their number, for now
+    Id next_cell = 0;
+    for (RegionModel& region : model.regions) {
+        region.first_cell = next_cell;
+        next_cell = region.last_cell += next_cell;
     }
 
     for (std::size_t f = 0; f < model.faces.size(); ++f)
-        fill_side_list(model, mesh.faces[f].sides, model.faces[f].sides);
+        fill_side_list(model, model_cell, mesh.faces[f].sides, model.faces[f].sides);
     std::vector<std::pair<Id, Id>> coupled;
-    number_contacts(model, pairs, coupled);
+    number_contacts(model, model_cell, pairs, coupled);
 
     // which faces prescribe each unknown
     std::vector<std::pair<Id, Id>> fixed; // (unknown, face)

@@ -387,8 +387,8 @@ inline void TermCompiler::locals() {
         std::vector<double> gradient(as_size(kernel.nodes * kernel.dim));
         const double xi[2] = {where.reference.x, where.reference.y};
         kernel.shape(xi, shape.data(), gradient.data());
-        const Id cell = model_.model_cell[as_size(where.cell)];
-        term.region = model_.region_of_cell[as_size(cell)];
+        const Id cell = model_.model_cell(where.cell);
+        term.region = model_.region_of_cell(cell);
         for (int i = 0; i < kernel.nodes; ++i) {
             if (kernel.exact) {
                 double& share = shape[as_size(i)];

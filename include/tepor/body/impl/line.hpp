@@ -80,7 +80,7 @@ inline bool lay_out(const Model& model, LinePlan& plan) {
         piece.first = position;
         if (c >= 0) {
             piece.cell = c;
-            piece.region = model.region_of_cell[as_size(c)];
+            piece.region = model.region_of_cell(c);
             piece.special = special(at);
             Id next = c;
             // a held left end makes a piece of its own, so that the rows inside a piece are neighbours in memory
@@ -92,7 +92,7 @@ inline bool lay_out(const Model& model, LinePlan& plan) {
                 if (position >= plan.positions || !here(at)) return false;
                 ++next;
             } while (piece.links < most && !is_special[as_size(at)] && next < cells && cell_of[as_size(at)] == next &&
-                     model.region_of_cell[as_size(next)] == piece.region);
+                     model.region_of_cell(next) == piece.region);
         } else if (!gap_after.empty() && gap_after[as_size(at)].contact >= 0) {
             const Gap gap = gap_after[as_size(at)];
             piece.contact = gap.contact;

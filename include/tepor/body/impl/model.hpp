@@ -99,4 +99,13 @@ TEPOR_INLINE const Locator& Model::locator() const {
     return *locator_;
 }
 
+TEPOR_INLINE Id Model::model_cell(Index user) const {
+    std::call_once(cells_made_, [this] {
+        model_cell_.resize(user_cell.size());
+        for (std::size_t c = 0; c < user_cell.size(); ++c)
+            model_cell_[detail::as_size(user_cell[c])] = detail::as_id(c);
+    });
+    return model_cell_[detail::as_size(user)];
+}
+
 } // namespace tepor

@@ -10,7 +10,7 @@ namespace tepor::detail {
 inline double edge_flux(const Model& model, const Values& values, const Functional::EdgeFlux& edge, const double* T,
                         TimeSpan time, double* row) {
     const CellKernels& kernel = *model.kernels;
-    const RegionModel& region = model.regions[as_size(model.region_of_cell[as_size(edge.side.cell)])];
+    const RegionModel& region = model.regions[as_size(model.region_of_cell(edge.side.cell))];
     const Id* ids = model.cell(edge.side.cell);
     const Point* place = model.places_of(values);
     const int n = kernel.nodes;

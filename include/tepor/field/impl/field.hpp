@@ -63,7 +63,7 @@ TEPOR_INLINE Point Field::heat_flux(Point place, std::string_view region) const 
 
 TEPOR_INLINE Point Field::cell_heat_flux(Index cell) const {
     ModelPlace middle;
-    middle.cell = model_->model_cell[detail::as_size(cell)];
+    middle.cell = model_->model_cell(cell);
     const bool triangle = mesh().shape == CellShape::triangle;
     middle.xi[0] = triangle ? 1.0 / 3.0 : 0.5;
     middle.xi[1] = mesh().dim == 1 ? 0.0 : middle.xi[0];
@@ -92,7 +92,7 @@ TEPOR_INLINE Point Field::flux_at(const ModelPlace& found) const {
         T += shape[i] * t;
         slope = slope + t * Point{gx[i], gy[i]};
     }
-    const RegionModel& in = model_->regions[detail::as_size(model_->region_of_cell[detail::as_size(found.cell)])];
+    const RegionModel& in = model_->regions[detail::as_size(model_->region_of_cell(found.cell))];
     double k[3] = {0.0, 0.0, 0.0};
     for (int m = 0; m < in.conductivities; ++m)
         if (const Fault fault = in.k[m].evaluate(values_.slots.data(), {time_, time_, 1.0},

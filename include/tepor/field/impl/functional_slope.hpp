@@ -219,7 +219,7 @@ class FunctionalSlope {
 
     /// Derivatives of edge_flux(): -k grad T . n N_j integrated over a straight side.
     void edge_flux_slope(const Functional::EdgeFlux& edge) {
-        const RegionModel& region = model_.regions[as_size(model_.region_of_cell[as_size(edge.side.cell)])];
+        const RegionModel& region = model_.regions[as_size(model_.region_of_cell(edge.side.cell))];
         const Id* ids = model_.cell(edge.side.cell);
         const int n = kernel_.nodes;
         const bool line = kernel_.dim == 1;

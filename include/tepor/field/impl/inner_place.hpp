@@ -22,7 +22,7 @@ inline InnerPlace inner_place(const Model& model, const Values& values, Workspac
     const Id* ids = model.cell(at.cell);
     const double a = place[ids[0]].x;
     const double b = place[ids[1]].x;
-    const Id region = model.region_of_cell[as_size(at.cell)];
+    const Id region = model.region_of_cell(at.cell);
     Id cells[W];
     for (Id& cell : cells) cell = at.cell;
     CellBlock& block = work.cells;

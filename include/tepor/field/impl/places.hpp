@@ -46,7 +46,7 @@ inline std::vector<ModelPlace> find_places(const Model& model, const Values& val
     }
     const auto add = [&](const Location& l) {
         ModelPlace at;
-        at.cell = model.model_cell[as_size(l.cell)];
+        at.cell = model.model_cell(l.cell);
         at.xi[0] = l.reference.x;
         at.xi[1] = l.reference.y;
         found.push_back(at);
@@ -99,7 +99,7 @@ TEPOR_INLINE ModelPlace locate(const Model& model, const Values& values, Point p
         for (std::size_t i = 1; i < found.size(); ++i)
             if (!detail::same_unknowns(model, found[0], found[i])) {
                 const auto name = [&](const ModelPlace& at) {
-                    return model.regions[detail::as_size(model.region_of_cell[detail::as_size(at.cell)])].name;
+                    return model.regions[detail::as_size(model.region_of_cell(at.cell))].name;
                 };
                 throw Error(ErrorCode::outside, where,
                             text("at ", where, ": a contact gives this place two temperatures; ask at(place, \"",

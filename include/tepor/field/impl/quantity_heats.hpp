@@ -162,7 +162,7 @@ inline void QuantityCompiler::heat_from() {
             SideList mine;
             const SideList& all = model_.faces[f].sides;
             for (Index s = 0; s < all.count(); ++s) {
-                if (model_.region_of_cell[as_size(all.side[as_size(s)].cell)] != r) continue;
+                if (model_.region_of_cell(all.side[as_size(s)].cell) != r) continue;
                 mine.side.push_back(all.side[as_size(s)]);
                 for (int j = 0; j < model_.kernels->side_nodes; ++j)
                     mine.unknowns.push_back(all.unknowns[as_size(s * model_.kernels->side_nodes + j)]);

@@ -81,7 +81,7 @@ class ProblemReader {
         const std::size_t cells = as_size(mesh_.cell_count());
         p.dof.resize(mesh_.cells.size());
         for (std::size_t c = 0; c < cells; ++c)
-            std::copy_n(model_.cell(model_.model_cell[c]), mesh_.nodes_per_cell,
+            std::copy_n(model_.cell(model_.model_cell(static_cast<Index>(c))), mesh_.nodes_per_cell,
                         p.dof.data() + c * as_size(mesh_.nodes_per_cell));
         p.conductivity.resize(cells);
         p.source.assign(cells, 0.0);

@@ -49,7 +49,8 @@ class OwnPlaneSolver final : public PlaneSolver {
         cg_work_.crew = multigrid_.crew();
     }
 
-    bool factor(const SparseMatrix& matrix, Index n, const Point* places, Index solves) override {
+    bool factor(SparseMatrix& matrix, Index n, const Point* places, Index solves, bool may_drop_zeros) override {
+        entries_ = matrix.entries() > entries_ ? matrix.entries() : entries_;
         matrix_ = &matrix;
         size_ = n;
         places_ = places;
@@ -67,7 +68,12 @@ class OwnPlaneSolver final : public PlaneSolver {
         }
         const SparseMatrix& definite = matrix.symmetric() ? matrix : symmetric_part_;
         if (choose_solver(n, 2, solves) == SolverKind::multigrid) {
-            thinned_ = without_zeros(definite, n, thin_);
+            if (may_drop_zeros && matrix.symmetric()) {
+                thinned_ = false;
+                static_cast<void>(drop_zeros(matrix, n));
+            } else {
+                thinned_ = without_zeros(definite, n, thin_);
+            }
             by_multigrid_ = multigrid_.setup(thinned_ ? thin_ : definite, n);
             singular_ = by_multigrid_ ? -1 : as_id(multigrid_.singular_row());
             if (by_multigrid_) return true;
@@ -97,8 +103,9 @@ class OwnPlaneSolver final : public PlaneSolver {
 
   private:
     bool factor_direct(const SparseMatrix& definite) {
-        if (!analyzed_) cholesky_.analyze(definite, size_, places_);
-        analyzed_ = true;
+        const bool whole = definite.entries() == entries_;
+        if (!analyzed_ || !whole) cholesky_.analyze(definite, size_, places_);
+        analyzed_ = whole; // without its zeros a pattern goes with its values
         const bool fine = cholesky_.factor(definite);
         if (fine) by_multigrid_ = false; // else multigrid may manage all the same
         singular_ = fine ? -1 : as_id(cholesky_.singular_row());
@@ -163,7 +170,8 @@ class OwnPlaneSolver final : public PlaneSolver {
     const SparseMatrix* matrix_ = nullptr;
     const Point* places_ = nullptr;
     Index size_ = 0;
-    Index solves_ = 0; // since the matrix was decomposed
+    Index entries_ = 0; // of the matrix with all its zeros
+    Index solves_ = 0;  // since the matrix was decomposed
     Index iterations_ = 0;
     Id singular_ = -1;
     bool by_multigrid_ = false;

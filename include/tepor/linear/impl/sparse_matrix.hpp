@@ -1,6 +1,7 @@
 #pragma once
 // Products of a SparseMatrix with a vector, and the check of its rules.
 
+#include <tepor/base/detail/huge_pages.hpp>
 #include <tepor/base/error.hpp>
 #include <tepor/base/text.hpp>
 #include <tepor/linear/sparse_matrix.hpp>
@@ -39,20 +40,58 @@ TEPOR_INLINE void multiply_transposed(const SparseMatrix& matrix, Index rows, co
     detail::multiply_lower(rows, matrix.start.data(), matrix.column.data(), upper, lower, lower, x, y);
 }
 
+namespace detail {
+
+/// Whether an entry is zero up to rounding beside the diagonals of its row and column.
+inline bool vanishes(double value, double own, double other) noexcept {
+    return value * value <= 1e-30 * (own * other);
+}
+
+/// A sample of the rows: an eighth of the entries at least are zero.
+inline bool many_zeros(const SparseMatrix& matrix, Index n) {
+    Index seen = 0, zeros = 0;
+    for (Index i = 0; i < n; i += n < 10000 ? 1 : 61)
+        for (Index p = matrix.start[as_size(i)]; p < matrix.start[as_size(i) + 1]; ++p, ++seen) {
+            const Index j = matrix.column[as_size(p)];
+            zeros += j != i && vanishes(matrix.lower[as_size(p)], matrix.diagonal(i), matrix.diagonal(j));
+        }
+    return seen > 0 && zeros * 8 >= seen;
+}
+
+} // namespace detail
+
+TEPOR_INLINE bool drop_zeros(SparseMatrix& matrix, Index n) {
+    if (!detail::many_zeros(matrix, n)) return false;
+    Id* start = matrix.start.data();
+    Id* column = matrix.column.data();
+    double* value = matrix.lower.data();
+    Id used = 0;
+    Id from = 0; // start[i] is that of the shorter row already
+    for (Index i = 0; i < matrix.rows; ++i) {
+        const Id to = start[i + 1];
+        const double own = value[to - 1];
+        for (Id p = from; p < to; ++p) {
+            const Id j = column[p];
+            if (i < n && j != i && detail::vanishes(value[p], own, value[start[j + 1] - 1])) continue;
+            column[used] = j;
+            value[used++] = value[p];
+        }
+        from = to;
+        start[i + 1] = used;
+    }
+    matrix.column.resize(detail::as_size(used));
+    matrix.lower.resize(detail::as_size(used));
+    return true;
+}
+
 TEPOR_INLINE bool without_zeros(const SparseMatrix& matrix, Index n, SparseMatrix& out) {
+    if (!detail::many_zeros(matrix, n)) return false;
     const Id* start = matrix.start.data();
     const Id* column = matrix.column.data();
     const double* value = matrix.lower.data();
     const auto zero = [&](Index i, Id p, double own) {
-        return value[p] * value[p] <= 1e-30 * (own * value[start[column[p] + 1] - 1]) && column[p] != i;
+        return column[p] != i && detail::vanishes(value[p], own, value[start[column[p] + 1] - 1]);
     };
-    // a sample tells whether counting pays
-    Index seen = 0, zeros = 0;
-    for (Index i = 0; i < n; i += n < 10000 ? 1 : 61) {
-        const double own = value[start[i + 1] - 1];
-        for (Id p = start[i]; p < start[i + 1]; ++p, ++seen) zeros += zero(i, p, own);
-    }
-    if (zeros * 8 < seen || seen == 0) return false;
     Index kept = 0;
     for (Index i = 0; i < n; ++i) {
         const double own = value[start[i + 1] - 1];
@@ -60,9 +99,9 @@ TEPOR_INLINE bool without_zeros(const SparseMatrix& matrix, Index n, SparseMatri
     }
     out.rows = n;
     out.upper.clear();
-    out.start.resize(detail::as_size(n) + 1);
-    out.column.resize(detail::as_size(kept));
-    out.lower.resize(detail::as_size(kept));
+    detail::resize_huge(out.start, detail::as_size(n) + 1);
+    detail::resize_huge(out.column, detail::as_size(kept));
+    detail::resize_huge(out.lower, detail::as_size(kept));
     out.start[0] = 0;
     Id used = 0;
     for (Index i = 0; i < n; ++i) {

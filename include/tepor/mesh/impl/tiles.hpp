@@ -311,6 +311,11 @@ TEPOR_INLINE void build_tiles(MeshData& mesh, const TilePlan& plan, const TilesO
     if (as_double(columns) * as_double(rows) > as_double(max_id))
         throw Error(ErrorCode::too_large, "tiles", text("tiles: more than ", max_id, " nodes; take larger cells"));
     std::vector<Id> lattice(as_size(columns * rows), -1);
+    std::size_t tiled = 0;
+    for (Index j = 0; j < map.y.cells(); ++j)
+        for (Index i = 0; i < map.x.cells(); ++i) tiled += static_cast<std::size_t>(map.at(i, j) >= 0);
+    mesh.cells.reserve(tiled * patterns[0].size() * as_size(mesh.nodes_per_cell));
+    mesh.region.reserve(tiled * patterns[0].size());
     std::vector<OuterSide> outer;
     const std::array<std::array<Index, 2>, 4> step{{{0, -1}, {1, 0}, {0, 1}, {-1, 0}}};
     for (Index j = 0; j < map.y.cells(); ++j)
@@ -339,6 +344,7 @@ TEPOR_INLINE void build_tiles(MeshData& mesh, const TilePlan& plan, const TilesO
         const double from = borders.at[as_size(k)];
         return r == 0 ? from : from + (borders.at[as_size(k + 1)] - from) * as_double(r) / as_double(steps);
     };
+    mesh.nodes.reserve(as_size(std::count(lattice.begin(), lattice.end(), 0)));
     for (Index q = 0; q < rows; ++q)
         for (Index p = 0; p < columns; ++p) {
             Id& number = lattice[as_size(q * columns + p)];

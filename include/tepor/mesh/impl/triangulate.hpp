@@ -151,7 +151,7 @@ TEPOR_INLINE std::vector<Id> hand_over(const Refiner& refiner, Picture& picture,
     std::vector<Id> corners;
     corners.reserve(3 * order.size());
     mesh.region.reserve(order.size());
-    mesh.nodes.reserve(order.size() / 2 + 1000);
+    mesh.nodes.reserve(d.points.size());
     for (const Id k : order) {
         const Id t = inside[as_size(k)];
         const Id cell = as_id(mesh.region.size());

@@ -32,7 +32,7 @@ TEPOR_INLINE std::string csv_of(const Field& field) {
     std::vector<Id> region(detail::as_size(model.unknowns), 0);
     for (std::size_t e = model.cell_unknowns.size(); e-- > 0;)
         region[detail::as_size(model.cell_unknowns[e])] =
-            model.region_of_cell[e / detail::as_size(model.kernels->nodes)];
+            model.region_of_cell(static_cast<Index>(e / detail::as_size(model.kernels->nodes)));
     for (Index u = 0; u < model.unknowns; ++u) {
         const auto at = detail::as_size(u);
         out += fmt::format("{},{},{:.17g}", model.node_of[at],

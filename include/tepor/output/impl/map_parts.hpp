@@ -164,7 +164,7 @@ inline void append_outlines(const Field& field, const MapFrame& frame, std::stri
         for (int s = 0; s < mesh.sides_per_cell; ++s)
             sides.push_back({side_key(mesh, *model.kernels, as_id(c), s), {as_id(c), s}});
     sort_by_key(sides);
-    const auto in_model = [&](CellSide s) { return CellSide{model.model_cell[as_size(s.cell)], s.side}; };
+    const auto in_model = [&](CellSide s) { return CellSide{model.model_cell(s.cell), s.side}; };
     for (std::size_t i = 0; i < sides.size(); ++i) {
         if (i + 1 < sides.size() && sides[i].key == sides[i + 1].key) {
             if (mesh.region[as_size(sides[i].side.cell)] != mesh.region[as_size(sides[i + 1].side.cell)])

@@ -64,7 +64,7 @@ TEPOR_INLINE std::string profile_svg(const Field& field, const PictureOptions& o
     std::vector<Sample> curve;
     const int pieces = cells.size() > 300 ? 1 : 12;
     for (const Id c : cells) {
-        const std::string& region = mesh.region_names[detail::as_size(model.region_of_cell[detail::as_size(c)])];
+        const std::string& region = mesh.region_names[detail::as_size(model.region_of_cell(c))];
         const double a = place[model.cell(c)[0]].x;
         const double b = place[model.cell(c)[1]].x;
         for (int i = 0; i <= pieces; ++i) {
@@ -110,7 +110,7 @@ TEPOR_INLINE std::string profile_svg(const Field& field, const PictureOptions& o
     };
     std::vector<Band> bands;
     for (const Id c : cells) {
-        const Id r = model.region_of_cell[detail::as_size(c)];
+        const Id r = model.region_of_cell(c);
         const double a = place[model.cell(c)[0]].x;
         const double b = place[model.cell(c)[1]].x;
         if (!bands.empty() && bands.back().region == r)

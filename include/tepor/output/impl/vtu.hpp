@@ -106,7 +106,7 @@ TEPOR_INLINE std::string vtu_bytes(const Field& field) {
     std::vector<std::int32_t> regions;
     std::vector<double> flux;
     for (std::size_t c = 0; c < cells; ++c) {
-        const Id own = model.model_cell[c];
+        const Id own = model.model_cell(static_cast<Index>(c));
         for (const int i : order) connectivity.push_back(point_of[detail::as_size(model.cell(own)[i])]);
         offsets.push_back(static_cast<std::int64_t>(connectivity.size()));
         regions.push_back(mesh.region[c]);

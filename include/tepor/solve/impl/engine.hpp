@@ -51,7 +51,7 @@ TEPOR_INLINE bool Engine::factor(Index solves) {
         plane_ = model_->make_plane_solver();
         plane_->use_threads(threads_);
     }
-    const bool fine = plane_->factor(matrix, n, model_->places.data(), solves);
+    const bool fine = plane_->factor(matrix, n, model_->places.data(), solves, may_drop_zeros);
     singular_ = fine ? -1 : plane_->singular_unknown();
     return fine;
 }

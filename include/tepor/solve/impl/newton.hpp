@@ -69,26 +69,24 @@ inline void require_level(const Model& model, const Values& values) {
     const auto acts = [&](const Coefficient& c) {
         return !c.uniform() || c.uniform_value(values.slots.data(), {}) > 0.0;
     };
-    for (Index u = model.free; u < model.unknowns; ++u) level[as_size(model.part_of[as_size(u)])] = 1;
+    for (Index u = model.free; u < model.unknowns; ++u) level[as_size(model.part(u))] = 1;
     for (const FaceModel& face : model.faces)
         for (const FaceTerm& term : face.terms)
             if (term.kind != FaceTerm::Kind::flux && acts(term.amount))
-                for (const Id u : face.sides.unknowns) level[as_size(model.part_of[as_size(u)])] = 1;
+                for (const Id u : face.sides.unknowns) level[as_size(model.part(u))] = 1;
     for (const RegionModel& region : model.regions)
         for (const VolumeTerm& term : region.volume) {
             // a source that depends on temperature can set the level too; the solve tells whether it does
             const bool sets =
                 term.kind == VolumeTerm::Kind::side_film ? acts(term.amount) : term.amount.depends_on_temperature();
             if (!sets) continue;
-            for (Id c = region.first_cell; c < region.last_cell; ++c)
-                level[as_size(model.part_of[as_size(model.cell(c)[0])])] = 1;
+            for (Id c = region.first_cell; c < region.last_cell; ++c) level[as_size(model.part(model.cell(c)[0]))] = 1;
         }
     for (std::size_t part = 0; part < level.size(); ++part) {
         if (level[part]) continue;
         std::string name;
         for (const RegionModel& region : model.regions)
-            if (name.empty() && model.part_of[as_size(model.cell(region.first_cell)[0])] == as_id(part))
-                name = region.name;
+            if (name.empty() && model.part(model.cell(region.first_cell)[0]) == as_id(part)) name = region.name;
         throw Error(
             ErrorCode::no_level, name,
             text("steady: nothing sets the temperature level of the part of the body that holds region \"", name,

@@ -300,6 +300,7 @@ inline void steady_solve(const std::shared_ptr<const Model>& model, EnginePool& 
     if (!options.solver && !model->nonlinear && steady_update(pool, key, options, into)) return;
     std::unique_ptr<Engine> engine = options.solver ? std::make_unique<Engine>(model) : pool.borrow(model, key);
     if (options.solver) engine->use(options.solver);
+    engine->may_drop_zeros = true;
     engine->use_threads(options.threads);
     const bool factored = !model->nonlinear && engine->key == key;
     engine->key.clear();
