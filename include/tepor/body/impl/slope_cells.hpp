@@ -5,6 +5,7 @@
 #include <cmath>
 #include <tepor/body/gather.hpp>
 #include <tepor/body/residual_slope.hpp>
+#include <tepor/body/table_points.hpp>
 
 namespace tepor::detail {
 
