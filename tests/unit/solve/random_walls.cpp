@@ -3,32 +3,19 @@
 
 #include <cmath>
 #include <doctest/doctest.h>
-#include <random>
 #include <string>
 #include <tepor/element/exact_segment.hpp>
 #include <tepor/element/segment.hpp>
 #include <tepor/mesh/layers.hpp>
 #include <tepor/solve/steady.hpp>
+#include <tests/support/draw.hpp>
 #include <tests/support/scale.hpp>
 #include <vector>
 
 using namespace tepor;
+using test::Draw;
 
 namespace {
-
-class Draw {
-  public:
-    explicit Draw(unsigned seed) : engine_(seed) {}
-    double between(double low, double high) {
-        return low + (high - low) * (static_cast<double>(engine_()) / 4294967296.0);
-    }
-    double of_magnitude(double low, double high) { return std::exp(between(std::log(low), std::log(high))); }
-    int up_to(int count) { return static_cast<int>(engine_() % static_cast<unsigned>(count)); }
-    bool one_in(int count) { return up_to(count) == 0; }
-
-  private:
-    std::mt19937 engine_;
-};
 
 Value conductivity(Draw& draw) {
     const double k = draw.of_magnitude(0.02, 400.0);
