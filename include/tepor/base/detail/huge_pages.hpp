@@ -14,10 +14,11 @@ namespace tepor::detail {
 /// inside the range are asked for. Advice: nothing changes where it is not taken.
 inline void advise_huge_pages([[maybe_unused]] void* data, [[maybe_unused]] std::size_t bytes) noexcept {
 #if defined(__linux__)
-    constexpr std::uintptr_t huge = std::uintptr_t{2} << 20;
-    const auto from = (reinterpret_cast<std::uintptr_t>(data) + huge - 1) & ~(huge - 1);
-    const auto to = (reinterpret_cast<std::uintptr_t>(data) + bytes) & ~(huge - 1);
-    if (to > from) static_cast<void>(madvise(reinterpret_cast<void*>(from), to - from, MADV_HUGEPAGE));
+    constexpr std::size_t huge = std::size_t{2} << 20;
+    const std::size_t off = reinterpret_cast<std::uintptr_t>(data) % huge;
+    const std::size_t skipped = off == 0 ? 0 : huge - off;
+    if (bytes < skipped + huge) return;
+    static_cast<void>(madvise(static_cast<char*>(data) + skipped, (bytes - skipped) / huge * huge, MADV_HUGEPAGE));
 #endif
 }
 
