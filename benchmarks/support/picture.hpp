@@ -44,7 +44,7 @@ inline bool draw_cost(const std::string& path, const std::vector<std::pair<doubl
     svg.path(curve, "none", tepor::detail::stroke_of(0).colour, 2.0);
     for (const auto& [n, ms] : cost) svg.rect(x(n) - 3.0, y(ms) - 3.0, 6.0, 6.0, tepor::detail::stroke_of(0).colour);
     const auto& [n, ms] = cost.back();
-    svg.label(x(n) - 4.0, y(ms) + 24.0, fmt::format("{:.1f} s at {:.1f} million unknowns", 1e-3 * ms, 1e-6 * n), "end",
+    svg.label(x(n) - 8.0, y(ms) - 10.0, fmt::format("{:.1f} s at {:.1f} million unknowns", 1e-3 * ms, 1e-6 * n), "end",
               13.0);
     tepor::write_svg(path, std::move(svg).done());
     return true;
