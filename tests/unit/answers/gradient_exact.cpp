@@ -6,6 +6,7 @@
 #include <tepor/element/exact_segment.hpp>
 #include <tepor/mesh/layers.hpp>
 #include <tepor/solve/steady.hpp>
+#include <tests/support/difference_of_solves.hpp>
 #include <vector>
 
 using namespace tepor;
@@ -92,15 +93,9 @@ TEST_CASE("over exact cells a film law that turns at its fluid's temperature kee
                 CAPTURE(hot);
                 CAPTURE(p.name());
                 CAPTURE(quantity.label());
-                const double here = body.value(p), h = 1e-6 * here;
-                body.set(p, here + h);
-                const double above = steady(body)[quantity];
-                body.set(p, here - h);
-                const double below = steady(body)[quantity];
-                body.set(p, here);
-                const double difference = (above - below) / (2.0 * h);
+                const double difference = test::difference_of_solves(body, quantity, p, 1e-6);
                 CHECK(std::abs(slope[p] - difference) <=
-                      1e-6 * (std::abs(difference) + std::abs(field[quantity]) / here));
+                      1e-6 * (std::abs(difference) + std::abs(field[quantity]) / body.value(p)));
             }
         }
     }

@@ -11,6 +11,7 @@
 #include <tepor/element/triangle.hpp>
 #include <tepor/mesh/tiles.hpp>
 #include <tepor/solve/steady.hpp>
+#include <tests/support/difference_of_solves.hpp>
 #include <tests/support/draw.hpp>
 #include <tests/support/scale.hpp>
 #include <vector>
@@ -141,15 +142,9 @@ TEST_CASE_TEMPLATE("every slope of a plate drawn at random is that of difference
                 CAPTURE(seed);
                 CAPTURE(quantity.label());
                 CAPTURE(p.name());
-                const double here = body.value(p), h = 1e-5 * here;
-                body.set(p, here + h);
-                const double above = steady(body)[quantity];
-                body.set(p, here - h);
-                const double below = steady(body)[quantity];
-                body.set(p, here);
-                const double difference = (above - below) / (2.0 * h);
+                const double difference = test::difference_of_solves(body, quantity, p, 1e-5);
                 // the noise of the difference: a balance good to 1e-10
-                const double scale = std::max(std::abs(difference), 1e-4 * std::abs(field[quantity]) / here);
+                const double scale = std::max(std::abs(difference), 1e-4 * std::abs(field[quantity]) / body.value(p));
                 CHECK(std::abs(slope[p] - difference) <= 1e-4 * scale);
             }
         }

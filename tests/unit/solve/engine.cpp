@@ -7,9 +7,11 @@
 #include <tepor/solve/engine.hpp>
 #include <tepor/solve/march.hpp>
 #include <tepor/solve/steady.hpp>
+#include <tests/support/engine_system.hpp>
 #include <vector>
 
 using namespace tepor;
+using test::form_system;
 
 namespace {
 
@@ -26,15 +28,6 @@ Body plate() {
     return body;
 }
 
-/// The matrix of the body and the residual of `T` in the engine.
-void evaluate(const Body& body, Engine& engine, const std::vector<double>& T) {
-    Pass pass;
-    pass.T = T.data();
-    pass.matrix = &engine.matrix;
-    pass.residual = engine.residual.data();
-    assemble(*body.model(), body.values(), engine.work, pass);
-}
-
 } // namespace
 
 TEST_CASE("one solve of a large body iterates, many make a factor, and both find the same temperatures") {
@@ -43,7 +36,7 @@ TEST_CASE("one solve of a large body iterates, many make a factor, and both find
     REQUIRE(model.free == 260 * 241);
     Engine engine(body.model());
     const std::vector<double> start(static_cast<std::size_t>(model.unknowns), 20.0);
-    evaluate(body, engine, start);
+    form_system(body, engine, start);
 
     REQUIRE(engine.factor(Purpose::one_solve));
     CHECK_FALSE(engine.direct());
@@ -79,7 +72,7 @@ TEST_CASE("one solve of a large body iterates, many make a factor, and both find
 TEST_CASE("an iterative solver that is asked again and again gives way to a factor") {
     const Body body = plate();
     Engine engine(body.model());
-    evaluate(body, engine, std::vector<double>(static_cast<std::size_t>(body.model()->unknowns), 20.0));
+    form_system(body, engine);
     REQUIRE(engine.factor(Index{1}));
     std::vector<double> first = engine.residual;
     REQUIRE(engine.solve(first.data(), 1e-9));
@@ -106,7 +99,7 @@ TEST_CASE("a matrix that has lost its zeros gives the same bits, and is whole ag
     for (int round = 0; round < 2; ++round) {
         CAPTURE(round);
         for (Engine* engine : {&keeps, &drops}) {
-            evaluate(body, *engine, cold);
+            form_system(body, *engine, cold);
             CHECK(engine->matrix.entries() == whole);
             REQUIRE(engine->factor(Index{1}));
         }
@@ -124,7 +117,7 @@ TEST_CASE("a matrix that has lost its zeros gives the same bits, and is whole ag
         REQUIRE(drops.solve(by_factor.data(), 1e-9));
     }
     CHECK(drops.direct());
-    evaluate(body, drops, cold);
+    form_system(body, drops, cold);
     REQUIRE(drops.factor(Purpose::many_solves));
     std::vector<double> anew = drops.residual;
     REQUIRE(drops.solve(anew.data(), 0.0));
@@ -155,7 +148,7 @@ TEST_CASE("an iteration that crawls gives way to a factor within 30 iterations")
     body.in("strip", Generation{.per_volume = 1e4});
     body.on("left", Film{.coefficient = 30.0, .fluid = 60.0});
     Engine engine(body.model());
-    evaluate(body, engine, std::vector<double>(static_cast<std::size_t>(body.model()->unknowns), 20.0));
+    form_system(body, engine);
     REQUIRE(engine.factor(Purpose::one_solve));
     CHECK_FALSE(engine.direct());
     std::vector<double> x = engine.residual;
@@ -189,7 +182,7 @@ TEST_CASE("a steady solve has the same bits with helping threads, and a number o
 TEST_CASE("a limit below rounding ends an iteration instead of keeping it busy") {
     const Body body = plate();
     Engine engine(body.model());
-    evaluate(body, engine, std::vector<double>(static_cast<std::size_t>(body.model()->unknowns), 20.0));
+    form_system(body, engine);
     REQUIRE(engine.factor(Purpose::one_solve));
     std::vector<double> b = engine.residual;
     CHECK(engine.solve(b.data(), 0.0));

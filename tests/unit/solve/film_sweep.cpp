@@ -5,9 +5,11 @@
 #include <tepor/mesh/tiles.hpp>
 #include <tepor/solve/engine.hpp>
 #include <tepor/solve/steady.hpp>
+#include <tests/support/engine_system.hpp>
 #include <vector>
 
 using namespace tepor;
+using test::form_system;
 
 namespace {
 
@@ -36,22 +38,13 @@ double difference(const Field& a, const Field& b) {
     return worst;
 }
 
-void assemble_into(const Body& body, Engine& engine) {
-    const std::vector<double> T(static_cast<std::size_t>(body.model()->unknowns), 20.0);
-    Pass pass;
-    pass.T = T.data();
-    pass.matrix = &engine.matrix;
-    pass.residual = engine.residual.data();
-    assemble(*body.model(), body.values(), engine.work, pass);
-}
-
 } // namespace
 
 TEST_CASE("a factor serves other films of a small face by an update, as a new factor would") {
     const Bar bar;
     Body body = bar.body();
     Engine engine(body.model()), plain(body.model());
-    assemble_into(body, engine);
+    form_system(body, engine);
     REQUIRE(engine.factor(Purpose::one_solve));
     REQUIRE(engine.updatable());
     engine.key = {1.0};
@@ -59,8 +52,8 @@ TEST_CASE("a factor serves other films of a small face by an update, as a new fa
     for (const double film : {26.0, 0.0, 1e5, 25.0}) {
         CAPTURE(film);
         body.set(bar.film, film);
-        assemble_into(body, engine);
-        assemble_into(body, plain);
+        form_system(body, engine);
+        form_system(body, plain);
         REQUIRE(engine.update(11) == 0);
         REQUIRE(plain.factor(Purpose::one_solve));
         std::vector<double> a = engine.residual, b = plain.residual;
@@ -75,7 +68,7 @@ TEST_CASE("a factor serves other films of a small face by an update, as a new fa
         CHECK(worst <= 1e-10 * largest);
     }
     body.set(bar.film, 30.0);
-    assemble_into(body, engine);
+    form_system(body, engine);
     CHECK(engine.update(10) == 11); // one row too many: the old factor stands
     const std::vector<double> changed = engine.matrix.lower;
     engine.restore_base();

@@ -2,24 +2,11 @@
 // The passes over cells, faces, contacts and local heats.
 
 #include <cmath>
-#include <tepor/base/detail/huge_pages.hpp>
 #include <tepor/body/assemble.hpp>
 #include <tepor/body/gather.hpp>
+#include <tepor/body/impl/prepare_matrix.hpp>
 
 namespace tepor {
-
-TEPOR_INLINE void prepare_matrix(const Model& model, SparseMatrix& matrix) {
-    matrix.rows = model.unknowns;
-    const SparseMatrix& pattern = model.pattern;
-    detail::reserve_huge(matrix.start, pattern.start.size());
-    detail::reserve_huge(matrix.column, pattern.column.size());
-    detail::reserve_huge(matrix.lower, pattern.column.size());
-    matrix.start = pattern.start;
-    matrix.column = pattern.column;
-    matrix.lower.assign(pattern.column.size(), 0.0);
-    matrix.upper.clear();
-    if (model.slope) matrix.upper.assign(pattern.column.size(), 0.0);
-}
 
 namespace detail {
 
